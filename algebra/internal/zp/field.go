@@ -126,7 +126,7 @@ func (f Field) Lift(x uint64) int64 {
 
 // PrimeBelow returns the largest prime below n, for n > 3.
 func PrimeBelow(n uint64) uint64 {
-	for p := (n - 2 + n%2) | 1; p > 2; p -= 2 {
+	for p := (n - 2) | 1; p > 2; p -= 2 {
 		if new(big.Int).SetUint64(p).ProbablyPrime(0) { // exact below 2^64 (Baillie-PSW)
 			return p
 		}
