@@ -1,0 +1,65 @@
+package intpoly
+
+import (
+	"context"
+	"testing"
+)
+
+func BenchmarkFactorZ(b *testing.B) {
+	for _, c := range []struct {
+		name string
+		p    Poly
+	}{
+		{"SD16", swinnertonDyer(2, 3, 5, 7)},
+		{"SD32", swinnertonDyer(2, 3, 5, 7, 11)},
+		{"SD32shifted", translate(swinnertonDyer(2, 3, 5, 7, 11), 1)},
+		{"SD64shifted", translate(swinnertonDyer(2, 3, 5, 7, 11, 13), 1)},
+		{"Wilkinson20", wilkinson(20)},
+		{"x^105-1", powerMinus(105, 1)},
+		{"x^30-2", powerMinus(30, 2)},
+		{"cyclotomic210", cyclotomic(210)},
+		{"dense50", randomPoly(1, 50, 7)},
+		{"tenCubics", product(randomPolys(2, 10, 3, 7))},
+		{"thirtyFactors", product(randomPolys(3, 30, 4, 7))},
+		{"charpoly80", characteristic(4, 80)},
+		{"tridiagonal100", tridiagonal(100)},
+	} {
+		b.Run(c.name, func(b *testing.B) {
+			for b.Loop() {
+				if _, _, err := FactorZ(context.Background(), c.p); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}
+
+func BenchmarkMul(b *testing.B) {
+	for _, c := range []struct {
+		name         string
+		degree, bits int
+	}{{"5x16", 5, 16}, {"30x64", 30, 64}, {"50x512", 50, 512}, {"200x32", 200, 32}} {
+		p, q := randomPoly(1, c.degree, c.bits), randomPoly(2, c.degree, c.bits)
+		b.Run(c.name, func(b *testing.B) {
+			for b.Loop() {
+				Mul(p, q)
+			}
+		})
+	}
+}
+
+func BenchmarkGCD(b *testing.B) {
+	for _, c := range []struct {
+		name                 string
+		common, degree, bits int
+	}{{"5of10x16", 5, 10, 16}, {"20of40x100", 20, 40, 100}, {"50of100x64", 50, 100, 64}} {
+		g := randomPoly(1, c.common, c.bits)
+		p := Mul(g, randomPoly(2, c.degree-c.common, c.bits))
+		q := Mul(g, randomPoly(3, c.degree-c.common, c.bits))
+		b.Run(c.name, func(b *testing.B) {
+			for b.Loop() {
+				GCD(p, q)
+			}
+		})
+	}
+}

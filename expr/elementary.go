@@ -1,0 +1,540 @@
+package expr
+
+import (
+	"strconv"
+
+	"example.org/closedform/algebra"
+)
+
+// Elementary is a sum of terms t^n e^(at) (c cos bt + s sin bt) with a, b, c, s
+// in a real field K: the class of inputs, closed under sums and products. It is
+// the stage between a tree and its image.
+type Elementary[E any] struct {
+	k     algebra.Scalars[E]
+	terms []elementaryTerm[E]
+}
+
+// elementaryTerm is t^n e^(at) (c cos bt + s sin bt), b not negative, s = 0
+// when b = 0, c and s not both 0.
+type elementaryTerm[E any] struct {
+	n    int
+	a, b E
+	c, s E
+}
+
+// Env is what a tree is read against: the field its numbers live in, the
+// independent variable, and the values of the names.
+type Env[E any] struct {
+	K        algebra.Scalars[E]
+	Variable string
+	// Lookup returns the value of a name, or an *Error that says why it has none.
+	Lookup func(Symbol) (E, error)
+	Limits Limits
+}
+
+// Elementary converts a tree to a sum of elementary terms. The error, of type
+// *Error, names the term that is outside the class.
+func (env Env[E]) Elementary(n Node) (Elementary[E], error) {
+	c := elementaryReader[E]{env: env}
+	c.env.Limits = env.Limits.WithDefaults()
+	f, err := c.read(n)
+	if err != nil {
+		return f, err
+	}
+	if order := f.order(); order > c.env.Limits.Degree+1 {
+		return f, Errorf(LimitExceeded, n.Pos(), "the input satisfies no equation of order below %d, which is beyond %d", order, c.env.Limits.Degree)
+	}
+	return f, nil
+}
+
+// order returns the degree of the denominator of the image, which is the order
+// of the least homogeneous equation that f satisfies.
+func (f Elementary[E]) order() int {
+	order := 0
+	for _, g := range f.byRate() {
+		top := 0
+		for _, t := range g {
+			top = max(top, t.n)
+		}
+		if f.k.IsZero(g[0].b) {
+			order += top + 1
+		} else {
+			order += 2 * (top + 1)
+		}
+	}
+	return order
+}
+
+// byRate returns the terms in groups of equal a and b.
+func (f Elementary[E]) byRate() [][]elementaryTerm[E] {
+	index := map[string]int{}
+	var groups [][]elementaryTerm[E]
+	for _, t := range f.terms {
+		key := f.k.Text(t.a) + "|" + f.k.Text(t.b)
+		i, ok := index[key]
+		if !ok {
+			i = len(groups)
+			index[key] = i
+			groups = append(groups, nil)
+		}
+		groups[i] = append(groups[i], t)
+	}
+	return groups
+}
+
+// ZeroElementary returns the zero function.
+func ZeroElementary[E any](k algebra.Scalars[E]) Elementary[E] { return Elementary[E]{k: k} }
+
+// IsZero tells whether f is the zero function.
+func (f Elementary[E]) IsZero() bool { return len(f.terms) == 0 }
+
+// Constant returns the value of f if f does not depend on t.
+func (f Elementary[E]) Constant() (E, bool) {
+	switch {
+	case len(f.terms) == 0:
+		return f.k.Zero(), true
+	case len(f.terms) == 1 && f.isConstant(f.terms[0]):
+		return f.terms[0].c, true
+	}
+	return f.k.Zero(), false
+}
+
+func (f Elementary[E]) isConstant(t elementaryTerm[E]) bool {
+	return t.n == 0 && f.k.IsZero(t.a) && f.k.IsZero(t.b)
+}
+
+// gather is a sum under construction: terms of the same n, a, b are merged,
+// in the order of their first appearance.
+type gather[E any] struct {
+	k     algebra.Scalars[E]
+	index map[string]int
+	terms []elementaryTerm[E]
+}
+
+func newGather[E any](k algebra.Scalars[E]) *gather[E] {
+	return &gather[E]{k: k, index: map[string]int{}}
+}
+
+func (g *gather[E]) add(t elementaryTerm[E]) {
+	if g.k.Negative(t.b) {
+		t.b, t.s = g.k.Neg(t.b), g.k.Neg(t.s)
+	}
+	if g.k.IsZero(t.b) {
+		t.s = g.k.Zero()
+	}
+	key := g.k.Text(t.a) + "|" + g.k.Text(t.b) + "|" + strconv.Itoa(t.n)
+	if i, ok := g.index[key]; ok {
+		g.terms[i].c = g.k.Add(g.terms[i].c, t.c)
+		g.terms[i].s = g.k.Add(g.terms[i].s, t.s)
+		return
+	}
+	g.index[key] = len(g.terms)
+	g.terms = append(g.terms, t)
+}
+
+func (g *gather[E]) sum() Elementary[E] {
+	out := g.terms[:0]
+	for _, t := range g.terms {
+		if !g.k.IsZero(t.c) || !g.k.IsZero(t.s) {
+			out = append(out, t)
+		}
+	}
+	return Elementary[E]{k: g.k, terms: out}
+}
+
+// Add returns f + g.
+func (f Elementary[E]) Add(g Elementary[E]) Elementary[E] {
+	acc := newGather(f.k)
+	for _, t := range f.terms {
+		acc.add(t)
+	}
+	for _, t := range g.terms {
+		acc.add(t)
+	}
+	return acc.sum()
+}
+
+// Scale returns x f.
+func (f Elementary[E]) Scale(x E) Elementary[E] {
+	acc := newGather(f.k)
+	for _, t := range f.terms {
+		t.c, t.s = f.k.Mul(x, t.c), f.k.Mul(x, t.s)
+		acc.add(t)
+	}
+	return acc.sum()
+}
+
+// Mul returns f g, by the product formulas for sines and cosines.
+func (f Elementary[E]) Mul(g Elementary[E]) Elementary[E] {
+	k := f.k
+	acc := newGather(k)
+	half, err := k.Inv(k.FromInt(2))
+	if err != nil {
+		panic(err) // the field has characteristic 0
+	}
+	for _, x := range f.terms {
+		for _, y := range g.terms {
+			n, a := x.n+y.n, k.Add(x.a, y.a)
+			cc, ss := k.Mul(x.c, y.c), k.Mul(x.s, y.s)
+			if k.IsZero(x.b) && k.IsZero(y.b) {
+				acc.add(elementaryTerm[E]{n, a, k.Zero(), cc, k.Zero()})
+				continue
+			}
+			sc, cs := k.Mul(x.s, y.c), k.Mul(x.c, y.s)
+			acc.add(elementaryTerm[E]{n, a, k.Sub(x.b, y.b), k.Mul(half, k.Add(cc, ss)), k.Mul(half, k.Sub(sc, cs))})
+			acc.add(elementaryTerm[E]{n, a, k.Add(x.b, y.b), k.Mul(half, k.Sub(cc, ss)), k.Mul(half, k.Add(sc, cs))})
+		}
+	}
+	return acc.sum()
+}
+
+// Derivative returns df/dt.
+func (f Elementary[E]) Derivative() Elementary[E] {
+	k := f.k
+	acc := newGather(k)
+	for _, t := range f.terms {
+		u := t
+		u.c = k.Add(k.Mul(t.a, t.c), k.Mul(t.b, t.s))
+		u.s = k.Sub(k.Mul(t.a, t.s), k.Mul(t.b, t.c))
+		acc.add(u)
+		if t.n > 0 {
+			n := k.FromInt(int64(t.n))
+			acc.add(elementaryTerm[E]{t.n - 1, t.a, t.b, k.Mul(n, t.c), k.Mul(n, t.s)})
+		}
+	}
+	return acc.sum()
+}
+
+// Initial returns f(0).
+func (f Elementary[E]) Initial() E {
+	x := f.k.Zero()
+	for _, t := range f.terms {
+		if t.n == 0 {
+			x = f.k.Add(x, t.c)
+		}
+	}
+	return x
+}
+
+// Shift returns f(t + c), the function in the local time of an origin c. It
+// fails when that needs constants e^(ac), cos(bc) outside the field.
+func (f Elementary[E]) Shift(c E) (Elementary[E], error) {
+	if f.k.IsZero(c) {
+		return f, nil
+	}
+	acc := newGather(f.k)
+	for _, t := range f.terms {
+		if !f.k.IsZero(t.a) || !f.k.IsZero(t.b) {
+			return f, Errorf(OutsideClass, Pos{}, "an input with exponentials, sines or cosines and data at the time %s bring in constants such as e^(%s), which are not covered", f.k.Text(c), f.k.Text(c))
+		}
+		// t^n becomes (t + c)^n.
+		p := algebra.NewPoly[E](f.k, c, f.k.One()).Pow(t.n)
+		for i := 0; i <= t.n; i++ {
+			u := t
+			u.n, u.c = i, f.k.Mul(t.c, p.Coef(i))
+			acc.add(u)
+		}
+	}
+	return acc.sum(), nil
+}
+
+// Image returns the Laplace image of f.
+func (f Elementary[E]) Image() Image[E] {
+	// Terms of one rate share a denominator; the others are coprime, and adding
+	// them in pairs keeps the products balanced.
+	groups := f.byRate()
+	if len(groups) == 0 {
+		return ZeroImage(f.k)
+	}
+	sums := make([]Image[E], len(groups))
+	for i, g := range groups {
+		sums[i] = imageOfRate(f.k, g)
+	}
+	for len(sums) > 1 {
+		half := (len(sums) + 1) / 2
+		for i := range len(sums) / 2 {
+			sums[i] = sums[i].Add(sums[half+i])
+		}
+		sums = sums[:half]
+	}
+	return sums[0]
+}
+
+// imageOfRate returns the image of terms with the same a and b. With r = s - a,
+// t^n e^(at) (c cos bt + s sin bt) has the image
+//
+//	n! Re((c - i s) (r + ib)^(n+1)) / (r^2 + b^2)^(n+1)
+//
+// where Re treats r as real.
+func imageOfRate[E any](k algebra.Scalars[E], group []elementaryTerm[E]) Image[E] {
+	top := 0
+	for _, t := range group {
+		top = max(top, t.n)
+	}
+	cos, sin := make([]E, top+1), make([]E, top+1)
+	for n := range cos {
+		cos[n], sin[n] = k.Zero(), k.Zero()
+	}
+	for _, t := range group {
+		cos[t.n], sin[t.n] = t.c, t.s
+	}
+	fact := k.One()
+	for n := range cos {
+		if n > 1 {
+			fact = k.Mul(fact, k.FromInt(int64(n)))
+		}
+		cos[n], sin[n] = k.Mul(fact, cos[n]), k.Mul(fact, sin[n])
+	}
+	a, b := group[0].a, group[0].b
+	var num, den algebra.Poly[E]
+	if k.IsZero(b) {
+		c := make([]E, top+1)
+		for n := range cos {
+			c[top-n] = cos[n]
+		}
+		num, den = algebra.NewPoly[E](k, c...), algebra.NewPoly[E](k, k.Zero(), k.One())
+	} else {
+		den = algebra.NewPoly[E](k, k.Mul(b, b), k.Zero(), k.One())
+		re, im := algebra.Constant[E](k, k.One()), algebra.Poly[E]{} // (r + ib)^n
+		for n := range cos {
+			re, im = re.ShiftUp(1).Sub(im.Scale(b)), im.ShiftUp(1).Add(re.Scale(b))
+			num = num.Mul(den).Add(re.Scale(cos[n])).Add(im.Scale(sin[n]))
+		}
+	}
+	minus := k.Neg(a)
+	return newImage(k, num.Translate(minus), []primePower[E]{{newPrime(k, den.Translate(minus)), top + 1}})
+}
+
+// elementaryReader converts trees.
+type elementaryReader[E any] struct {
+	env Env[E]
+}
+
+// most pairs of terms that a product may form.
+const mostPairs = 1 << 20
+
+func (r elementaryReader[E]) constant(x E) Elementary[E] {
+	acc := newGather(r.env.K)
+	acc.add(elementaryTerm[E]{0, r.env.K.Zero(), r.env.K.Zero(), x, r.env.K.Zero()})
+	return acc.sum()
+}
+
+func (r elementaryReader[E]) read(n Node) (Elementary[E], error) {
+	k := r.env.K
+	zero := Elementary[E]{k: k}
+	switch v := n.(type) {
+	case Number:
+		return r.constant(k.FromRat(v.Val)), nil
+	case Symbol:
+		if v.Name == r.env.Variable {
+			return Elementary[E]{k: k, terms: []elementaryTerm[E]{{1, k.Zero(), k.Zero(), k.One(), k.Zero()}}}, nil
+		}
+		x, err := r.env.Lookup(v)
+		if err != nil {
+			return zero, err
+		}
+		return r.constant(x), nil
+	case Value:
+		if v.At != nil && v.Order == 0 {
+			return zero, Errorf(UnknownFunction, v.Pos(), "%s is neither a function of the vocabulary (exp, sin, cos, sinh, cosh, sqrt, step, impulse) nor a state", Quote(v.Name))
+		}
+		return zero, Errorf(Syntax, v.Pos(), "%s stands where no derivative or value of a state can", v)
+	case Neg:
+		x, err := r.read(v.X)
+		return x.scaleIf(err, k.FromInt(-1))
+	case Sum:
+		acc := newGather(k)
+		for _, t := range v.Terms {
+			x, err := r.read(t)
+			if err != nil {
+				return zero, err
+			}
+			for _, u := range x.terms {
+				acc.add(u)
+			}
+			if len(acc.terms) > r.env.Limits.Terms {
+				return zero, Errorf(LimitExceeded, t.Pos(), "an expression of more than %d terms", r.env.Limits.Terms)
+			}
+		}
+		return acc.sum(), nil
+	case Product:
+		out := r.constant(k.One())
+		for _, f := range v.Factors {
+			x, err := r.read(f)
+			if err != nil {
+				return zero, err
+			}
+			if out, err = r.mul(out, x, f.Pos()); err != nil {
+				return zero, err
+			}
+		}
+		return out, nil
+	case Quotient:
+		x, err := r.read(v.Num)
+		if err != nil {
+			return zero, err
+		}
+		y, err := r.read(v.Den)
+		if err != nil {
+			return zero, err
+		}
+		inv, err := r.invert(y, v.Den)
+		if err != nil {
+			return zero, err
+		}
+		return r.mul(x, inv, v.Pos())
+	case Power:
+		return r.power(v)
+	case Call:
+		return r.call(v)
+	case RootSum:
+		return zero, Errorf(OutsideClass, v.Pos(), "a sum over named roots is a result, not an input")
+	}
+	panic("expr: unknown node")
+}
+
+func (f Elementary[E]) scaleIf(err error, x E) (Elementary[E], error) {
+	if err != nil {
+		return f, err
+	}
+	return f.Scale(x), nil
+}
+
+func (r elementaryReader[E]) mul(x, y Elementary[E], at Pos) (Elementary[E], error) {
+	if len(x.terms)*len(y.terms) > mostPairs {
+		return x, Errorf(LimitExceeded, at, "a product of %d by %d terms", len(x.terms), len(y.terms))
+	}
+	z := x.Mul(y)
+	if len(z.terms) > r.env.Limits.Terms {
+		return z, Errorf(LimitExceeded, at, "an expression of more than %d terms", r.env.Limits.Terms)
+	}
+	for _, t := range z.terms {
+		if t.n > r.env.Limits.Degree {
+			return z, Errorf(LimitExceeded, at, "the power %d of %s is beyond %d", t.n, r.env.Variable, r.env.Limits.Degree)
+		}
+	}
+	return z, nil
+}
+
+// invert returns 1/x for a constant or a pure exponential.
+func (r elementaryReader[E]) invert(x Elementary[E], n Node) (Elementary[E], error) {
+	k := r.env.K
+	if x.IsZero() {
+		return x, Errorf(Singular, n.Pos(), "division by zero: %s vanishes", Quote(n.String()))
+	}
+	if len(x.terms) != 1 || x.terms[0].n > 0 || !k.IsZero(x.terms[0].b) {
+		return x, Errorf(OutsideClass, n.Pos(), "division by %s, which depends on %s and is not a pure exponential: inputs are sums of products of polynomials, exponentials, sines and cosines", Quote(n.String()), r.env.Variable)
+	}
+	t := x.terms[0]
+	inv, err := k.Inv(t.c)
+	if err != nil {
+		return x, err
+	}
+	t.c, t.a = inv, k.Neg(t.a)
+	return Elementary[E]{k: k, terms: []elementaryTerm[E]{t}}, nil
+}
+
+func (r elementaryReader[E]) power(v Power) (Elementary[E], error) {
+	k := r.env.K
+	zero := Elementary[E]{k: k}
+	exponent, err := r.read(v.Exp)
+	if err != nil {
+		return zero, err
+	}
+	base, err := r.read(v.Base)
+	if err != nil {
+		return zero, err
+	}
+	e, isConst := exponent.Constant()
+	if !isConst {
+		return zero, Errorf(OutsideClass, v.Exp.Pos(), "an exponent that depends on %s: exponentials are written exp(...)", r.env.Variable)
+	}
+	q, rational := k.Rational(e)
+	if !rational {
+		return zero, Errorf(OutsideClass, v.Exp.Pos(), "the exponent %s is not a rational number", Quote(v.Exp.String()))
+	}
+	if x, ok := base.Constant(); ok {
+		y, err := scalarEval[E]{k, r.env.Limits}.pow(x, q, v.Pos())
+		if err != nil {
+			return zero, err
+		}
+		return r.constant(y), nil
+	}
+	n, ok := q.Int64()
+	switch {
+	case !ok && q.IsInt() || abs(n) > int64(r.env.Limits.Degree):
+		return zero, Errorf(LimitExceeded, v.Pos(), "the exponent %s is beyond %d", q, r.env.Limits.Degree)
+	case !ok:
+		return zero, Errorf(OutsideClass, v.Pos(), "a fractional power of a function of %s", r.env.Variable)
+	case n < 0:
+		if base, err = r.invert(base, v.Base); err != nil {
+			return zero, err
+		}
+		n = -n
+	}
+	out := r.constant(k.One())
+	for ; n > 0; n >>= 1 {
+		if n&1 == 1 {
+			if out, err = r.mul(out, base, v.Pos()); err != nil {
+				return zero, err
+			}
+		}
+		if n > 1 {
+			if base, err = r.mul(base, base, v.Pos()); err != nil {
+				return zero, err
+			}
+		}
+	}
+	return out, nil
+}
+
+func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
+	k := r.env.K
+	zero := Elementary[E]{k: k}
+	switch v.Func {
+	case "step", "impulse":
+		return zero, Errorf(OutsideClass, v.Pos(), "switched inputs (%s) are not covered", v.Func)
+	case "sqrt":
+		return r.power(Power{v.place, v.Arg, Num(algebra.NewRat(1, 2))})
+	}
+	arg, err := r.read(v.Arg)
+	if err != nil {
+		return zero, err
+	}
+	// The argument must be b t + a with a = 0: e^a and cos(a) are not in K.
+	slope := k.Zero()
+	for _, t := range arg.terms {
+		switch {
+		case t.n == 1 && k.IsZero(t.a) && k.IsZero(t.b):
+			slope = t.c
+		case arg.isConstant(t):
+			return zero, Errorf(OutsideClass, v.Pos(), "%s brings in a constant such as %s(%s), which is not covered: coefficients and data are rational", Quote(v.String()), v.Func, k.Text(t.c))
+		default:
+			return zero, Errorf(OutsideClass, v.Pos(), "the argument of %s is not of the form b*%s: inputs are sums of products of polynomials, exponentials, sines and cosines", v.Func, r.env.Variable)
+		}
+	}
+	acc := newGather(k)
+	o, l := k.Zero(), k.One()
+	half, err := k.Inv(k.FromInt(2))
+	if err != nil {
+		return zero, err
+	}
+	neg := k.Neg(slope)
+	switch v.Func {
+	case "exp":
+		acc.add(elementaryTerm[E]{0, slope, o, l, o})
+	case "cos":
+		acc.add(elementaryTerm[E]{0, o, slope, l, o})
+	case "sin":
+		acc.add(elementaryTerm[E]{0, o, slope, o, l})
+	case "cosh":
+		acc.add(elementaryTerm[E]{0, slope, o, half, o})
+		acc.add(elementaryTerm[E]{0, neg, o, half, o})
+	case "sinh":
+		acc.add(elementaryTerm[E]{0, slope, o, half, o})
+		acc.add(elementaryTerm[E]{0, neg, o, k.Neg(half), o})
+	default:
+		return zero, Errorf(UnknownFunction, v.Pos(), "%s", Quote(v.Func))
+	}
+	return acc.sum(), nil
+}

@@ -1,0 +1,469 @@
+package expr
+
+import (
+	"context"
+	"fmt"
+	"go/format"
+	gotoken "go/token"
+	"math"
+	"sort"
+	"strconv"
+	"strings"
+	"unicode"
+
+	"example.org/closedform/algebra"
+)
+
+// GoOptions says how generated Go source is named.
+type GoOptions struct {
+	Package string // default "response"
+	Func    string // default "Response", and the type of its result is FuncState
+	// Doc holds lines for the comment at the top, such as the model.
+	Doc []string
+}
+
+// GoSource writes a Go function that evaluates the named functions at a time,
+// with no dependency but math, formatted by gofmt. Every constant is the float64
+// nearest to its exact value; exponentials, sines and cosines are computed once
+// for all functions; polynomials in time are in Horner's form. Free constants
+// become an array argument. The functions must share variable and origin.
+func GoSource(ctx context.Context, names []string, fs []Function, constants []string, opt GoOptions) ([]byte, error) {
+	if opt.Package == "" {
+		opt.Package = "response"
+	}
+	if opt.Func == "" {
+		opt.Func = "Response"
+	}
+	for _, id := range []string{opt.Package, opt.Func} {
+		if !gotoken.IsIdentifier(id) {
+			return nil, Errorf(Syntax, Pos{}, "%s is not a Go identifier", Quote(id))
+		}
+	}
+	g := goWriter{opt: opt, names: names, constants: constants, time: "t"}
+	if len(fs) > 0 && !fs[0].origin.IsZero() {
+		g.time = "tau"
+	}
+	bodies := make([]string, len(fs))
+	for i, f := range fs {
+		var err error
+		if bodies[i], err = g.function(ctx, f); err != nil {
+			return nil, err
+		}
+	}
+	return format.Source([]byte(g.file(fs, bodies)))
+}
+
+// goWriter collects the rates that the functions share.
+type goWriter struct {
+	opt       GoOptions
+	names     []string
+	constants []string
+	time      string // t, or tau for a local time
+	rates     []goRate
+}
+
+// goRate is a pair of conjugate rates, or a real one.
+type goRate struct {
+	p      algebra.Poly[algebra.Rat]
+	root   int
+	re, im float64
+}
+
+// rate returns the index of a rate in the list, entering it if it is new.
+func (g *goWriter) rate(p algebra.Poly[algebra.Rat], root int, re, im float64) int {
+	for i, r := range g.rates {
+		if r.root == root && r.p.Equal(p) {
+			return i
+		}
+	}
+	g.rates = append(g.rates, goRate{p, root, re, im})
+	return len(g.rates) - 1
+}
+
+// function returns the expression of f.
+func (g *goWriter) function(ctx context.Context, f Function) (string, error) {
+	var sum goSum
+	for _, t := range f.free {
+		s, err := g.image(ctx, t.Image)
+		if err != nil {
+			return "", err
+		}
+		for i, name := range g.constants {
+			if name == t.Name {
+				sum.add(false, fmt.Sprintf("c[%d]*(%s)", i, s))
+			}
+		}
+	}
+	s, err := g.image(ctx, f.base)
+	if err != nil {
+		return "", err
+	}
+	if s != "0" {
+		sum.add(false, s)
+	}
+	return sum.String(), nil
+}
+
+// goSum is a sum in the making.
+type goSum struct{ b strings.Builder }
+
+func (s *goSum) add(minus bool, term string) {
+	switch {
+	case minus && s.b.Len() == 0:
+		s.b.WriteString("-")
+	case minus:
+		s.b.WriteString(" - ")
+	case s.b.Len() > 0:
+		s.b.WriteString(" + ")
+	}
+	s.b.WriteString(term)
+}
+
+func (s *goSum) String() string {
+	if s.b.Len() == 0 {
+		return "0"
+	}
+	return s.b.String()
+}
+
+// goTerm is (c[0] + c[1] t + ...) times the exponential of a rate, with the
+// coefficients of the cosine and of the sine.
+type goTerm struct {
+	rate     int
+	cos, sin []float64
+}
+
+// image returns the expression of an image, entering its rates.
+func (g *goWriter) image(ctx context.Context, f Image[algebra.Rat]) (string, error) {
+	terms, err := g.terms(ctx, f)
+	if err != nil {
+		return "", err
+	}
+	var sum goSum
+	for _, t := range terms {
+		r := g.rates[t.rate]
+		exp := ""
+		if r.re != 0 {
+			exp = fmt.Sprintf("e%d", t.rate+1)
+		}
+		if r.im == 0 {
+			g.addProduct(&sum, t.cos, exp)
+			continue
+		}
+		cos, sin := fmt.Sprintf("c%d", t.rate+1), fmt.Sprintf("s%d", t.rate+1)
+		if exp == "" || allZero(t.cos) || allZero(t.sin) {
+			g.addProduct(&sum, t.cos, exp, cos)
+			g.addProduct(&sum, t.sin, exp, sin)
+			continue
+		}
+		var inner goSum
+		g.addProduct(&inner, t.cos, cos)
+		g.addProduct(&inner, t.sin, sin)
+		sum.add(false, exp+"*("+inner.String()+")")
+	}
+	return sum.String(), nil
+}
+
+func allZero(c []float64) bool {
+	for _, x := range c {
+		if x != 0 {
+			return false
+		}
+	}
+	return true
+}
+
+// addProduct adds a polynomial in time, in Horner's form, times the factors
+// that are not empty.
+func (g *goWriter) addProduct(sum *goSum, c []float64, factors ...string) {
+	if allZero(c) {
+		return
+	}
+	var parts []string
+	for _, f := range factors {
+		if f != "" {
+			parts = append(parts, f)
+		}
+	}
+	for c[len(c)-1] == 0 {
+		c = c[:len(c)-1]
+	}
+	minus, poly := c[len(c)-1] < 0, goFloat(math.Abs(c[len(c)-1]))
+	for i := len(c) - 2; i >= 0; i-- {
+		if strings.Contains(poly, " ") {
+			poly = "(" + poly + ")"
+		}
+		poly = g.time + "*" + poly
+		if poly == g.time+"*1" {
+			poly = g.time
+		}
+		if c[i] != 0 {
+			var s goSum
+			s.add(c[i] < 0, goFloat(math.Abs(c[i])))
+			s.add(minus, poly)
+			minus, poly = false, s.String()
+		}
+	}
+	if strings.Contains(poly, " ") && (minus || len(parts) > 0) {
+		poly = "(" + poly + ")"
+	}
+	if poly != "1" || len(parts) == 0 {
+		parts = append([]string{poly}, parts...)
+	}
+	sum.add(minus, strings.Join(parts, "*"))
+}
+
+func goFloat(x float64) string { return strconv.FormatFloat(x, 'g', -1, 64) }
+
+// terms returns the terms of f with correctly rounded constants, in the order
+// of the written form.
+func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, error) {
+	order := make([]int, len(f.den))
+	for i := range order {
+		order[i] = i
+	}
+	sort.SliceStable(order, func(a, b int) bool { return before(f.den[order[a]].p, f.den[order[b]].p) })
+	for prec := uint(128); prec <= mostPrecision; prec *= 2 {
+		expanded, err := f.expand(ctx, prec)
+		if err != nil {
+			return nil, err
+		}
+		byPrime := make([][]goTerm, len(f.den))
+		ok := true
+		next := 0
+		for i, pp := range f.den {
+			roots, err := pp.rootSet(ctx, f.k)
+			if err != nil {
+				return nil, err
+			}
+			var exact []float64
+			if pp.p.Degree() == 1 {
+				for _, c := range f.local(i).c {
+					exact = append(exact, constantTerm(c).Float64())
+				}
+			}
+			for r := range roots.Len() {
+				if roots.Conjugate(r) < r {
+					continue
+				}
+				s := expanded[next]
+				next++
+				re, okRe := roundBall(s.rate.Re, 0)
+				im, okIm := roundBall(s.rate.Im, 0)
+				ok = ok && okRe && okIm
+				t := goTerm{cos: exact}
+				for k := 0; exact == nil && k < len(s.c); k++ {
+					double := int64(0)
+					if s.paired {
+						double = 1
+					}
+					u, okU := roundBall(s.c[k].Re, double)
+					v, okV := 0.0, true
+					if s.paired {
+						v, okV = roundBall(s.c[k].Im, double)
+					}
+					ok = ok && okU && okV
+					t.cos, t.sin = append(t.cos, u), append(t.sin, -v)
+				}
+				if ok {
+					t.rate = g.rate(pp.p, r, re, im)
+					byPrime[i] = append(byPrime[i], t)
+				}
+			}
+		}
+		if ok {
+			var out []goTerm
+			for _, i := range order {
+				out = append(out, byPrime[i]...)
+			}
+			return out, nil
+		}
+	}
+	return nil, Errorf(LimitExceeded, Pos{}, "a constant of the formula needs more than %d bits to be rounded", mostPrecision)
+}
+
+// constantTerm returns the coefficient of s^0.
+func constantTerm(p algebra.Poly[algebra.Rat]) algebra.Rat {
+	if p.IsZero() {
+		return algebra.Rat{}
+	}
+	return p.Coef(0)
+}
+
+// roundBall returns the float64 nearest to 2^shift times the number in the
+// ball, if the ball determines it. A number that is 0 is certain to round to 0
+// once the ball is below the smallest float64.
+func roundBall(b algebra.Ball, shift int64) (float64, bool) {
+	lo, hi := b.MulPow2(shift).Interval()
+	x, _ := lo.Float64()
+	y, _ := hi.Float64()
+	return x + 0, x == y // + 0 turns -0 into 0
+}
+
+// file assembles the source.
+func (g *goWriter) file(fs []Function, bodies []string) string {
+	var b strings.Builder
+	line := func(format string, args ...any) { fmt.Fprintf(&b, format+"\n", args...) }
+	state := g.opt.Func + "State"
+	variable, origin := "t", algebra.Rat{}
+	if len(fs) > 0 {
+		variable, origin = fs[0].variable, fs[0].origin
+	}
+	line("// Package %s evaluates a closed-form response.", g.opt.Package)
+	for i, d := range g.opt.Doc {
+		if i == 0 {
+			line("//")
+		}
+		line("//\t%s", inert(d))
+	}
+	line("package %s\n", g.opt.Package)
+	usesMath := false
+	for _, r := range g.rates {
+		usesMath = usesMath || r.re != 0 || r.im != 0
+	}
+	if usesMath {
+		line("import \"math\"\n")
+	}
+	line("// %s holds the values of the states at one time.", state)
+	line("type %s struct {", state)
+	fields := goNames(g.names)
+	for i, f := range fields {
+		line("%s float64 // %s", f, inert(g.names[i]))
+	}
+	line("}\n")
+	line("// %s returns the states at the time %s:", g.opt.Func, inert(variable))
+	line("//")
+	for i, f := range fs {
+		for j, l := range wrap(inert(g.names[i]+" = "+f.String()), 96) {
+			if j > 0 {
+				l = "    " + l
+			}
+			line("//\t%s", l)
+		}
+	}
+	arg := ""
+	if n := len(g.constants); n > 0 {
+		line("//\n// c holds the constants %s.", inert(strings.Join(g.constants, ", ")))
+		arg = fmt.Sprintf(", c [%d]float64", n)
+	}
+	all := strings.Join(bodies, " ")
+	switch {
+	case len(g.rates) == 0:
+		line("func %s(_ float64%s) %s {", g.opt.Func, arg, state) // all states are constant
+	case g.time == "t":
+		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
+	default:
+		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
+		line("tau := t - %s", goFloat(origin.Float64()))
+	}
+	for i, r := range g.rates {
+		if r.re != 0 {
+			line("e%d := math.Exp(%s)", i+1, g.times(r.re))
+		}
+		if r.im != 0 {
+			s, c := fmt.Sprintf("s%d", i+1), fmt.Sprintf("c%d", i+1)
+			switch {
+			case !usesName(all, s):
+				line("%s := math.Cos(%s)", c, g.times(r.im))
+			case !usesName(all, c):
+				line("%s := math.Sin(%s)", s, g.times(r.im))
+			default:
+				line("%s, %s := math.Sincos(%s)", s, c, g.times(r.im))
+			}
+		}
+	}
+	line("return %s{", state)
+	for i, f := range fields {
+		line("%s: %s,", f, bodies[i])
+	}
+	line("}\n}")
+	return b.String()
+}
+
+// times returns x times the time.
+func (g *goWriter) times(x float64) string {
+	switch x {
+	case 1:
+		return g.time
+	case -1:
+		return "-" + g.time
+	}
+	return goFloat(x) + " * " + g.time
+}
+
+// usesName tells whether an identifier occurs in an expression.
+func usesName(src, name string) bool {
+	for i := strings.Index(src, name); i >= 0; {
+		end := i + len(name)
+		if end == len(src) || !isNamePart(rune(src[end])) {
+			return true
+		}
+		next := strings.Index(src[end:], name)
+		if next < 0 {
+			return false
+		}
+		i = end + next
+	}
+	return false
+}
+
+// inert keeps a text on its line: what does not print is escaped.
+func inert(s string) string {
+	var b strings.Builder
+	for _, r := range s {
+		if unicode.IsPrint(r) {
+			b.WriteRune(r)
+		} else {
+			b.WriteString(strings.Trim(strconv.QuoteRune(r), "'"))
+		}
+	}
+	return b.String()
+}
+
+// wrap breaks a text at blanks into lines of about the given width.
+func wrap(s string, width int) []string {
+	var lines []string
+	for len(s) > width {
+		i := strings.LastIndex(s[:width], " ")
+		if i <= 0 {
+			if i = strings.Index(s[width:], " "); i < 0 {
+				break
+			}
+			i += width
+		}
+		lines = append(lines, s[:i])
+		s = s[i+1:]
+	}
+	return append(lines, s)
+}
+
+// goNames turns names into exported Go identifiers without collisions.
+func goNames(names []string) []string {
+	used := map[string]bool{}
+	out := make([]string, len(names))
+	for i, name := range names {
+		var b strings.Builder
+		upper := true
+		for _, r := range name {
+			switch {
+			case !unicode.IsLetter(r) && !unicode.IsDigit(r):
+				upper = true
+			case upper:
+				b.WriteRune(unicode.ToUpper(r))
+				upper = false
+			default:
+				b.WriteRune(r)
+			}
+		}
+		id := b.String()
+		if first := []rune(id + "0")[0]; !unicode.IsUpper(first) {
+			id = "X" + id
+		}
+		for n := 2; used[id]; n++ {
+			id = fmt.Sprintf("%s_%d", strings.TrimRight(id, "_0123456789"), n)
+		}
+		used[id] = true
+		out[i] = id
+	}
+	return out
+}

@@ -1,0 +1,251 @@
+package expr
+
+import (
+	"context"
+	"strconv"
+
+	"example.org/closedform/algebra"
+)
+
+// image converts a tree to the image of a function of t: terms of the
+// elementary class, and sums over named roots.
+func (env Env[E]) image(n Node) (Image[E], error) {
+	env.Limits = env.Limits.WithDefaults()
+	if !hasRootSum(n) {
+		f, err := env.Elementary(n)
+		if err != nil {
+			return Image[E]{}, err
+		}
+		return f.Image(), nil
+	}
+	switch v := n.(type) {
+	case RootSum:
+		return env.rootSum(v)
+	case Neg:
+		f, err := env.image(v.X)
+		if err != nil {
+			return f, err
+		}
+		return f.Scale(env.K.FromInt(-1)), nil
+	case Sum:
+		sum := ZeroImage(env.K)
+		for _, t := range v.Terms {
+			f, err := env.image(t)
+			if err != nil {
+				return f, err
+			}
+			sum = sum.Add(f)
+		}
+		return sum, nil
+	}
+	return Image[E]{}, Errorf(OutsideClass, n.Pos(), "a sum over named roots stands alone or in a sum")
+}
+
+func hasRootSum(n Node) bool {
+	_, found := n.(RootSum)
+	Children(n, func(c Node) bool {
+		found = found || hasRootSum(c)
+		return !found
+	})
+	return found
+}
+
+// rootSum returns the image of a sum over the roots z of a square-free p of
+// terms c(z) t^k e^(zt). With the k-th coefficient C of K[s]/(p), the image of
+// the sum of C(z) e^(zt) is N/p, N = C p' mod p; a factor t is -d/ds.
+func (env Env[E]) rootSum(v RootSum) (Image[E], error) {
+	k := env.K
+	inner := env
+	inner.Variable = v.Var
+	lookup := env.Lookup
+	inner.Lookup = func(s Symbol) (E, error) {
+		if s.Name == env.Variable {
+			return k.Zero(), Errorf(OutsideClass, s.Pos(), "%s in the polynomial of a sum over roots", env.Variable)
+		}
+		return lookup(s)
+	}
+	f, err := inner.Elementary(v.Poly)
+	if err != nil {
+		return Image[E]{}, err
+	}
+	p, ok := f.poly()
+	if !ok || p.Degree() < 1 {
+		return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "%s is not a polynomial in %s", Quote(v.Poly.String()), v.Var)
+	}
+	factors, err := k.FactorPoly(context.Background(), p)
+	if err != nil {
+		return Image[E]{}, err
+	}
+	sum := ZeroImage(k)
+	for _, fac := range factors {
+		if fac.Mult > 1 {
+			return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "the polynomial of a sum over roots has a multiple root")
+		}
+		l := algebra.NewExtension[E](k, fac.P, v.Var)
+		b, err := (rootBody[E]{env: env, l: l, root: v.Var}).read(v.Body)
+		if err != nil {
+			return Image[E]{}, err
+		}
+		dp := l.Reduce(fac.P.Derivative())
+		den := NewDenominator(k, []algebra.Factor[E]{{P: fac.P, Mult: 1}})
+		for _, t := range b {
+			if t.exps != 1 {
+				return Image[E]{}, Errorf(OutsideClass, v.Body.Pos(), "the terms of a sum over roots have the factor exp(%s*%s) once", v.Var, env.Variable)
+			}
+			g := den.Image(l.Mul(t.c, dp))
+			for range t.n {
+				g = g.TimesT()
+			}
+			sum = sum.Add(g)
+		}
+	}
+	return sum, nil
+}
+
+// poly returns f as a polynomial in its variable, if it is one.
+func (f Elementary[E]) poly() (algebra.Poly[E], bool) {
+	var p algebra.Poly[E]
+	for _, t := range f.terms {
+		if !f.k.IsZero(t.a) || !f.k.IsZero(t.b) {
+			return p, false
+		}
+		p = p.Add(algebra.Monomial[E](f.k, t.c, t.n))
+	}
+	return p, true
+}
+
+// rootTerm is c t^n e^(exps z t) with c in K[z]/(p).
+type rootTerm[E any] struct {
+	n, exps int
+	c       algebra.Poly[E]
+}
+
+// rootBody reads the body of a sum over roots as a sum of root terms.
+type rootBody[E any] struct {
+	env  Env[E]
+	l    *algebra.Extension[E]
+	root string
+}
+
+func (r rootBody[E]) outside(n Node) error {
+	return Errorf(OutsideClass, n.Pos(), "%s is not a sum of terms c(%s)*%s^k*exp(%s*%s)", Quote(n.String()), r.root, r.env.Variable, r.root, r.env.Variable)
+}
+
+func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
+	switch v := n.(type) {
+	case Number:
+		return []rootTerm[E]{{c: r.l.FromBase(r.env.K.FromRat(v.Val))}}, nil
+	case Symbol:
+		switch v.Name {
+		case r.root:
+			return []rootTerm[E]{{c: r.l.Root()}}, nil
+		case r.env.Variable:
+			return []rootTerm[E]{{n: 1, c: r.l.One()}}, nil
+		}
+		x, err := r.env.Lookup(v)
+		if err != nil {
+			return nil, err
+		}
+		return []rootTerm[E]{{c: r.l.FromBase(x)}}, nil
+	case Neg:
+		return r.readProduct([]Node{Int(-1), v.X})
+	case Sum:
+		var out []rootTerm[E]
+		for _, t := range v.Terms {
+			x, err := r.read(t)
+			if err != nil {
+				return nil, err
+			}
+			out = r.collect(append(out, x...))
+		}
+		return out, nil
+	case Product:
+		return r.readProduct(v.Factors)
+	case Quotient:
+		num, err := r.read(v.Num)
+		if err != nil {
+			return nil, err
+		}
+		den, err := r.read(v.Den)
+		if err != nil {
+			return nil, err
+		}
+		if len(den) != 1 || den[0].n > 0 || den[0].exps != 0 {
+			return nil, r.outside(v.Den)
+		}
+		inv, err := r.l.Inv(den[0].c)
+		if err != nil {
+			return nil, Errorf(Singular, v.Den.Pos(), "the denominator %s vanishes at a root", Quote(v.Den.String()))
+		}
+		return r.product(num, []rootTerm[E]{{c: inv}}), nil
+	case Power:
+		e, ok := v.Exp.(Number)
+		m, small := e.Val.Int64()
+		if !ok || !small || m < 0 || m > int64(r.env.Limits.Degree) {
+			return nil, r.outside(n)
+		}
+		base, err := r.read(v.Base)
+		if err != nil {
+			return nil, err
+		}
+		out := []rootTerm[E]{{c: r.l.One()}}
+		for range m {
+			out = r.product(out, base)
+		}
+		return out, nil
+	case Call:
+		arg, err := r.read(v.Arg)
+		if err != nil {
+			return nil, err
+		}
+		if v.Func != "exp" || len(arg) != 1 || arg[0].n != 1 || arg[0].exps != 0 || !arg[0].c.Equal(r.l.Root()) {
+			return nil, r.outside(n)
+		}
+		return []rootTerm[E]{{exps: 1, c: r.l.One()}}, nil
+	}
+	return nil, r.outside(n)
+}
+
+func (r rootBody[E]) readProduct(factors []Node) ([]rootTerm[E], error) {
+	out := []rootTerm[E]{{c: r.l.One()}}
+	for _, f := range factors {
+		x, err := r.read(f)
+		if err != nil {
+			return nil, err
+		}
+		out = r.product(out, x)
+	}
+	return out, nil
+}
+
+func (r rootBody[E]) product(a, b []rootTerm[E]) []rootTerm[E] {
+	var out []rootTerm[E]
+	for _, x := range a {
+		for _, y := range b {
+			out = append(out, rootTerm[E]{x.n + y.n, x.exps + y.exps, r.l.Mul(x.c, y.c)})
+		}
+	}
+	return r.collect(out)
+}
+
+// collect merges like terms and drops zeros.
+func (r rootBody[E]) collect(terms []rootTerm[E]) []rootTerm[E] {
+	index := map[string]int{}
+	var out []rootTerm[E]
+	for _, t := range terms {
+		key := strconv.Itoa(t.n) + "|" + strconv.Itoa(t.exps)
+		if i, ok := index[key]; ok {
+			out[i].c = out[i].c.Add(t.c)
+			continue
+		}
+		index[key] = len(out)
+		out = append(out, t)
+	}
+	kept := out[:0]
+	for _, t := range out {
+		if !t.c.IsZero() {
+			kept = append(kept, t)
+		}
+	}
+	return kept
+}

@@ -1,0 +1,349 @@
+package linsys
+
+import (
+	"sort"
+	"strings"
+
+	"example.org/closedform/algebra"
+	"example.org/closedform/expr"
+)
+
+// builder sorts the statements of a model into definitions, equations and side
+// conditions, and reads them over Q.
+type builder struct {
+	*Model
+	fixed bool // the unknowns are given, not found
+
+	unknowns    map[string]int
+	definitions map[string]expr.Equation
+	values      map[string]algebra.Rat
+	inProgress  map[string]bool
+	equations   []expr.Equation
+}
+
+func (b *builder) build() error {
+	b.unknowns = map[string]int{}
+	b.definitions = map[string]expr.Equation{}
+	b.values = map[string]algebra.Rat{}
+	b.inProgress = map[string]bool{}
+	if err := b.classify(); err != nil {
+		return err
+	}
+	if len(b.names) > b.limits.States {
+		return expr.Errorf(expr.LimitExceeded, expr.Pos{}, "the model has %d states, at most %d are taken", len(b.names), b.limits.States)
+	}
+	if err := b.readConditions(); err != nil {
+		return err
+	}
+	return b.readEquations()
+}
+
+// functionOf returns the derivative that a node denotes: x, x', x” or, with the
+// argument written out, x'(t).
+func (b *builder) functionOf(n expr.Node) (name string, order int, ok bool) {
+	switch v := n.(type) {
+	case expr.Symbol:
+		return v.Name, 0, true
+	case expr.Value:
+		if s, isName := v.At.(expr.Symbol); v.At == nil || (isName && s.Name == b.variable) {
+			return v.Name, v.Order, true
+		}
+	}
+	return "", 0, false
+}
+
+// each calls visit for n and all nodes below it, in source order.
+func each(n expr.Node, visit func(expr.Node)) {
+	visit(n)
+	expr.Children(n, func(c expr.Node) bool {
+		each(c, visit)
+		return true
+	})
+}
+
+// valuesIn tells whether a statement contains the value of something at a time,
+// which makes it a side condition.
+func (b *builder) isSide(eq expr.Equation) bool {
+	found := false
+	for _, side := range []expr.Node{eq.Left, eq.Right} {
+		each(side, func(n expr.Node) {
+			if v, ok := n.(expr.Value); ok && v.At != nil {
+				if _, _, isFunction := b.functionOf(v); !isFunction {
+					found = true
+				}
+			}
+		})
+	}
+	return found
+}
+
+// classify finds the unknowns and sorts the statements.
+func (b *builder) classify() error {
+	var dynamic []expr.Equation
+	for _, eq := range b.statements {
+		if b.isSide(eq) {
+			b.sideOf = append(b.sideOf, eq)
+		} else {
+			dynamic = append(dynamic, eq)
+		}
+	}
+	var reserved error
+	for _, eq := range dynamic {
+		for _, side := range []expr.Node{eq.Left, eq.Right} {
+			each(side, func(n expr.Node) {
+				v, ok := n.(expr.Value)
+				if !ok || v.Order == 0 {
+					return
+				}
+				if v.Name == b.variable || v.Name == "pi" {
+					reserved = expr.Errorf(expr.Syntax, v.Pos(), "%s cannot be a state", v.Name)
+				}
+				if !b.fixed {
+					b.addUnknown(v.Name)
+				}
+			})
+		}
+	}
+	if reserved != nil {
+		return reserved
+	}
+	if b.fixed {
+		for i, name := range b.names {
+			b.unknowns[name] = i
+		}
+		b.equations = dynamic
+		b.equationOf = dynamic
+		return nil
+	}
+	// name = expression defines a constant, unless the expression holds time or a
+	// state: then it is an algebraic equation for one more state.
+	candidates := map[string]expr.Equation{}
+	for _, eq := range dynamic {
+		s, ok := eq.Left.(expr.Symbol)
+		if _, isUnknown := b.unknowns[s.Name]; !ok || isUnknown || s.Name == b.variable {
+			continue
+		}
+		if s.Name == "pi" {
+			return expr.Errorf(expr.Syntax, s.Pos(), "pi has a value already")
+		}
+		if first, twice := candidates[s.Name]; twice {
+			return expr.Errorf(expr.WrongShape, s.Pos(), "%s is defined a second time; the first is at line %d", s.Name, first.Pos.Line)
+		}
+		candidates[s.Name] = eq
+	}
+	for changed := true; changed; {
+		changed = false
+		for _, eq := range dynamic {
+			s, ok := eq.Left.(expr.Symbol)
+			if _, candidate := candidates[s.Name]; ok && candidate && b.dependsOnState(eq.Right) {
+				delete(candidates, s.Name)
+				b.addUnknown(s.Name)
+				changed = true
+			}
+		}
+	}
+	for _, eq := range dynamic {
+		if s, ok := eq.Left.(expr.Symbol); ok {
+			if _, isDefinition := candidates[s.Name]; isDefinition {
+				b.definitions[s.Name] = eq
+				b.defined = append(b.defined, eq)
+				continue
+			}
+		}
+		b.equations = append(b.equations, eq)
+	}
+	b.equationOf = b.equations
+	return b.balance()
+}
+
+// balance compares the numbers of equations and unknowns. Names without a value
+// become states given by algebraic equations if exactly as many equations are
+// left over.
+func (b *builder) balance() error {
+	var loose []string
+	seen := map[string]bool{}
+	for _, eq := range b.equations {
+		for _, side := range []expr.Node{eq.Left, eq.Right} {
+			each(side, func(n expr.Node) {
+				name, order, ok := b.functionOf(n)
+				_, isUnknown := b.unknowns[name]
+				_, isDefinition := b.definitions[name]
+				if ok && order == 0 && !isUnknown && !isDefinition && !seen[name] && name != b.variable && name != "pi" {
+					seen[name] = true
+					loose = append(loose, name)
+				}
+			})
+		}
+	}
+	surplus := len(b.equations) - len(b.names)
+	if surplus > 0 && surplus == len(loose) {
+		for _, name := range loose {
+			b.addUnknown(name)
+		}
+		surplus = 0
+	}
+	if surplus == 0 {
+		return nil
+	}
+	at := expr.Pos{}
+	if len(b.equations) > 0 {
+		at = b.equations[len(b.equations)-1].Pos
+	}
+	if surplus > 0 && len(b.names) == 0 {
+		return expr.Errorf(expr.WrongShape, at, "an equation without a state: states appear with primes, as in x' = -x")
+	}
+	return expr.Errorf(expr.WrongShape, at, "%d equations for %d states (%s)", len(b.equations), len(b.names), strings.Join(b.names, ", "))
+}
+
+func (b *builder) addUnknown(name string) {
+	if _, ok := b.unknowns[name]; !ok {
+		b.unknowns[name] = len(b.names)
+		b.names = append(b.names, name)
+	}
+}
+
+// dependsOnState tells whether a state or the independent variable occurs.
+func (b *builder) dependsOnState(n expr.Node) bool {
+	found := false
+	each(n, func(c expr.Node) {
+		if name, _, ok := b.functionOf(c); ok {
+			if _, isUnknown := b.unknowns[name]; isUnknown || name == b.variable {
+				found = true
+			}
+		}
+	})
+	return found
+}
+
+// lookup returns the value of a defined name.
+func (b *builder) lookup(s expr.Symbol) (algebra.Rat, error) {
+	if x, ok := b.values[s.Name]; ok {
+		return x, nil
+	}
+	def, ok := b.definitions[s.Name]
+	if !ok {
+		return expr.NoNames(s)
+	}
+	if b.inProgress[s.Name] {
+		return algebra.Rat{}, expr.Errorf(expr.Singular, s.Pos(), "%s is defined by itself", s.Name)
+	}
+	if len(b.inProgress) > b.limits.Nesting {
+		return algebra.Rat{}, expr.Errorf(expr.LimitExceeded, s.Pos(), "definitions are nested more than %d deep", b.limits.Nesting)
+	}
+	b.inProgress[s.Name] = true
+	defer delete(b.inProgress, s.Name)
+	f, err := b.env().Elementary(def.Right)
+	if err != nil {
+		return algebra.Rat{}, err
+	}
+	x, ok := f.Constant()
+	if !ok {
+		return x, expr.Errorf(expr.OutsideClass, def.Right.Pos(), "%s is not a constant", s.Name)
+	}
+	b.values[s.Name] = x
+	return x, nil
+}
+
+func (b *builder) env() expr.Env[algebra.Rat] {
+	return expr.Env[algebra.Rat]{K: algebra.Q, Variable: b.variable, Lookup: b.lookup, Limits: b.limits}
+}
+
+// readConditions reads the side conditions and finds their time.
+func (b *builder) readConditions() error {
+	first := true
+	var fault error
+	r := linearReader[algebra.Rat]{env: b.env()}
+	r.env.Lookup = func(s expr.Symbol) (algebra.Rat, error) {
+		_, isUnknown := b.unknowns[s.Name]
+		if isUnknown || s.Name == b.variable {
+			return algebra.Rat{}, expr.Errorf(expr.SideConditions, s.Pos(), "%s stands without a time in a side condition", s.Name)
+		}
+		return b.lookup(s)
+	}
+	// The independent variable has no place in a condition either.
+	r.env.Variable = ""
+	r.unknown = func(n expr.Node) (derivative, bool) {
+		v, ok := n.(expr.Value)
+		if !ok || v.At == nil || fault != nil {
+			return derivative{}, false
+		}
+		u, isUnknown := b.unknowns[v.Name]
+		if !isUnknown {
+			fault = expr.Errorf(expr.SideConditions, v.Pos(), "%s is not a state of the model", expr.Quote(v.Name))
+			return derivative{}, false
+		}
+		at, err := r.env.Elementary(v.At)
+		if err != nil {
+			fault = err
+			return derivative{}, false
+		}
+		t0, _ := at.Constant()
+		if !first && !t0.Equal(b.origin) {
+			fault = expr.Errorf(expr.OutsideClass, v.Pos(), "conditions at more than one time (%s and %s) make a boundary problem, which is not covered", b.origin, t0)
+			return derivative{}, false
+		}
+		first = false
+		b.origin = t0
+		return derivative{u, v.Order}, true
+	}
+	for _, eq := range b.sideOf {
+		l, err := r.readEquation(eq)
+		if fault != nil {
+			return fault
+		}
+		if err != nil {
+			return err
+		}
+		b.conditions = append(b.conditions, l)
+	}
+	return nil
+}
+
+// readEquations reads the equations in the local time of the origin.
+func (b *builder) readEquations() error {
+	r := linearReader[algebra.Rat]{env: b.env(), unknown: func(n expr.Node) (derivative, bool) {
+		name, order, ok := b.functionOf(n)
+		u, isUnknown := b.unknowns[name]
+		return derivative{u, order}, ok && isUnknown
+	}}
+	for _, eq := range b.equations {
+		l, err := r.readEquation(eq)
+		if err != nil {
+			return err
+		}
+		if l.rest, err = l.rest.Shift(b.origin); err != nil {
+			if e, ok := err.(*Error); ok {
+				e.Pos = eq.Pos
+			}
+			return err
+		}
+		b.Model.equations = append(b.Model.equations, l)
+	}
+	// A definition that no equation uses must still have a value.
+	names := make([]string, 0, len(b.definitions))
+	for name := range b.definitions {
+		names = append(names, name)
+	}
+	sort.Strings(names)
+	for _, name := range names {
+		if _, err := b.lookup(expr.Sym(name).(expr.Symbol)); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// readEquation returns left side minus right side.
+func (r linearReader[E]) readEquation(eq expr.Equation) (linear[E], error) {
+	left, err := r.read(eq.Left)
+	if err != nil {
+		return left, err
+	}
+	right, err := r.read(eq.Right)
+	if err != nil {
+		return right, err
+	}
+	l := left.add(r.env.K, r.env.K.FromInt(-1), right)
+	l.pos = eq.Pos
+	return l, nil
+}

@@ -1,0 +1,34 @@
+// Package linsys derives the response of linear time-invariant models
+//
+//	y' = A y + f(t)
+//
+// in closed form, exactly, and proves it.
+//
+// A model is read from the equations as they stand on paper ([Read]), or built
+// from matrices ([FromMatrix], [FromMatrices]). Equations may be of any order
+// and implicit in the highest derivatives; algebraic relations between the
+// states are allowed. The input f is a sum of products of polynomials,
+// exponentials, sines and cosines. Coefficients and data are rational numbers,
+// read exactly (0.35 is 7/20).
+//
+// [Model.ClosedForm] returns a [Response]: every state as an [expr.Function],
+// the transient part (complementary function) and the steady part (particular
+// integral) apart, the modes, and the [Proof]. A response is proven before it
+// is returned: substituted into the equations as they were read, it leaves the
+// residual zero, exactly.
+//
+// Outside the class are nonlinear models, coefficients that depend on time,
+// inputs such as 1/t or exp(t^2). They get an [Error] whose kind and place say
+// what is at fault. Symbols, pi, irrational roots, switched inputs and
+// boundary conditions get one as well, of kind [expr.OutsideClass].
+//
+// # Method
+//
+// With the model reduced to first order, (s I - A) Y(s) = y0 + F(s) is solved
+// for the Laplace image Y of the response over the coefficient field: the
+// characteristic polynomial of A times the denominator of F is a denominator of
+// Y, and its numerator comes from one synthetic division by s I - A, a
+// matrix-vector product for each degree. The denominator is factored; that is
+// all that is needed for evaluation, modes and proof. Radicals, sines and
+// cosines are a matter of writing the result.
+package linsys
