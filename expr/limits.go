@@ -6,7 +6,7 @@ type Limits struct {
 	Nesting int // depth of an expression tree; default 500
 	Text    int // bytes of a text; default 4 MiB
 	Terms   int // terms of an expanded expression; default 20,000
-	Degree  int // power of t, and of a power to be expanded; default 1000
+	Degree  int // order of an input: power of t, power to be expanded; default 250
 	Bits    int // bits of a number; default 100,000
 	States  int // states of a model; default 200
 }
@@ -21,7 +21,7 @@ func (l Limits) WithDefaults() Limits {
 	set(&l.Nesting, 500)
 	set(&l.Text, 4<<20)
 	set(&l.Terms, 20_000)
-	set(&l.Degree, 1000)
+	set(&l.Degree, 250)
 	set(&l.Bits, 100_000)
 	set(&l.States, 200)
 	return l

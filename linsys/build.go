@@ -61,7 +61,7 @@ func each(n expr.Node, visit func(expr.Node)) {
 	})
 }
 
-// valuesIn tells whether a statement contains the value of something at a time,
+// isSide tells whether a statement contains the value of something at a time,
 // which makes it a side condition.
 func (b *builder) isSide(eq expr.Equation) bool {
 	found := false
@@ -115,8 +115,7 @@ func (b *builder) classify() error {
 		b.equationOf = dynamic
 		return nil
 	}
-	// name = expression defines a constant, unless the expression holds time or a
-	// state: then it is an algebraic equation for one more state.
+	// name = expression may define a constant.
 	candidates := map[string]expr.Equation{}
 	for _, eq := range dynamic {
 		s, ok := eq.Left.(expr.Symbol)
@@ -131,57 +130,18 @@ func (b *builder) classify() error {
 		}
 		candidates[s.Name] = eq
 	}
-	for changed := true; changed; {
-		changed = false
-		for _, eq := range dynamic {
-			s, ok := eq.Left.(expr.Symbol)
-			if _, candidate := candidates[s.Name]; ok && candidate && b.dependsOnState(eq.Right) {
-				delete(candidates, s.Name)
-				b.addUnknown(s.Name)
-				changed = true
-			}
-		}
-	}
-	for _, eq := range dynamic {
-		if s, ok := eq.Left.(expr.Symbol); ok {
-			if _, isDefinition := candidates[s.Name]; isDefinition {
-				b.definitions[s.Name] = eq
-				b.defined = append(b.defined, eq)
-				continue
-			}
-		}
-		b.equations = append(b.equations, eq)
-	}
-	b.equationOf = b.equations
-	return b.balance()
-}
-
-// balance compares the numbers of equations and unknowns. Names without a value
-// become states given by algebraic equations if exactly as many equations are
-// left over.
-func (b *builder) balance() error {
-	var loose []string
-	seen := map[string]bool{}
-	for _, eq := range b.equations {
-		for _, side := range []expr.Node{eq.Left, eq.Right} {
-			each(side, func(n expr.Node) {
-				name, order, ok := b.functionOf(n)
-				_, isUnknown := b.unknowns[name]
-				_, isDefinition := b.definitions[name]
-				if ok && order == 0 && !isUnknown && !isDefinition && !seen[name] && name != b.variable && name != "pi" {
-					seen[name] = true
-					loose = append(loose, name)
-				}
-			})
-		}
-	}
+	b.divide(dynamic, candidates)
 	surplus := len(b.equations) - len(b.names)
-	if surplus > 0 && surplus == len(loose) {
+	if loose := b.looseNames(dynamic); surplus > 0 && surplus == len(loose) {
+		// As many equations are left over as there are names without a value: the
+		// names are states given by algebraic equations.
 		for _, name := range loose {
 			b.addUnknown(name)
 		}
+		b.divide(dynamic, candidates)
 		surplus = 0
 	}
+	b.equationOf = b.equations
 	if surplus == 0 {
 		return nil
 	}
@@ -193,6 +153,56 @@ func (b *builder) balance() error {
 		return expr.Errorf(expr.WrongShape, at, "an equation without a state: states appear with primes, as in x' = -x")
 	}
 	return expr.Errorf(expr.WrongShape, at, "%d equations for %d states (%s)", len(b.equations), len(b.names), strings.Join(b.names, ", "))
+}
+
+// divide divides statements into definitions and equations. A candidate whose
+// right side holds time or a state, itself or through another, is an equation
+// for one more state.
+func (b *builder) divide(statements []expr.Equation, candidates map[string]expr.Equation) {
+	for changed := true; changed; {
+		changed = false
+		for _, eq := range statements {
+			s, ok := eq.Left.(expr.Symbol)
+			if _, candidate := candidates[s.Name]; ok && candidate && b.dependsOnState(eq.Right) {
+				delete(candidates, s.Name)
+				b.addUnknown(s.Name)
+				changed = true
+			}
+		}
+	}
+	b.equations, b.defined = nil, nil
+	clear(b.definitions)
+	for _, eq := range statements {
+		if s, ok := eq.Left.(expr.Symbol); ok {
+			if _, isDefinition := candidates[s.Name]; isDefinition {
+				b.definitions[s.Name] = eq
+				b.defined = append(b.defined, eq)
+				continue
+			}
+		}
+		b.equations = append(b.equations, eq)
+	}
+}
+
+// looseNames returns the names that are neither states nor defined, in order of
+// appearance.
+func (b *builder) looseNames(statements []expr.Equation) []string {
+	var loose []string
+	seen := map[string]bool{b.variable: true, "pi": true}
+	for _, eq := range statements {
+		for _, side := range []expr.Node{eq.Left, eq.Right} {
+			each(side, func(n expr.Node) {
+				name, order, ok := b.functionOf(n)
+				_, isUnknown := b.unknowns[name]
+				_, isDefinition := b.definitions[name]
+				if ok && order == 0 && !isUnknown && !isDefinition && !seen[name] {
+					seen[name] = true
+					loose = append(loose, name)
+				}
+			})
+		}
+	}
+	return loose
 }
 
 func (b *builder) addUnknown(name string) {

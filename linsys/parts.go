@@ -9,7 +9,7 @@ import (
 
 // particular returns the particular integral that the trial forms of the
 // method of undetermined coefficients give, from the images y of any one
-// solution: the part of y with the rates of the forcing. At resonance that part
+// solution: the part of y with the rates of the inputs. At resonance that part
 // holds a solution of the homogeneous equation as well, and is freed of it: the
 // constant coefficients w(L) of e^(Lt) are reduced by the generalised
 // eigenvectors of L to zeros in as many components.
@@ -17,11 +17,11 @@ func (sv *solver[E]) particular(ctx context.Context, y []expr.Image[E]) ([]expr.
 	k := sv.k
 	out := make([]expr.Image[E], len(y))
 	for i := range y {
-		out[i], _ = y[i].Split(func(p algebra.Poly[E]) bool { return sv.forcing.Exponent(p) > 0 })
+		out[i], _ = y[i].Split(func(p algebra.Poly[E]) bool { return sv.inputs.Exponent(p) > 0 })
 	}
 	excess := zeroVec[E](k, len(y))
 	resonant := false
-	for _, f := range sv.forcing.Factors() {
+	for _, f := range sv.inputs.Factors() {
 		mult := sv.modes.Exponent(f.P)
 		if mult == 0 {
 			continue

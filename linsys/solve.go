@@ -15,6 +15,7 @@ type solver[E any] struct {
 	chi     algebra.Poly[E]     // characteristic polynomial of A
 	modes   expr.Denominator[E] // chi in factors
 	forcing expr.Denominator[E] // denominator of F
+	inputs  expr.Denominator[E] // the same with the inputs of the constraints
 	c       []algebra.Poly[E]   // F = c/forcing
 }
 
@@ -36,6 +37,11 @@ func newSolver[E any](ctx context.Context, s *system[E]) (*solver[E], error) {
 	}
 	for _, img := range images {
 		sv.c = append(sv.c, sv.forcing.Numerator(img))
+	}
+	// Differentiation may have taken all inputs out of F.
+	sv.inputs = sv.forcing
+	for _, c := range s.constraints {
+		sv.inputs = sv.inputs.Join(c.rest.Image().Denominator())
 	}
 	return sv, nil
 }

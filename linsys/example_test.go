@@ -1,0 +1,148 @@
+package linsys_test
+
+import (
+	"context"
+	"fmt"
+	"math/big"
+
+	"example.org/closedform/linsys"
+)
+
+// A model in, a proven closed form out.
+func Example() {
+	ctx := context.Background()
+	model, err := linsys.Read(`
+		x' = -3x + y             # two coupled rooms, one heated
+		y' = x - 3y + sin(t)
+		x(0) = 1;  y(0) = 0
+	`)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	response, err := model.ClosedForm(ctx)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	x := response.State("x")
+	fmt.Println(x)
+	fmt.Println(x.LaTeX())
+	digits, err := x.At(ctx, big.NewRat(1, 2), 40)
+	fmt.Println(digits, err)
+	fmt.Println("proven:", response.Proof().Holds())
+	// Output:
+	// -6/85*cos(t) + 7/85*sin(t) + 3/5*exp(-2*t) + 8/17*exp(-4*t)
+	// -\frac{6}{85} \cos(t) + \frac{7}{85} \sin(t) + \frac{3}{5} e^{-2 t} + \frac{8}{17} e^{-4 t}
+	// 0.2619499556246500092040825662119988491843 <nil>
+	// proven: true
+}
+
+// Without side conditions the response is the general solution.
+func ExampleModel_ClosedForm_general() {
+	model, _ := linsys.Read("x'' + 2*x' + 5*x = 10")
+	response, _ := model.ClosedForm(context.Background())
+	fmt.Println(response.State("x"))
+	// Output:
+	// C1*exp(-t)*cos(2*t) + 1/2*C2*exp(-t)*sin(2*t) + 2
+}
+
+// Resonance: the input has the frequency of the model.
+func ExampleResponse_Steady() {
+	model, _ := linsys.Read("x'' + 4*x = 8*cos(2*t); x(0) = 1; x'(0) = 0")
+	response, _ := model.ClosedForm(context.Background())
+	fmt.Println("transient:", response.Transient("x"))
+	fmt.Println("steady:   ", response.Steady("x"))
+	// Output:
+	// transient: cos(2*t)
+	// steady:    2*t*sin(2*t)
+}
+
+// Second-order models come from their stiffness, damping and mass matrices.
+func ExampleFromMatrices() {
+	rats := func(x ...int64) []*big.Rat {
+		row := make([]*big.Rat, len(x))
+		for i := range x {
+			row[i] = big.NewRat(x[i], 1)
+		}
+		return row
+	}
+	stiffness := [][]*big.Rat{rats(3, -1), rats(-1, 3)}
+	damping := [][]*big.Rat{rats(0, 0), rats(0, 0)}
+	mass := [][]*big.Rat{rats(1, 0), rats(0, 1)}
+	model, err := linsys.FromMatrices([]string{"u", "v"}, [][][]*big.Rat{stiffness, damping, mass}, nil,
+		[][]*big.Rat{rats(1, 0), rats(0, 0)})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	response, _ := model.ClosedForm(context.Background())
+	for _, m := range response.Modes() {
+		fmt.Println(m.Factor, m.Roots)
+	}
+	fmt.Println("u =", response.State("u"))
+	// Output:
+	// s^2 + 2 [sqrt(2)*i -sqrt(2)*i]
+	// s^2 + 4 [2*i -2*i]
+	// u = 1/2*cos(sqrt(2)*t) + 1/2*cos(2*t)
+}
+
+// Where no radicals exist, roots are named by their polynomial.
+func ExampleResponse_Modes() {
+	model, _ := linsys.Read("y''' = y' + y; y(0) = 0; y'(0) = 0; y''(0) = 1")
+	response, _ := model.ClosedForm(context.Background())
+	for _, m := range response.Modes() {
+		for _, root := range m.Roots {
+			z, _ := root.Enclose(context.Background(), 100)
+			re, _ := z.Re.Decimal(20)
+			fmt.Println(root, "has the real part", re)
+		}
+	}
+	fmt.Println("y =", response.State("y"))
+	// Output:
+	// root(1, z^3 - z - 1) has the real part 1.3247179572447460260
+	// root(2, z^3 - z - 1) has the real part -0.66235897862237301298
+	// root(3, z^3 - z - 1) has the real part -0.66235897862237301298
+	// y = sumroots(z, z^3 - z - 1, exp(z*t)/(3*z^2 - 1))
+}
+
+// The response as a Go function.
+func ExampleResponse_GoSource() {
+	model, _ := linsys.Read("x'' + 2*x' + 5*x = 0; x(0) = 1; x'(0) = -1")
+	response, _ := model.ClosedForm(context.Background())
+	src, _ := response.GoSource(context.Background(), linsys.GoOptions{Package: "plant"})
+	fmt.Print(string(src))
+	// Output:
+	// // Package plant evaluates a closed-form response.
+	// //
+	// //	x'' + 2*x' + 5*x = 0
+	// //	x(0) = 1
+	// //	x'(0) = -1
+	// package plant
+	//
+	// import "math"
+	//
+	// // ResponseState holds the values of the states at one time.
+	// type ResponseState struct {
+	// 	X float64 // x
+	// }
+	//
+	// // Response returns the states at the time t:
+	// //
+	// //	x = exp(-t)*cos(2*t)
+	// func Response(t float64) ResponseState {
+	// 	e1 := math.Exp(-t)
+	// 	c1 := math.Cos(2 * t)
+	// 	return ResponseState{
+	// 		X: e1 * c1,
+	// 	}
+	// }
+}
+
+// Errors say what is wrong, and where.
+func ExampleRead_error() {
+	_, err := linsys.Read("x' = -x + y\ny' = x*y")
+	fmt.Println(err)
+	// Output:
+	// line 2, column 6: nonlinear: "x*y" is not linear in the states
+}
