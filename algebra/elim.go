@@ -98,8 +98,9 @@ func Solve[E any](ctx context.Context, f Field[E], a, b Matrix[E]) (Matrix[E], e
 	if a.m != a.n || a.m != b.m {
 		panic(ShapeError{Op: "solution", R1: a.m, C1: a.n, R2: b.m, C2: b.n})
 	}
-	if s, ok := any(f).(matSolver[E]); ok && a.m >= 4 {
-		return s.solveMatrix(ctx, a, b)
+	if s, ok := any(f).(intMatrices); ok {
+		x, err := s.solve(ctx, any(a).(Matrix[Rat]), any(b).(Matrix[Rat]))
+		return any(x).(Matrix[E]), err
 	}
 	e, err := Reduce(ctx, f, a.Beside(b))
 	if err != nil {
@@ -111,20 +112,33 @@ func Solve[E any](ctx context.Context, f Field[E], a, b Matrix[E]) (Matrix[E], e
 	return MatrixFromFunc[E](f, a.n, b.n, func(i, j int) E { return e.Rows.At(i, a.n+j) }), nil
 }
 
-// matSolver is the capability of solving linear systems faster than by
-// elimination.
-type matSolver[E any] interface {
-	solveMatrix(ctx context.Context, a, b Matrix[E]) (Matrix[E], error)
+// intMatrices is the capability of Q to work with integer matrices and one
+// common denominator.
+type intMatrices interface {
+	det(ctx context.Context, a Matrix[Rat]) (Rat, error)
+	minPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error)
+	solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error)
+	inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error)
 }
 
 // Inverse returns the inverse of a square matrix, or ErrSingular.
 func Inverse[E any](ctx context.Context, f Field[E], a Matrix[E]) (Matrix[E], error) {
+	a.mustBeSquare("inverse")
+	if s, ok := any(f).(intMatrices); ok {
+		x, err := s.inverse(ctx, any(a).(Matrix[Rat]))
+		return any(x).(Matrix[E]), err
+	}
 	return Solve(ctx, f, a, Identity[E](f, a.m))
 }
 
 // Det returns the determinant of a square matrix: (-1)^n times the constant
-// coefficient of its characteristic polynomial.
+// coefficient of its characteristic polynomial; over Q modulo primes.
 func Det[E any](ctx context.Context, f Field[E], a Matrix[E]) (E, error) {
+	a.mustBeSquare("determinant")
+	if s, ok := any(f).(intMatrices); ok {
+		d, err := s.det(ctx, any(a).(Matrix[Rat]))
+		return any(d).(E), err
+	}
 	var p Poly[E]
 	var err error
 	if s, ok := any(f).(Scalars[E]); ok {
@@ -147,8 +161,10 @@ func Det[E any](ctx context.Context, f Field[E], a Matrix[E]) (E, error) {
 // multiple of the minimal polynomials of the unit vectors, each from its Krylov
 // sequence v, a v, a^2 v, ...
 func MinPoly[E any](ctx context.Context, f Field[E], a Matrix[E]) (Poly[E], error) {
-	if a.m != a.n {
-		panic(ShapeError{Op: "minimal polynomial", R1: a.m, C1: a.n, R2: a.m, C2: a.n})
+	a.mustBeSquare("minimal polynomial")
+	if s, ok := any(f).(intMatrices); ok {
+		p, err := s.minPoly(ctx, any(a).(Matrix[Rat]))
+		return any(p).(Poly[E]), err
 	}
 	m := Constant[E](f, f.One())
 	for i := range a.n {

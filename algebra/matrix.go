@@ -137,8 +137,16 @@ func (a Matrix[E]) MulVec(v []E) []E {
 	return out
 }
 
+// mustBeSquare panics with a ShapeError when a is not square.
+func (a Matrix[E]) mustBeSquare(op string) {
+	if a.m != a.n {
+		panic(ShapeError{Op: op, R1: a.m, C1: a.n, R2: a.m, C2: a.n})
+	}
+}
+
 // Pow returns a^k of a square matrix for k >= 0.
 func (a Matrix[E]) Pow(k int) Matrix[E] {
+	a.mustBeSquare("power")
 	r := Identity(a.ring, a.m)
 	for ; k > 0; k >>= 1 {
 		if k&1 == 1 {
@@ -153,6 +161,7 @@ func (a Matrix[E]) Pow(k int) Matrix[E] {
 
 // EvalPoly returns p(a) of a square matrix by Horner's rule.
 func (a Matrix[E]) EvalPoly(p Poly[E]) Matrix[E] {
+	a.mustBeSquare("polynomial")
 	y := Identity(a.ring, a.m).Scale(a.ring.Zero())
 	for i := p.Degree(); i >= 0; i-- {
 		y = y.Mul(a).Add(Identity(a.ring, a.m).Scale(p.Coef(i)))
@@ -201,9 +210,7 @@ func (a Matrix[E]) intRows() ([][]*big.Int, *big.Int) {
 // in O(n^4) ring operations without a division. Over a field of
 // [Scalars] that field's own method is faster.
 func CharPoly[E any](ctx context.Context, a Matrix[E]) (Poly[E], error) {
-	if a.m != a.n {
-		panic(ShapeError{Op: "characteristic polynomial", R1: a.m, C1: a.n, R2: a.m, C2: a.n})
-	}
+	a.mustBeSquare("characteristic polynomial")
 	r := a.ring
 	// c holds the characteristic polynomial of the leading k x k block, highest
 	// power first.

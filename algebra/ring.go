@@ -94,19 +94,41 @@ func (Rationals) Inv(x Rat) (Rat, error) {
 
 // Roots isolates the complex roots of a square-free polynomial over Q.
 func (Rationals) Roots(ctx context.Context, p Poly[Rat]) (*RootSet, error) {
-	ints, _ := clearDenominators(p.c)
+	ints, _ := overZ(p)
 	return NewRootSet(ctx, ints)
 }
 
 // clearDenominators returns the integers d*c[i] and the least common
 // denominator d > 0 of the c[i].
 func clearDenominators(c []Rat) ([]*big.Int, *big.Int) {
+	if w, ok := wordsOf(c); ok {
+		return bigWords(w), big.NewInt(1)
+	}
 	d := commonDenominator(c)
 	out := make([]*big.Int, len(c))
 	for i, x := range c {
-		out[i] = new(big.Int).Mul(x.Num(), new(big.Int).Quo(d, x.Den()))
+		out[i] = x.Num()
+		if !x.IsInt() {
+			out[i].Mul(out[i], new(big.Int).Quo(d, x.Den()))
+		} else if !d.IsInt64() || d.Int64() != 1 {
+			out[i].Mul(out[i], d)
+		}
 	}
 	return out, d
+}
+
+// wordsOf returns the numbers as words if all are integers of at most 63 bits.
+func wordsOf(c []Rat) ([]int64, bool) {
+	for i := range c {
+		if c[i].big != nil || c[i].denom() != 1 {
+			return nil, false
+		}
+	}
+	w := make([]int64, len(c))
+	for i := range c {
+		w[i] = c[i].num
+	}
+	return w, true
 }
 
 // commonDenominator returns the least common multiple of the denominators.
@@ -114,6 +136,9 @@ func commonDenominator(c []Rat) *big.Int {
 	d := big.NewInt(1)
 	var g big.Int
 	for _, x := range c {
+		if x.IsInt() {
+			continue
+		}
 		den := x.Den()
 		g.GCD(nil, nil, d, den)
 		d.Mul(d, den.Quo(den, &g))

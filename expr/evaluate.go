@@ -8,63 +8,206 @@ import (
 )
 
 // series is the local part of an image at one root L, in balls: the term is
-// (c[0] + c[1] t + ...) e^(Lt), twice its real part when paired stands for the
-// conjugate as well.
+// (c[0] + c[1] t + ...) e^(Lt) with the rate L at an index of the expansion.
 type series struct {
-	rate   algebra.ComplexBall
-	c      []algebra.ComplexBall
+	rate int
+	c    []algebra.ComplexBall
+}
+
+// rate is an enclosed root. A paired one stands for its conjugate as well: the
+// terms are twice the real parts.
+type rate struct {
+	at     algebra.ComplexBall
 	paired bool
 }
 
-// expand encloses the local parts of f at all roots with about prec bits,
-// without exact residues: N and D are evaluated at the enclosed roots.
-func (f Image[E]) expand(ctx context.Context, prec uint) ([]series, error) {
-	num := enclosePoly(f.k, f.num, prec)
-	dens := make([][]algebra.ComplexBall, len(f.den))
-	for i, pp := range f.den {
-		dens[i] = enclosePoly(f.k, pp.p, prec)
-	}
-	var out []series
-	for i, pp := range f.den {
-		roots, err := pp.rootSet(ctx, f.k)
+// expansion encloses the local parts of several images. Rates that they share
+// are listed once.
+type expansion struct {
+	prec  uint
+	rates []rate
+	terms [][]series // of each image
+}
+
+// expand encloses the local parts of the images at all roots with about prec
+// bits, without exact residues: N and D are evaluated at the enclosed roots,
+// what denominators have in common only once.
+func expand[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E], prec uint) (*expansion, error) {
+	x := expander[E]{expansion: &expansion{prec: prec}, ctx: ctx, k: k}
+	for _, f := range images {
+		terms, err := x.image(f)
 		if err != nil {
 			return nil, err
 		}
-		for r := range roots.Len() {
-			if roots.Conjugate(r) < r {
-				continue
+		x.terms = append(x.terms, terms)
+	}
+	return x.expansion, nil
+}
+
+type expander[E any] struct {
+	*expansion
+	ctx    context.Context
+	k      algebra.Scalars[E]
+	primes []*expandedPrime[E]
+	dens   []expandedDenominator[E]
+}
+
+// expandedPrime is a prime in balls, with the indices of its rates.
+type expandedPrime[E any] struct {
+	*prime[E]
+	ball  []algebra.ComplexBall
+	rates []int
+}
+
+// expandedDenominator holds (s - L)^e/D as a series, inverted, at the rates of
+// each prime of a denominator D.
+type expandedDenominator[E any] struct {
+	den    []primePower[E]
+	primes []*expandedPrime[E]
+	series [][][]algebra.ComplexBall // of each prime and rate
+}
+
+// prime returns the expansion of a prime.
+func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
+	for _, q := range x.primes {
+		if q.prime == p || q.p.Equal(p.p) {
+			return q, nil
+		}
+	}
+	q := &expandedPrime[E]{prime: p, ball: enclosePoly(x.k, p.p, x.prec)}
+	roots, err := p.rootSet(x.ctx, x.k)
+	if err != nil {
+		return nil, err
+	}
+	for r := range roots.Len() {
+		if roots.Conjugate(r) < r {
+			continue
+		}
+		at, err := roots.Enclose(x.ctx, r, x.prec)
+		if err != nil {
+			return nil, err
+		}
+		q.rates = append(q.rates, len(x.rates))
+		x.rates = append(x.rates, rate{at: at, paired: roots.Conjugate(r) != r})
+	}
+	x.primes = append(x.primes, q)
+	return q, nil
+}
+
+// denominator returns the expansion of a denominator.
+func (x *expander[E]) denominator(den []primePower[E]) (*expandedDenominator[E], error) {
+next:
+	for i := range x.dens {
+		d := &x.dens[i]
+		if len(d.den) != len(den) {
+			continue
+		}
+		for j, pp := range den {
+			if d.den[j].e != pp.e || d.den[j].prime != pp.prime {
+				continue next
 			}
-			at, err := roots.Enclose(ctx, r, prec)
-			if err != nil {
+		}
+		return d, nil
+	}
+	d := expandedDenominator[E]{den: den}
+	for _, pp := range den {
+		q, err := x.prime(pp.prime)
+		if err != nil {
+			return nil, err
+		}
+		d.primes = append(d.primes, q)
+	}
+	one := algebra.ComplexBall{Re: algebra.BallFromInt(big.NewInt(1))}
+	for i, pp := range den {
+		n := pp.e
+		var all [][]algebra.ComplexBall
+		for _, r := range d.primes[i].rates {
+			if err := x.ctx.Err(); err != nil {
 				return nil, err
 			}
 			// p(L + h) = h q(h), and the part at L is N/(q^e Q) h^-e.
-			n := pp.e
-			d := []algebra.ComplexBall{complexInt(1)}
-			for j, other := range f.den {
-				q := taylorAt(dens[j], at, n+1, prec)
+			at := x.rates[r].at
+			product := []algebra.ComplexBall{one}
+			for j, other := range den {
+				q := taylorAt(d.primes[j].ball, at, n+1, x.prec)
 				if i == j {
 					q = q[1:]
 				}
-				d = mulBalls(d, powBalls(q, other.e, n, prec), n, prec)
+				product = mulBalls(product, powBalls(q, other.e, n, x.prec), n, x.prec)
 			}
-			g := divBalls(taylorAt(num, at, n, prec), d, n, prec)
+			all = append(all, divBalls([]algebra.ComplexBall{one}, product, n, x.prec))
+		}
+		d.series = append(d.series, all)
+	}
+	x.dens = append(x.dens, d)
+	return &x.dens[len(x.dens)-1], nil
+}
+
+// image returns the terms of an image, prime by prime in the order of its
+// denominator.
+func (x *expander[E]) image(f Image[E]) ([]series, error) {
+	d, err := x.denominator(f.den)
+	if err != nil {
+		return nil, err
+	}
+	num := enclosePoly(x.k, f.num, x.prec)
+	var out []series
+	for i, pp := range f.den {
+		n := pp.e
+		for j, r := range d.primes[i].rates {
+			if err := x.ctx.Err(); err != nil {
+				return nil, err
+			}
+			g := mulBalls(taylorAt(num, x.rates[r].at, n, x.prec), d.series[i][j], n, x.prec)
 			c := make([]algebra.ComplexBall, n)
 			fact := big.NewInt(1)
 			for k := range c {
 				if k > 1 {
 					fact.Mul(fact, big.NewInt(int64(k)))
 				}
-				c[k] = divInt(g[n-1-k], fact, prec)
+				if n-1-k < len(g) {
+					c[k] = divInt(g[n-1-k], fact, x.prec)
+				}
 			}
-			out = append(out, series{rate: at, c: c, paired: roots.Conjugate(r) != r})
+			out = append(out, series{rate: r, c: c})
 		}
 	}
 	return out, nil
 }
 
-func complexInt(n int64) algebra.ComplexBall {
-	return algebra.ComplexBall{Re: algebra.BallFromInt(big.NewInt(n))}
+// at returns balls around the values of the images at t.
+func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, error) {
+	prec := x.prec
+	// Twice e^(Lt) for a pair, whose sum is twice the real part.
+	exps := make([]algebra.ComplexBall, len(x.rates))
+	for i, r := range x.rates {
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		e := r.at.Re.Mul(t, prec).Exp(prec)
+		if !r.paired {
+			exps[i].Re = e
+			continue
+		}
+		e = e.MulPow2(1)
+		sin, cos := r.at.Im.Mul(t, prec).SinCos(prec)
+		exps[i] = algebra.ComplexBall{Re: e.Mul(cos, prec), Im: e.Mul(sin, prec)}
+	}
+	out := make([]algebra.Ball, len(x.terms))
+	for i, terms := range x.terms {
+		for _, s := range terms {
+			c := s.c[len(s.c)-1]
+			for k := len(s.c) - 2; k >= 0; k-- {
+				c = algebra.ComplexBall{Re: c.Re.Mul(t, prec), Im: c.Im.Mul(t, prec)}.Add(s.c[k], prec)
+			}
+			e := exps[s.rate]
+			out[i] = out[i].Add(c.Re.Mul(e.Re, prec), prec)
+			if x.rates[s.rate].paired {
+				out[i] = out[i].Sub(c.Im.Mul(e.Im, prec), prec)
+			}
+		}
+	}
+	return out, nil
 }
 
 func divInt(x algebra.ComplexBall, n *big.Int, prec uint) algebra.ComplexBall {
@@ -106,7 +249,7 @@ func mulBalls(a, b []algebra.ComplexBall, n int, prec uint) []algebra.ComplexBal
 }
 
 func powBalls(a []algebra.ComplexBall, e, n int, prec uint) []algebra.ComplexBall {
-	out := []algebra.ComplexBall{complexInt(1)}
+	out := []algebra.ComplexBall{{Re: algebra.BallFromInt(big.NewInt(1))}}
 	for ; e > 0; e >>= 1 {
 		if e&1 == 1 {
 			out = mulBalls(out, a, n, prec)
@@ -133,32 +276,15 @@ func divBalls(a, b []algebra.ComplexBall, n int, prec uint) []algebra.ComplexBal
 	return out
 }
 
-// encloseSum returns a ball around the sum of the terms at t.
-func encloseSum(terms []series, t algebra.Ball, prec uint) algebra.Ball {
-	sum := algebra.Ball{}
-	for _, s := range terms {
-		c := s.c[len(s.c)-1]
-		for k := len(s.c) - 2; k >= 0; k-- {
-			c = algebra.ComplexBall{Re: c.Re.Mul(t, prec), Im: c.Im.Mul(t, prec)}.Add(s.c[k], prec)
-		}
-		e := s.rate.Re.Mul(t, prec).Exp(prec)
-		if !s.paired {
-			sum = sum.Add(c.Re.Mul(e, prec), prec)
-			continue
-		}
-		sin, cos := s.rate.Im.Mul(t, prec).SinCos(prec)
-		re := c.Re.Mul(cos, prec).Sub(c.Im.Mul(sin, prec), prec)
-		sum = sum.Add(re.Mul(e, prec).Mul(algebra.BallFromInt(big.NewInt(2)), prec), prec)
-	}
-	return sum
-}
-
 // rationalAt returns f(t) if it is a rational number that needs no digits: at 0
 // it is the limit of s F(s); at another rational t, by the theorem of Lindemann
 // and Weierstrass, it is rational exactly when the coefficients of all e^(Lt)
 // with L not 0 vanish at t, and then is the value of the polynomial part.
 func (f Image[E]) rationalAt(t algebra.Rat) (algebra.Rat, bool) {
-	if t.IsZero() || f.IsZero() {
+	if f.IsZero() {
+		return algebra.Rat{}, true
+	}
+	if t.IsZero() {
 		return f.k.Rational(f.Initial())
 	}
 	for _, pp := range f.den {

@@ -3,7 +3,6 @@ package expr
 import (
 	"context"
 	"math/big"
-	"sync"
 
 	"example.org/closedform/algebra"
 )
@@ -173,64 +172,20 @@ func (f Function) With(values map[string]*big.Rat) Function {
 	return NewFunction(f.variable, f.origin, base, free...)
 }
 
-// expansions keeps the enclosures of the local parts by their precision, of
-// which few occur: each is twice another.
-type expansions struct {
-	mu     sync.Mutex
-	byPrec map[uint][]series
-}
-
-// expansion returns the local parts of the base with about prec bits.
-func (f Function) expansion(ctx context.Context, prec uint) ([]series, error) {
-	if f.cache == nil { // the zero value of Function
-		return nil, nil
-	}
-	f.cache.mu.Lock()
-	defer f.cache.mu.Unlock()
-	terms, ok := f.cache.byPrec[prec]
-	if !ok {
-		var err error
-		if terms, err = f.base.expand(ctx, prec); err != nil {
-			return nil, err
-		}
-		if f.cache.byPrec == nil {
-			f.cache.byPrec = map[uint][]series{}
-		}
-		f.cache.byPrec[prec] = terms
-	}
-	return terms, nil
-}
-
-// mostPrecision is where the search for digits gives up.
-const mostPrecision = 1 << 17
-
 // At returns f(t) to the given number of significant digits, every one proven
 // and the last one rounded to nearest: "0.36787944", "12.069840", "5.0759e-435".
 // The value 0 is "0". The working precision is raised until the digits are
 // certain; values that are rational are recognised as such, so that it ends.
+// Up to 30,000 digits are given; fewer than one counts as one.
 func (f Function) At(ctx context.Context, t *big.Rat, digits int) (string, error) {
 	if err := f.noFree(); err != nil {
 		return "", err
 	}
-	digits = max(digits, 1)
-	tau := algebra.RatFromBig(t).Sub(f.origin)
-	if x, ok := f.base.rationalAt(tau); ok {
-		return algebra.RatDecimal(x.Big(), digits), nil
+	values, err := f.cache.digits(ctx, []Image[algebra.Rat]{f.base}, algebra.RatFromBig(t).Sub(f.origin), digits)
+	if err != nil {
+		return "", err
 	}
-	bits := uint(digits)*10/3 + 32
-	for prec := bits; prec <= max(mostPrecision, 8*bits); prec *= 2 {
-		if err := ctx.Err(); err != nil {
-			return "", cancelled(err)
-		}
-		b, err := f.enclose(ctx, tau, prec)
-		if err != nil {
-			return "", err
-		}
-		if s, ok := b.Decimal(digits); ok {
-			return s, nil
-		}
-	}
-	return "", Errorf(LimitExceeded, Pos{}, "the value at %s = %s needs more than %d bits of working precision", f.variable, t.RatString(), mostPrecision)
+	return values[0], nil
 }
 
 // Enclose returns a ball around f(t), computed with the working precision prec
@@ -239,21 +194,14 @@ func (f Function) Enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.B
 	if err := f.noFree(); err != nil {
 		return algebra.Ball{}, err
 	}
-	return f.enclose(ctx, algebra.RatFromBig(t).Sub(f.origin), prec)
-}
-
-func (f Function) enclose(ctx context.Context, tau algebra.Rat, prec uint) (algebra.Ball, error) {
 	if f.base.IsZero() {
 		return algebra.Ball{}, nil
 	}
-	if tau.IsZero() {
-		return algebra.BallFromRat(f.base.Initial().Big(), prec), nil
-	}
-	terms, err := f.expansion(ctx, prec)
+	balls, err := f.cache.balls(ctx, []Image[algebra.Rat]{f.base}, algebra.RatFromBig(t).Sub(f.origin), prec)
 	if err != nil {
 		return algebra.Ball{}, err
 	}
-	return encloseSum(terms, algebra.BallFromRat(tau.Big(), prec), prec), nil
+	return balls[0], nil
 }
 
 func (f Function) noFree() error {
@@ -261,9 +209,4 @@ func (f Function) noFree() error {
 		return Errorf(SideConditions, Pos{}, "the free constant %s has no value", f.free[0].Name)
 	}
 	return nil
-}
-
-// cancelled wraps the error of a context.
-func cancelled(err error) *Error {
-	return &Error{Kind: Cancelled, Message: err.Error(), Cause: err}
 }

@@ -6,6 +6,7 @@ import (
 	"go/format"
 	gotoken "go/token"
 	"math"
+	"slices"
 	"sort"
 	"strconv"
 	"strings"
@@ -39,9 +40,18 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 			return nil, Errorf(Syntax, Pos{}, "%s is not a Go identifier", Quote(id))
 		}
 	}
+	switch {
+	case opt.Package == "_":
+		return nil, Errorf(Syntax, Pos{}, "the blank identifier cannot name a package")
+	case slices.Contains([]string{"_", "init", "main", "math", "float64"}, opt.Func):
+		return nil, Errorf(Syntax, Pos{}, "%s cannot name the function: it has a meaning of its own in the source", Quote(opt.Func))
+	}
 	g := goWriter{opt: opt, names: names, constants: constants, time: "t"}
 	if len(fs) > 0 && !fs[0].origin.IsZero() {
 		g.time = "tau"
+		if err := finite([]float64{fs[0].origin.Float64()}); err != nil {
+			return nil, err
+		}
 	}
 	bodies := make([]string, len(fs))
 	for i, f := range fs {
@@ -224,9 +234,9 @@ func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, e
 	}
 	sort.SliceStable(order, func(a, b int) bool { return before(f.den[order[a]].p, f.den[order[b]].p) })
 	for prec := uint(128); prec <= mostPrecision; prec *= 2 {
-		expanded, err := f.expand(ctx, prec)
+		x, err := expand(ctx, f.k, []Image[algebra.Rat]{f}, prec)
 		if err != nil {
-			return nil, err
+			return nil, wrapCancel(err)
 		}
 		byPrime := make([][]goTerm, len(f.den))
 		ok := true
@@ -246,21 +256,22 @@ func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, e
 				if roots.Conjugate(r) < r {
 					continue
 				}
-				s := expanded[next]
+				s := x.terms[0][next]
 				next++
-				re, okRe := roundBall(s.rate.Re, 0)
-				im, okIm := roundBall(s.rate.Im, 0)
+				rate := x.rates[s.rate]
+				re, okRe := roundBall(rate.at.Re, 0, prec)
+				im, okIm := roundBall(rate.at.Im, 0, prec)
 				ok = ok && okRe && okIm
 				t := goTerm{cos: exact}
 				for k := 0; exact == nil && k < len(s.c); k++ {
 					double := int64(0)
-					if s.paired {
+					if rate.paired {
 						double = 1
 					}
-					u, okU := roundBall(s.c[k].Re, double)
+					u, okU := roundBall(s.c[k].Re, double, prec)
 					v, okV := 0.0, true
-					if s.paired {
-						v, okV = roundBall(s.c[k].Im, double)
+					if rate.paired {
+						v, okV = roundBall(s.c[k].Im, double, prec)
 					}
 					ok = ok && okU && okV
 					t.cos, t.sin = append(t.cos, u), append(t.sin, -v)
@@ -268,6 +279,9 @@ func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, e
 				if ok {
 					t.rate = g.rate(pp.p, r, re, im)
 					byPrime[i] = append(byPrime[i], t)
+					if err := finite(append([]float64{re, im}, append(t.cos, t.sin...)...)); err != nil {
+						return nil, err
+					}
 				}
 			}
 		}
@@ -290,14 +304,33 @@ func constantTerm(p algebra.Poly[algebra.Rat]) algebra.Rat {
 	return p.Coef(0)
 }
 
+// finite returns an error if a constant of the formula is beyond float64.
+func finite(constants []float64) error {
+	for _, x := range constants {
+		if math.IsInf(x, 0) {
+			return Errorf(LimitExceeded, Pos{}, "a constant of the formula is beyond the range of float64")
+		}
+	}
+	return nil
+}
+
+// tiePrecision is the precision in bits where a number that still may round to
+// either of two neighbours is taken to lie midway between them.
+const tiePrecision = 4096
+
 // roundBall returns the float64 nearest to 2^shift times the number in the
-// ball, if the ball determines it. A number that is 0 is certain to round to 0
-// once the ball is below the smallest float64.
-func roundBall(b algebra.Ball, shift int64) (float64, bool) {
+// ball, if the ball determines it; midway between two, the even one. A number
+// that is 0 is certain to round to 0 once the ball is below the smallest
+// float64.
+func roundBall(b algebra.Ball, shift int64, prec uint) (float64, bool) {
 	lo, hi := b.MulPow2(shift).Interval()
 	x, _ := lo.Float64()
 	y, _ := hi.Float64()
-	return x + 0, x == y // + 0 turns -0 into 0
+	if prec >= tiePrecision && y == math.Nextafter(x, math.Inf(1)) && math.Float64bits(x)&1 == 1 {
+		x = y
+	}
+	ok := x == y || prec >= tiePrecision && y == math.Nextafter(x, math.Inf(1))
+	return x + 0, ok // + 0 turns -0 into 0
 }
 
 // file assembles the source.
@@ -317,11 +350,9 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 		line("//\t%s", inert(d))
 	}
 	line("package %s\n", g.opt.Package)
-	usesMath := false
-	for _, r := range g.rates {
-		usesMath = usesMath || r.re != 0 || r.im != 0
-	}
-	if usesMath {
+	all := strings.Join(bodies, " ")
+	used := g.factors(all)
+	if len(used) > 0 {
 		line("import \"math\"\n")
 	}
 	line("// %s holds the values of the states at one time.", state)
@@ -346,9 +377,8 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 		line("//\n// c holds the constants %s.", inert(strings.Join(g.constants, ", ")))
 		arg = fmt.Sprintf(", c [%d]float64", n)
 	}
-	all := strings.Join(bodies, " ")
 	switch {
-	case len(g.rates) == 0:
+	case len(used) == 0 && !usesName(all, g.time):
 		line("func %s(_ float64%s) %s {", g.opt.Func, arg, state) // all states are constant
 	case g.time == "t":
 		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
@@ -356,21 +386,8 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
 		line("tau := t - %s", goFloat(origin.Float64()))
 	}
-	for i, r := range g.rates {
-		if r.re != 0 {
-			line("e%d := math.Exp(%s)", i+1, g.times(r.re))
-		}
-		if r.im != 0 {
-			s, c := fmt.Sprintf("s%d", i+1), fmt.Sprintf("c%d", i+1)
-			switch {
-			case !usesName(all, s):
-				line("%s := math.Cos(%s)", c, g.times(r.im))
-			case !usesName(all, c):
-				line("%s := math.Sin(%s)", s, g.times(r.im))
-			default:
-				line("%s, %s := math.Sincos(%s)", s, c, g.times(r.im))
-			}
-		}
+	for _, u := range used {
+		line("%s", u)
 	}
 	line("return %s{", state)
 	for i, f := range fields {
@@ -378,6 +395,28 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 	}
 	line("}\n}")
 	return b.String()
+}
+
+// factors returns the definitions of the exponentials, sines and cosines that
+// occur in the expressions.
+func (g *goWriter) factors(all string) []string {
+	var lines []string
+	for i, r := range g.rates {
+		e, s, c := fmt.Sprintf("e%d", i+1), fmt.Sprintf("s%d", i+1), fmt.Sprintf("c%d", i+1)
+		if usesName(all, e) {
+			lines = append(lines, fmt.Sprintf("%s := math.Exp(%s)", e, g.times(r.re)))
+		}
+		sin, cos := usesName(all, s), usesName(all, c)
+		switch {
+		case sin && cos:
+			lines = append(lines, fmt.Sprintf("%s, %s := math.Sincos(%s)", s, c, g.times(r.im)))
+		case cos:
+			lines = append(lines, fmt.Sprintf("%s := math.Cos(%s)", c, g.times(r.im)))
+		case sin:
+			lines = append(lines, fmt.Sprintf("%s := math.Sin(%s)", s, g.times(r.im)))
+		}
+	}
+	return lines
 }
 
 // times returns x times the time.

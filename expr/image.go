@@ -86,6 +86,12 @@ func (d Denominator[E]) Factors() []algebra.Factor[E] {
 	return out
 }
 
+// Roots isolates the roots of the i-th factor; they are isolated once for all
+// images over d.
+func (d Denominator[E]) Roots(ctx context.Context, i int) (*algebra.RootSet, error) {
+	return d.pp[i].rootSet(ctx, d.k)
+}
+
 // Poly returns the product.
 func (d Denominator[E]) Poly() algebra.Poly[E] {
 	out := algebra.Constant[E](d.k, d.k.One())
@@ -111,6 +117,21 @@ func (d Denominator[E]) merge(g Denominator[E], exponent func(a, b int) int) Den
 		if i := out.find(pp.p); i >= 0 {
 			out.pp[i].e = exponent(out.pp[i].e, pp.e)
 		} else {
+			out.pp = append(out.pp, pp)
+		}
+	}
+	return out
+}
+
+// Without returns d with the exponent of the irreducible polynomial p lowered
+// by n.
+func (d Denominator[E]) Without(p algebra.Poly[E], n int) Denominator[E] {
+	out := Denominator[E]{k: d.k}
+	for _, pp := range d.pp {
+		if pp.p.Equal(p) {
+			pp.e -= n
+		}
+		if pp.e > 0 {
 			out.pp = append(out.pp, pp)
 		}
 	}
@@ -228,14 +249,19 @@ func (f Image[E]) Add(g Image[E]) Image[E] {
 
 // Scale returns the image of x f.
 func (f Image[E]) Scale(x E) Image[E] {
-	if f.k.IsZero(x) {
+	if f.IsZero() || f.k.IsZero(x) {
 		return ZeroImage(f.k)
 	}
 	return Image[E]{k: f.k, num: f.num.Scale(x), den: f.den}
 }
 
 // Sub returns the image of f - g.
-func (f Image[E]) Sub(g Image[E]) Image[E] { return f.Add(g.Scale(f.k.FromInt(-1))) }
+func (f Image[E]) Sub(g Image[E]) Image[E] {
+	if g.IsZero() {
+		return f
+	}
+	return f.Add(g.Scale(g.k.FromInt(-1)))
+}
 
 // degree returns the degree of the denominator.
 func (f Image[E]) degree() int {
@@ -246,10 +272,19 @@ func (f Image[E]) degree() int {
 	return n
 }
 
+// zero returns 0, for the zero value of Image as well.
+func (f Image[E]) zero() E {
+	if f.k == nil {
+		var x E
+		return x
+	}
+	return f.k.Zero()
+}
+
 // Initial returns f(0), the limit of s F(s) for large s.
 func (f Image[E]) Initial() E {
 	if f.IsZero() || f.num.Degree() < f.degree()-1 {
-		return f.k.Zero()
+		return f.zero()
 	}
 	return f.num.Lead()
 }
@@ -296,7 +331,7 @@ func (f Image[E]) TimesT() Image[E] {
 
 // TimesExp returns the image of e^(at) f(t), F(s - a).
 func (f Image[E]) TimesExp(a E) Image[E] {
-	if f.k.IsZero(a) {
+	if f.IsZero() || f.k.IsZero(a) {
 		return f
 	}
 	minus := f.k.Neg(a)

@@ -16,9 +16,9 @@ func LaTeX(n Node) string { return write(n, latex{}).text }
 // the name holds, the result is inert.
 func LaTeXName(name string) string {
 	base, sub := splitName(name)
-	s := latexWord(base)
+	s := latexWord(lowerDigits(base))
 	if sub != "" {
-		parts := strings.Split(sub, ",")
+		parts := strings.Split(lowerDigits(sub), ",")
 		for i := range parts {
 			parts[i] = latexWord(parts[i])
 		}
@@ -34,7 +34,7 @@ func splitName(name string) (base, sub string) {
 	sub = strings.ReplaceAll(strings.Trim(sub, "_"), "_", ",")
 	if sub == "" {
 		base = strings.TrimRight(name, "_")
-		if i := len(strings.TrimRightFunc(base, unicode.IsDigit)); i > 0 {
+		if i := len(strings.TrimRightFunc(base, isIndex)); i > 0 {
 			base, sub = base[:i], base[i:]
 		}
 	}
@@ -42,6 +42,19 @@ func splitName(name string) (base, sub string) {
 		return name, ""
 	}
 	return base, sub
+}
+
+// isIndex tells whether r is a digit or a subscript digit.
+func isIndex(r rune) bool { return unicode.IsDigit(r) || r >= '₀' && r <= '₉' }
+
+// lowerDigits puts digits in the place of subscript digits.
+func lowerDigits(s string) string {
+	return strings.Map(func(r rune) rune {
+		if r >= '₀' && r <= '₉' {
+			return '0' + r - '₀'
+		}
+		return r
+	}, s)
 }
 
 // latexWord writes one part of a name.
@@ -75,8 +88,6 @@ func latexWord(w string) string {
 			b.WriteString(`\backslash `)
 		case c == '^' || c == '~':
 			b.WriteString(`\text{\` + string(c) + `{}}`)
-		case c >= '₀' && c <= '₉':
-			b.WriteString("_" + string('0'+c-'₀'))
 		case c > 0x80 && (unicode.IsLetter(c) || unicode.IsDigit(c)):
 			b.WriteString(`\text{` + string(c) + `}`)
 		case strings.ContainsRune("+-*/().,:;=<>!?'@[]| ", c):
@@ -165,7 +176,10 @@ func (l latex) value(name string, order int, at string) piece {
 		s += strings.Repeat("'", order)
 	}
 	if at != "" {
-		s += l.paren(at)
+		return piece{s + l.paren(at), precAtom}
+	}
+	if order > 0 {
+		return piece{s, precPower} // it has a superscript already
 	}
 	return piece{s, precAtom}
 }
@@ -214,6 +228,6 @@ func (l latex) call(fn string, arg piece) piece {
 }
 
 func (l latex) rootSum(v, poly string, body piece) piece {
-	// A sum binds like a term: its body ends where the next + or - begins.
-	return piece{`\sum_{` + LaTeXName(v) + `:\, ` + poly + ` = 0} ` + l.wrap(body, precProduct), precNeg}
+	// A sum binds like a product: its body ends where the next + or - begins.
+	return piece{`\sum_{` + LaTeXName(v) + `:\, ` + poly + ` = 0} ` + l.wrap(body, precProduct), precProduct}
 }

@@ -74,13 +74,30 @@ func (l *lexer) peek() (rune, int) {
 
 func (l *lexer) advance() {
 	r, size := l.peek()
+	ends := l.endsLine(r)
 	l.off += size
-	if r == '\n' {
+	if ends {
 		l.line, l.col = l.line+1, 1
 	} else {
 		l.col++
 	}
 }
+
+// endsLine tells whether the character r at hand ends a line: \n, a \r that no
+// \n follows, and the separators of Unicode.
+func (l *lexer) endsLine(r rune) bool {
+	switch r {
+	case '\n', '\u0085', '\u2028', '\u2029':
+		return true
+	case '\r':
+		return !strings.HasPrefix(l.src[l.off+1:], "\n")
+	}
+	return false
+}
+
+// lookalikes maps the signs of units that keyboards and documents put in the
+// place of Greek letters to these: micro and ohm.
+var lookalikes = strings.NewReplacer("\u00b5", "\u03bc", "\u2126", "\u03a9")
 
 func isNameStart(r rune) bool { return r == '_' || unicode.IsLetter(r) }
 
@@ -94,11 +111,11 @@ func (l *lexer) next() token {
 		r, _ := l.peek()
 		switch {
 		case r == '#':
-			for r != '\n' && r != -1 {
+			for r != -1 && !l.endsLine(r) {
 				l.advance()
 				r, _ = l.peek()
 			}
-		case r == '\n' && l.depth == 0:
+		case l.depth == 0 && l.endsLine(r):
 			t := token{kind: tokBreak, text: "end of line", at: Pos{l.line, l.col}}
 			l.advance()
 			return t
@@ -133,7 +150,7 @@ func (l *lexer) scan() token {
 			l.advance()
 			r, _ = l.peek()
 		}
-		return token{kind: tokName, text: l.src[start:l.off], at: at}
+		return token{kind: tokName, text: lookalikes.Replace(l.src[start:l.off]), at: at}
 	case primeCount(r) > 0:
 		n := 0
 		for primeCount(r) > 0 {

@@ -3,6 +3,7 @@ package expr
 import (
 	"strconv"
 	"strings"
+	"unicode"
 
 	"example.org/closedform/algebra"
 )
@@ -41,11 +42,23 @@ func (m mathml) number(x algebra.Rat) piece {
 // markup escapes what has a meaning in MathML and HTML.
 var markup = strings.NewReplacer("&", "&amp;", "<", "&lt;", ">", "&gt;", `"`, "&quot;", "'", "&#39;")
 
+// escaped writes a word as text of an element. Characters that do not print,
+// which XML forbids in part and which can turn the direction of writing, are
+// replaced.
+func escaped(word string) string {
+	return markup.Replace(strings.Map(func(r rune) rune {
+		if !unicode.IsPrint(r) {
+			return unicode.ReplacementChar
+		}
+		return r
+	}, word))
+}
+
 func (mathml) symbol(name string) piece {
 	base, sub := splitName(name)
-	s := "<mi>" + markup.Replace(letterOf(base)) + "</mi>"
+	s := "<mi>" + escaped(letterOf(lowerDigits(base))) + "</mi>"
 	if sub != "" {
-		s = "<msub>" + s + "<mi>" + markup.Replace(letterOf(sub)) + "</mi></msub>"
+		s = "<msub>" + s + "<mi>" + escaped(letterOf(lowerDigits(sub))) + "</mi></msub>"
 	}
 	return piece{s, precAtom}
 }
@@ -69,7 +82,10 @@ func (m mathml) value(name string, order int, at string) piece {
 		s = "<msup>" + s + "<mo>" + strings.Repeat("′", order) + "</mo></msup>"
 	}
 	if at != "" {
-		s = mrow(s, m.paren(at))
+		return piece{mrow(s, m.paren(at)), precAtom}
+	}
+	if order > 0 {
+		return piece{s, precPower} // it has a superscript already
 	}
 	return piece{s, precAtom}
 }
@@ -132,5 +148,5 @@ func (m mathml) call(fn string, arg piece) piece {
 
 func (m mathml) rootSum(v, poly string, body piece) piece {
 	under := mrow(m.symbol(v).text, "<mo>:</mo>", poly, "<mo>=</mo><mn>0</mn>")
-	return piece{mrow("<munder><mo>∑</mo>"+under+"</munder>", m.wrap(body, precProduct)), precNeg}
+	return piece{mrow("<munder><mo>∑</mo>"+under+"</munder>", m.wrap(body, precProduct)), precProduct}
 }

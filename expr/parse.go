@@ -66,6 +66,9 @@ func ParseModel(src string, limits Limits) (Text, error) {
 					if declared {
 						p.fail(Syntax, word.at, "the independent variable is declared twice")
 					}
+					if name := p.tok.text; functions[name] || name == "pi" || name == "π" || name == "sumroots" {
+						p.fail(Syntax, p.tok.at, "%s has a meaning of its own and cannot be the independent variable", name)
+					}
 					declared = true
 					out.Variable = p.tok.text
 					p.step()
@@ -97,6 +100,9 @@ type parser struct {
 	tok    token
 	depth  int
 	limits Limits
+	// quotients is the number of quotients inside one another in the tree read
+	// last: a/b/c nests to the left, where depth does not see it.
+	quotients int
 }
 
 func newParser(src string, limits Limits) (*parser, error) {
@@ -170,9 +176,11 @@ func (p *parser) expr() Node {
 	defer p.leave()
 	at := p.tok.at
 	var terms []Node
+	quotients := 0
 	sign := p.sign()
 	for {
 		t := p.term()
+		quotients = max(quotients, p.quotients)
 		if sign < 0 {
 			t = Neg{place{t.Pos()}, t}
 		}
@@ -185,6 +193,7 @@ func (p *parser) expr() Node {
 		}
 		sign = p.sign()
 	}
+	p.quotients = quotients
 	if len(terms) == 1 {
 		return terms[0]
 	}
@@ -210,6 +219,7 @@ func (p *parser) term() Node {
 	at := p.tok.at
 	first, juxt := p.factor()
 	acc := []Node{first}
+	quotients := p.quotients
 	divided := false // acc ends in a quotient whose divisor is not in a fraction of numbers
 	flat := func() Node {
 		if len(acc) == 1 {
@@ -223,10 +233,15 @@ func (p *parser) term() Node {
 			p.step()
 			f, j := p.factor()
 			acc, juxt, divided = append(acc, f), j, false
+			quotients = max(quotients, p.quotients)
 		case p.isOp("/"):
 			numeric := len(acc) == 1 && isLiteral(acc[0])
+			slash := p.tok.at
 			p.step()
 			f, j := p.factor()
+			if quotients = max(quotients, p.quotients) + 1; quotients > p.limits.Nesting {
+				p.fail(LimitExceeded, slash, "more than %d divisions one inside the other", p.limits.Nesting)
+			}
 			acc = []Node{Quotient{place{at}, flat(), f}}
 			juxt, divided = j, !(numeric && isLiteral(f))
 		case juxt && (p.tok.kind == tokName || p.isOp("(")):
@@ -235,6 +250,7 @@ func (p *parser) term() Node {
 			}
 			f, j := p.factor()
 			acc, juxt = append(acc, f), j
+			quotients = max(quotients, p.quotients)
 		default:
 			switch {
 			case p.tok.kind == tokName || p.tok.kind == tokNumber || p.isOp("("):
@@ -244,6 +260,7 @@ func (p *parser) term() Node {
 			case p.tok.kind == tokIllegal:
 				p.unexpected("")
 			}
+			p.quotients = quotients
 			return flat()
 		}
 		if len(acc) > p.limits.Terms {
@@ -286,8 +303,10 @@ func (p *parser) power(base Node) Node {
 		if minus || p.isOp("+") {
 			p.step()
 		}
+		quotients := p.quotients
 		e, _ := p.primary()
 		e = p.power(e)
+		p.quotients = max(quotients, p.quotients)
 		if minus {
 			e = Neg{place{minusAt}, e}
 		}
@@ -312,7 +331,7 @@ func (p *parser) rat(t token) algebra.Rat {
 			continue
 		}
 		e, err := strconv.Atoi(t.text[i+1:])
-		if err != nil || 4*e > p.limits.Bits || -4*e > p.limits.Bits {
+		if most := p.limits.Bits / 4; err != nil || e > most || e < -most {
 			p.fail(LimitExceeded, t.at, "the power of ten in %s is out of range", Quote(t.text))
 		}
 	}
@@ -325,6 +344,7 @@ func (p *parser) rat(t token) algebra.Rat {
 
 func (p *parser) primary() (n Node, juxt bool) {
 	t := p.tok
+	p.quotients = 0
 	switch {
 	case t.kind == tokNumber:
 		p.step()
@@ -440,8 +460,10 @@ func (p *parser) rootSum(fn token) Node {
 	p.step()
 	comma()
 	poly := p.expr()
+	quotients := p.quotients
 	comma()
 	body := p.expr()
+	p.quotients = max(quotients, p.quotients)
 	p.closeParen(open)
 	return RootSum{place{fn.at}, v, poly, body}
 }

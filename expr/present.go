@@ -103,7 +103,11 @@ func leadingRoot(p algebra.Poly[algebra.Rat]) (re, im float64) {
 	if d.Sign() < 0 {
 		return h.Float64(), math.Sqrt(-d.Float64())
 	}
-	return h.Float64() + math.Sqrt(d.Float64()), 0
+	re = h.Float64() + math.Sqrt(d.Float64())
+	if math.IsNaN(re) { // beyond float64 on both sides
+		re = math.Inf(-1)
+	}
+	return re, 0
 }
 
 // linear presents P(t) e^(at) with rational a.

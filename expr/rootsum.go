@@ -11,6 +11,11 @@ import (
 // elementary class, and sums over named roots.
 func (env Env[E]) image(n Node) (Image[E], error) {
 	env.Limits = env.Limits.WithDefaults()
+	return env.sumImage(n, new(int))
+}
+
+// sumImage is image, with the orders of the sums over roots counted in order.
+func (env Env[E]) sumImage(n Node, order *int) (Image[E], error) {
 	if !hasRootSum(n) {
 		f, err := env.Elementary(n)
 		if err != nil {
@@ -20,9 +25,9 @@ func (env Env[E]) image(n Node) (Image[E], error) {
 	}
 	switch v := n.(type) {
 	case RootSum:
-		return env.rootSum(v)
+		return env.rootSum(v, order)
 	case Neg:
-		f, err := env.image(v.X)
+		f, err := env.sumImage(v.X, order)
 		if err != nil {
 			return f, err
 		}
@@ -30,15 +35,22 @@ func (env Env[E]) image(n Node) (Image[E], error) {
 	case Sum:
 		sum := ZeroImage(env.K)
 		for _, t := range v.Terms {
-			f, err := env.image(t)
+			f, err := env.sumImage(t, order)
 			if err != nil {
 				return f, err
 			}
 			sum = sum.Add(f)
+			if sum.degree() > env.Limits.Degree+1 {
+				return f, beyondOrder(env.Limits, t.Pos())
+			}
 		}
 		return sum, nil
 	}
 	return Image[E]{}, Errorf(OutsideClass, n.Pos(), "a sum over named roots stands alone or in a sum")
+}
+
+func beyondOrder(l Limits, at Pos) *Error {
+	return Errorf(LimitExceeded, at, "the function satisfies no equation of order below %d, or is written with more roots than that", l.Degree+1)
 }
 
 func hasRootSum(n Node) bool {
@@ -53,7 +65,7 @@ func hasRootSum(n Node) bool {
 // rootSum returns the image of a sum over the roots z of a square-free p of
 // terms c(z) t^k e^(zt). With the k-th coefficient C of K[s]/(p), the image of
 // the sum of C(z) e^(zt) is N/p, N = C p' mod p; a factor t is -d/ds.
-func (env Env[E]) rootSum(v RootSum) (Image[E], error) {
+func (env Env[E]) rootSum(v RootSum, order *int) (Image[E], error) {
 	k := env.K
 	inner := env
 	inner.Variable = v.Var
@@ -72,6 +84,9 @@ func (env Env[E]) rootSum(v RootSum) (Image[E], error) {
 	if !ok || p.Degree() < 1 {
 		return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "%s is not a polynomial in %s", Quote(v.Poly.String()), v.Var)
 	}
+	if *order += p.Degree(); *order > env.Limits.Degree+1 {
+		return Image[E]{}, beyondOrder(env.Limits, v.Pos())
+	}
 	factors, err := k.FactorPoly(context.Background(), p)
 	if err != nil {
 		return Image[E]{}, err
@@ -82,22 +97,30 @@ func (env Env[E]) rootSum(v RootSum) (Image[E], error) {
 			return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "the polynomial of a sum over roots has a multiple root")
 		}
 		l := algebra.NewExtension[E](k, fac.P, v.Var)
-		b, err := (rootBody[E]{env: env, l: l, root: v.Var}).read(v.Body)
+		b, err := (rootBody[E]{env: env, l: l, root: v.Var, work: new(int)}).read(v.Body)
 		if err != nil {
 			return Image[E]{}, err
 		}
 		dp := l.Reduce(fac.P.Derivative())
 		den := NewDenominator(k, []algebra.Factor[E]{{P: fac.P, Mult: 1}})
+		var byPower []algebra.Poly[E]
 		for _, t := range b {
 			if t.exps != 1 {
 				return Image[E]{}, Errorf(OutsideClass, v.Body.Pos(), "the terms of a sum over roots have the factor exp(%s*%s) once", v.Var, env.Variable)
 			}
-			g := den.Image(l.Mul(t.c, dp))
-			for range t.n {
-				g = g.TimesT()
+			if (t.n+1)*p.Degree() > env.Limits.Degree+1 {
+				return Image[E]{}, beyondOrder(env.Limits, v.Body.Pos())
 			}
-			sum = sum.Add(g)
+			for len(byPower) <= t.n {
+				byPower = append(byPower, l.Zero())
+			}
+			byPower[t.n] = l.Mul(t.c, dp)
 		}
+		part := ZeroImage(k)
+		for n := len(byPower) - 1; n >= 0; n-- { // Horner's rule
+			part = part.TimesT().Add(den.Image(byPower[n]))
+		}
+		sum = sum.Add(part)
 	}
 	return sum, nil
 }
@@ -125,6 +148,31 @@ type rootBody[E any] struct {
 	env  Env[E]
 	l    *algebra.Extension[E]
 	root string
+	work *int // spent so far
+}
+
+// spend counts work, in products of short numbers, and fails when there is too
+// much.
+func (r rootBody[E]) spend(units int, at Pos) error {
+	if *r.work += units; *r.work > mostRootWork {
+		return Errorf(LimitExceeded, at, "multiplying out the terms of a sum over roots takes more than %d steps", mostRootWork)
+	}
+	return nil
+}
+
+// mostRootWork bounds the work for the body of one sum over roots.
+const mostRootWork = 1 << 21
+
+// extent returns the number of the coefficients of terms, and the bits of the
+// longest of them.
+func (r rootBody[E]) extent(terms []rootTerm[E]) (coefs, bits int) {
+	for _, t := range terms {
+		coefs += t.c.Degree() + 1
+		for i := range t.c.Degree() + 1 {
+			bits = max(bits, bitLen(r.env.K, t.c.Coef(i)))
+		}
+	}
+	return coefs, bits
 }
 
 func (r rootBody[E]) outside(n Node) error {
@@ -170,14 +218,23 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		if err != nil {
 			return nil, err
 		}
+		if len(den) == 0 {
+			return nil, Errorf(Singular, v.Den.Pos(), "the denominator %s vanishes at the roots", Quote(v.Den.String()))
+		}
 		if len(den) != 1 || den[0].n > 0 || den[0].exps != 0 {
 			return nil, r.outside(v.Den)
+		}
+		// The remainders in Euclid's algorithm grow by the length of its
+		// operands with every step.
+		n, bits := r.extent(den)
+		if err := r.spend(n*r.l.Modulus().Degree()*(1+n*bits/64), v.Den.Pos()); err != nil {
+			return nil, err
 		}
 		inv, err := r.l.Inv(den[0].c)
 		if err != nil {
 			return nil, Errorf(Singular, v.Den.Pos(), "the denominator %s vanishes at a root", Quote(v.Den.String()))
 		}
-		return r.product(num, []rootTerm[E]{{c: inv}}), nil
+		return r.product(num, []rootTerm[E]{{c: inv}}, v.Pos())
 	case Power:
 		e, ok := v.Exp.(Number)
 		m, small := e.Val.Int64()
@@ -190,7 +247,9 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		}
 		out := []rootTerm[E]{{c: r.l.One()}}
 		for range m {
-			out = r.product(out, base)
+			if out, err = r.product(out, base, v.Pos()); err != nil {
+				return nil, err
+			}
 		}
 		return out, nil
 	case Call:
@@ -213,19 +272,26 @@ func (r rootBody[E]) readProduct(factors []Node) ([]rootTerm[E], error) {
 		if err != nil {
 			return nil, err
 		}
-		out = r.product(out, x)
+		if out, err = r.product(out, x, f.Pos()); err != nil {
+			return nil, err
+		}
 	}
 	return out, nil
 }
 
-func (r rootBody[E]) product(a, b []rootTerm[E]) []rootTerm[E] {
+func (r rootBody[E]) product(a, b []rootTerm[E], at Pos) ([]rootTerm[E], error) {
+	na, ba := r.extent(a)
+	nb, bb := r.extent(b)
+	if err := r.spend(na*nb*(1+max(ba, bb)/64), at); err != nil {
+		return nil, err
+	}
 	var out []rootTerm[E]
 	for _, x := range a {
 		for _, y := range b {
 			out = append(out, rootTerm[E]{x.n + y.n, x.exps + y.exps, r.l.Mul(x.c, y.c)})
 		}
 	}
-	return r.collect(out)
+	return r.collect(out), nil
 }
 
 // collect merges like terms and drops zeros.

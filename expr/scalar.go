@@ -91,9 +91,10 @@ func exactRoot(n *big.Int, q int) (*big.Int, bool) {
 	return x, new(big.Int).Exp(x, bq, nil).Cmp(n) == 0
 }
 
+// abs returns |n|, and the largest int64 for the smallest.
 func abs(n int64) int64 {
 	if n < 0 {
-		return -n
+		return max(-n, -(n + 1))
 	}
 	return n
 }

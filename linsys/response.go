@@ -21,6 +21,7 @@ type Response struct {
 	constants []string
 	modes     []Mode
 	proof     Proof
+	bundle    *expr.Bundle
 }
 
 // Mode is an irreducible factor of the characteristic polynomial of a model.
@@ -58,14 +59,15 @@ func (m *Model) ClosedForm(ctx context.Context) (*Response, error) {
 		return out
 	}
 	r.states = function(sol.base, sol.free)
+	r.bundle = expr.NewBundle(r.states...)
 	r.transient = function(sol.complementary, sol.free)
 	r.steady = function(sol.particular, nil)
-	for _, f := range sol.modes {
-		roots, err := algebra.AlgebraicRoots(ctx, f.P)
+	for i, f := range sol.modes.Factors() {
+		roots, err := sol.modes.Roots(ctx, i)
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
-		r.modes = append(r.modes, Mode{Factor: f.P, Multiplicity: f.Mult, Roots: roots})
+		r.modes = append(r.modes, Mode{Factor: f.P, Multiplicity: f.Mult, Roots: algebra.RootsIn(f.P, roots)})
 	}
 	return r, nil
 }
@@ -94,7 +96,7 @@ type solution[E any] struct {
 	free          [][]expr.Image[E]
 	complementary []expr.Image[E]
 	particular    []expr.Image[E]
-	modes         []algebra.Factor[E]
+	modes         expr.Denominator[E]
 	proof         Proof
 }
 
@@ -183,6 +185,13 @@ func (r *Response) index(state string) int {
 // when there is none; [Response.States] lists them.
 func (r *Response) State(name string) expr.Function { return r.states[r.index(name)] }
 
+// At returns the values of all states at the time t, in the order of
+// [Response.States], to the given number of proven significant digits; see
+// [expr.Function.At]. It is faster than asking every state.
+func (r *Response) At(ctx context.Context, t *big.Rat, digits int) ([]string, error) {
+	return r.bundle.At(ctx, t, digits)
+}
+
 // Transient returns the complementary function in a state: what the modes
 // contribute.
 func (r *Response) Transient(name string) expr.Function { return r.transient[r.index(name)] }
@@ -221,6 +230,7 @@ func (r *Response) With(values map[string]*big.Rat) (*Response, error) {
 		return fs
 	}
 	out.states, out.transient = set(r.states), set(r.transient)
+	out.bundle = expr.NewBundle(out.states...)
 	out.constants = nil
 	for _, c := range r.constants {
 		if _, ok := values[c]; !ok {

@@ -53,9 +53,8 @@ var errRemainder = errors.New("linsys: the characteristic polynomial does not an
 //
 // The numerators N over the denominator D = chi q, with q the denominator of
 // the forcing, satisfy (s I - A) N = chi (q y0 + c). Synthetic division by
-// s I - A gives them from the top: N[k-1] = r[k] + A N[k], and leaves no
-// remainder because chi annihilates A (Cayley and Hamilton). The cost is a
-// matrix-vector product for each degree of D.
+// s I - A gives them and leaves no remainder, because chi annihilates A (Cayley
+// and Hamilton).
 func (sv *solver[E]) images(ctx context.Context, y0 []E, homogeneous bool) ([]expr.Image[E], error) {
 	k := sv.k
 	den := sv.modes
@@ -64,41 +63,26 @@ func (sv *solver[E]) images(ctx context.Context, y0 []E, homogeneous bool) ([]ex
 		den = den.Mul(sv.forcing)
 		q = sv.forcing.Poly()
 	}
-	dim := len(y0)
-	rhs := make([]algebra.Poly[E], dim)
-	top := 0
+	rhs := make([]algebra.Poly[E], len(y0))
 	for i := range rhs {
 		b := q.Scale(y0[i])
 		if !homogeneous {
 			b = b.Add(sv.c[i])
 		}
 		rhs[i] = b.Mul(sv.chi)
-		top = max(top, rhs[i].Degree())
 	}
-	coefs := make([][]E, dim) // coefs[i][j] is the coefficient of s^j in N_i
-	for i := range coefs {
-		coefs[i] = make([]E, top)
+	numerators, rem, err := algebra.DivideResolvent(ctx, sv.a, rhs)
+	if err != nil {
+		return nil, wrapCancel(err)
 	}
-	v := zeroVec[E](k, dim)
-	for j := top; j >= 0; j-- {
-		if err := ctx.Err(); err != nil {
-			return nil, wrapCancel(err)
-		}
-		v = sv.a.MulVec(v)
-		for i := range v {
-			if j <= rhs[i].Degree() {
-				v[i] = k.Add(v[i], rhs[i].Coef(j))
-			}
-			if j > 0 {
-				coefs[i][j-1] = v[i]
-			} else if !k.IsZero(v[i]) {
-				return nil, errRemainder
-			}
+	for _, x := range rem {
+		if !k.IsZero(x) {
+			return nil, errRemainder
 		}
 	}
-	out := make([]expr.Image[E], dim)
+	out := make([]expr.Image[E], len(y0))
 	for i := range out {
-		out[i] = den.Image(algebra.NewPoly[E](k, coefs[i]...))
+		out[i] = den.Image(numerators[i])
 	}
 	return out, nil
 }
@@ -181,20 +165,11 @@ func (sv *solver[E]) constraintMatrix() algebra.Matrix[E] {
 	return algebra.NewMatrix[E](sv.k, len(sv.constraints), len(sv.states), entries...)
 }
 
-// properModes returns the factors of the characteristic polynomial of the
-// model: that of A without a root 0 for every constraint, which A has because
-// the constraints were differentiated.
-func (sv *solver[E]) properModes() []algebra.Factor[E] {
-	var out []algebra.Factor[E]
-	for _, f := range sv.modes.Factors() {
-		if f.P.Degree() == 1 && sv.k.IsZero(f.P.Coef(0)) {
-			f.Mult -= len(sv.constraints)
-		}
-		if f.Mult > 0 {
-			out = append(out, f)
-		}
-	}
-	return out
+// properModes returns the characteristic polynomial of the model: that of A
+// without a root 0 for every constraint, which A has because the constraints
+// were differentiated.
+func (sv *solver[E]) properModes() expr.Denominator[E] {
+	return sv.modes.Without(algebra.Monomial[E](sv.k, sv.k.One(), 1), len(sv.constraints))
 }
 
 // basis returns initial values that span the solutions of the homogeneous
@@ -207,7 +182,7 @@ func (sv *solver[E]) basis(ctx context.Context) ([][]E, error) {
 	k := sv.k
 	dim := len(sv.states)
 	var out [][]E
-	for _, f := range sv.properModes() {
+	for _, f := range sv.properModes().Factors() {
 		mult := sv.modes.Exponent(f.P)
 		m := sv.a.EvalPoly(f.P).Pow(mult).Above(sv.constraintMatrix())
 		vectors, err := algebra.Kernel[E](ctx, k, m)

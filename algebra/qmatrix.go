@@ -1,0 +1,91 @@
+package algebra
+
+import (
+	"context"
+	"errors"
+	"math/big"
+
+	"example.org/closedform/algebra/internal/intmat"
+)
+
+// Matrices over Q are handed to integer algorithms as d*a, with d the least
+// common denominator of the entries of a.
+
+// CharPoly returns det(s I - a): with d the common denominator of the entries,
+// d^n det(s I - a) is the characteristic polynomial of the integer matrix d*a
+// at d*s, which is found modulo primes.
+func (Rationals) CharPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error) {
+	a.mustBeSquare("characteristic polynomial")
+	ints, d := a.intRows()
+	c, err := intmat.CharPoly(ctx, ints)
+	if err != nil {
+		return Poly[Rat]{}, err
+	}
+	return unscaled(c, d), nil
+}
+
+// unscaled returns the monic polynomial whose roots are those of the monic c
+// divided by d: the coefficient of s^k of the multiple by d^n is d^k c[k].
+func unscaled(c []*big.Int, d *big.Int) Poly[Rat] {
+	if d.IsInt64() && d.Int64() == 1 {
+		return overQ(c)
+	}
+	out := make([]*big.Int, len(c))
+	scale := big.NewInt(1)
+	for k := range c {
+		out[k] = new(big.Int).Mul(c[k], scale)
+		scale = new(big.Int).Mul(scale, d)
+	}
+	return overQ(out)
+}
+
+func (Rationals) minPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error) {
+	ints, d := a.intRows()
+	c, err := intmat.MinPoly(ctx, ints)
+	if err != nil {
+		return Poly[Rat]{}, err
+	}
+	return unscaled(c, d), nil
+}
+
+func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
+	ints, d := a.intRows()
+	x, err := intmat.Det(ctx, ints)
+	if err != nil {
+		return Rat{}, err
+	}
+	return RatFromFrac(x, d.Exp(d, big.NewInt(int64(a.n)), nil)), nil
+}
+
+func (Rationals) solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error) {
+	// (da a) X' = (db b) gives X = X' da / db.
+	ai, da := a.intRows()
+	bi, db := b.intRows()
+	num, den, err := intmat.Solve(ctx, ai, bi)
+	return overCommon(num, den, da, db, a.n, b.n, err)
+}
+
+func (Rationals) inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error) {
+	ints, d := a.intRows()
+	num, den, err := intmat.Inverse(ctx, ints)
+	return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
+}
+
+// overCommon returns the m x n matrix num*p/(den*q).
+func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matrix[Rat], error) {
+	if errors.Is(err, intmat.ErrSingular) {
+		return Matrix[Rat]{}, ErrSingular
+	}
+	if err != nil {
+		return Matrix[Rat]{}, err
+	}
+	scale := RatFromFrac(p, new(big.Int).Mul(den, q))
+	integral := scale.IsInt()
+	return MatrixFromFunc[Rat](Q, m, n, func(i, j int) Rat {
+		x := RatFromBigInt(num[i][j])
+		if integral && scale.IsOne() {
+			return x
+		}
+		return x.Mul(scale)
+	}), nil
+}

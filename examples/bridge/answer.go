@@ -1,0 +1,102 @@
+package main
+
+import (
+	"context"
+
+	"example.org/closedform/expr"
+	"example.org/closedform/linsys"
+)
+
+// answer derives the response that a request asks for.
+func answer(ctx context.Context, req request) (object, error) {
+	if req.want["working"] {
+		return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the working is not written out yet; leave it out of want")
+	}
+	m, err := linsys.Read(req.model)
+	if err != nil {
+		return nil, err
+	}
+	r, err := m.ClosedForm(ctx)
+	if err != nil {
+		return nil, err
+	}
+	valued, err := r.With(req.set)
+	if err != nil {
+		return nil, err
+	}
+	var o object
+	o.add("states", r.States())
+	o.add("solution", forms(req, r, r.State))
+	if req.want["go"] {
+		src, err := r.GoSource(ctx, linsys.GoOptions{})
+		if err != nil {
+			return nil, err
+		}
+		o.add("go", string(src))
+	}
+	o.add("steady", forms(req, r, r.Steady))
+	o.add("transient", forms(req, r, r.Transient))
+	if req.want["modes"] {
+		list, err := modes(ctx, r.Modes(), req.digits)
+		if err != nil {
+			return nil, err
+		}
+		o.add("modes", list)
+	}
+	if req.at != nil {
+		list, err := values(ctx, valued, req)
+		if err != nil {
+			return nil, err
+		}
+		o.add("values", list)
+	}
+	p := r.Proof()
+	o.add("proof", object{{"residual", p.Residual()}, {"sides", p.Side()}, {"holds", p.Holds()}})
+	// Formulas in numbers alone hold without conditions.
+	o.add("conditions", []string{})
+	return o, nil
+}
+
+// forms returns the written forms asked for of every state's function.
+func forms(req request, r *linsys.Response, of func(state string) expr.Function) object {
+	out := object{}
+	for _, name := range r.States() {
+		n := of(name).Node()
+		o := object{}
+		if req.want["text"] {
+			o.add("text", n.String())
+		}
+		if req.want["latex"] {
+			o.add("latex", expr.LaTeX(n))
+		}
+		if req.want["mathml"] {
+			o.add("mathml", expr.MathML(n))
+		}
+		out.add(name, o)
+	}
+	return out
+}
+
+// values returns the values of the states at the times asked for. The time has
+// the key t, or the name of the independent variable where a state is called t.
+func values(ctx context.Context, r *linsys.Response, req request) ([]object, error) {
+	key := "t"
+	for _, name := range r.States() {
+		if name == key {
+			key = r.Model().Variable()
+		}
+	}
+	out := []object{}
+	for _, m := range req.at {
+		o := object{{key, m.text}}
+		for _, name := range r.States() {
+			v, err := r.State(name).At(ctx, m.time, req.digits)
+			if err != nil {
+				return nil, err
+			}
+			o.add(name, v)
+		}
+		out = append(out, o)
+	}
+	return out, nil
+}

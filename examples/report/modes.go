@@ -1,0 +1,154 @@
+package main
+
+import (
+	"context"
+	"fmt"
+	"html/template"
+	"math"
+	"strconv"
+
+	"example.org/closedform/examples/internal/roots"
+	"example.org/closedform/expr"
+	"example.org/closedform/linsys"
+)
+
+// modeRow is a real eigenvalue, or a pair of conjugate ones.
+type modeRow struct {
+	factor       int // number of the factor, from 1
+	factorNode   expr.Node
+	multiplicity int
+	exact        exactRoot
+	re, im       string // decimals; im is not negative
+	sigma, omega float64
+}
+
+// modeRows returns the rows of the table of modes.
+func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
+	var rows []modeRow
+	for i, m := range list {
+		text := m.Factor.String()
+		node, err := expr.Parse(text, unlimited)
+		if err != nil {
+			return nil, err
+		}
+		for _, x := range m.Roots {
+			row := modeRow{factor: i + 1, factorNode: node, multiplicity: m.Multiplicity}
+			var err error
+			if row.re, row.im, err = roots.Decimals(ctx, x, rootDigits); err != nil {
+				return nil, err
+			}
+			row.sigma, _ = strconv.ParseFloat(row.re, 64)
+			row.omega, _ = strconv.ParseFloat(row.im, 64)
+			if row.omega < 0 {
+				continue // the other one of a pair
+			}
+			if m.Factor.Degree() <= 2 {
+				if row.exact, err = newExactRoot(x.String(), row.omega > 0); err != nil {
+					return nil, err
+				}
+			}
+			rows = append(rows, row)
+		}
+	}
+	return rows, nil
+}
+
+// name returns the name that the report gives to the factor.
+func (m modeRow) name() expr.Node { return expr.Sym(fmt.Sprintf("p_%d", m.factor)) }
+
+// polynomial returns the name of the factor as a polynomial in s.
+func (m modeRow) polynomial() expr.Node {
+	return expr.Value{Name: fmt.Sprintf("p_%d", m.factor), At: expr.Sym("s")}
+}
+
+// exactRoot is an eigenvalue in radicals, a pair with its two signs; all is empty
+// if there are no radicals.
+type exactRoot struct {
+	text, latex string
+	html        template.HTML
+}
+
+// newExactRoot reads the eigenvalue in its text form, the upper one of a pair.
+func newExactRoot(text string, pair bool) (exactRoot, error) {
+	n, err := expr.Parse(text, unlimited)
+	if err != nil {
+		return exactRoot{}, err
+	}
+	if !pair {
+		return exactRoot{text, expr.LaTeX(n), formula(n)}, nil
+	}
+	// The imaginary part is the last term, or all there is.
+	if s, ok := n.(expr.Sum); ok {
+		last := len(s.Terms) - 1
+		re, im := s.Terms[0], s.Terms[last]
+		return exactRoot{re.String() + " ± " + im.String(), expr.LaTeX(re) + ` \pm ` + expr.LaTeX(im),
+			formula(re) + " ± " + formula(im)}, nil
+	}
+	return exactRoot{"± " + text, `\pm ` + expr.LaTeX(n), "± " + formula(n)}, nil
+}
+
+// unlimited reads what the library itself has written.
+var unlimited = expr.Limits{Text: math.MaxInt32, Bits: math.MaxInt32, Terms: math.MaxInt32, Degree: math.MaxInt32}
+
+// decimal writes the eigenvalue, or the pair.
+func (m modeRow) decimal() string {
+	switch {
+	case m.omega == 0:
+		return m.re
+	case m.sigma == 0:
+		return "± " + m.im + " i"
+	}
+	return m.re + " ± " + m.im + " i"
+}
+
+// timeConstant returns -1/Re, "" if the mode neither decays nor grows.
+func (m modeRow) timeConstant() string {
+	if m.sigma == 0 {
+		return ""
+	}
+	return short(-1 / m.sigma)
+}
+
+// damping returns the damping ratio of a pair, -Re/|root|.
+func (m modeRow) damping() string {
+	if m.omega == 0 {
+		return ""
+	}
+	return short(-m.sigma / math.Hypot(m.sigma, m.omega))
+}
+
+// period returns the period of a pair, 2 pi/Im.
+func (m modeRow) period() string {
+	if m.omega == 0 {
+		return ""
+	}
+	return short(2 * math.Pi / m.omega)
+}
+
+// remark says what the numbers mean.
+func (m modeRow) remark() string {
+	switch {
+	case m.sigma > 0:
+		return "grows"
+	case m.sigma == 0 && m.omega > 0:
+		return "undamped"
+	case m.sigma == 0:
+		return "constant"
+	case m.omega > 0:
+		return "damped"
+	}
+	return "decays"
+}
+
+// short writes a number with five significant digits.
+func short(x float64) string { return strconv.FormatFloat(x+0, 'g', 5, 64) }
+
+// oscillates tells whether there is a pair among the modes.
+func oscillates(modes []modeRow) bool {
+	for _, m := range modes {
+		if m.omega > 0 {
+			return true
+		}
+	}
+	return false
+}

@@ -1,0 +1,120 @@
+package main
+
+import (
+	"context"
+	"math/big"
+	"strings"
+
+	"example.org/closedform/algebra"
+	"example.org/closedform/expr"
+	"example.org/closedform/linsys"
+)
+
+const (
+	// valueDigits is how many digits of a value are given.
+	valueDigits = 10
+	// statesPerTable is how many columns of values fit on a page.
+	statesPerTable = 4
+	// rootDigits is how many digits of an eigenvalue are given.
+	rootDigits = 8
+)
+
+// caution stands in every report.
+const caution = "This report supports the responsible professional and does not replace " +
+	"that person's judgement, nor the local code of practice. The formulas are proven for the model as " +
+	"it is stated here; whether the model fits the plant is for the reader to decide."
+
+// report is all that the files are written from.
+type report struct {
+	src      source
+	response *linsys.Response
+	goSource []byte
+	modes    []modeRow
+	window   window
+	values   []valueRow
+	curves   []curve
+	short    *shortener // shared by the files, so that they use the same names
+}
+
+// general tells whether constants are free: then there are no values.
+func (r *report) general() bool { return len(r.response.Constants()) > 0 }
+
+// valueRow holds the states at one time.
+type valueRow struct {
+	time   *big.Rat
+	values []string
+}
+
+// derive does the mathematics; nil for from or to stands for the default.
+func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error) {
+	m, err := linsys.Read(src.text)
+	if err != nil {
+		return nil, err
+	}
+	names := m.States()
+	for _, eq := range m.Definitions() {
+		names = append(names, eq.Left.String())
+	}
+	r := &report{src: src, short: newShortener(names)}
+	if r.response, err = m.ClosedForm(ctx); err != nil {
+		return nil, err
+	}
+	if r.goSource, err = r.response.GoSource(ctx, linsys.GoOptions{Package: "response"}); err != nil {
+		return nil, err
+	}
+	if r.modes, err = modeRows(ctx, r.response.Modes()); err != nil {
+		return nil, err
+	}
+	if r.general() {
+		return r, nil
+	}
+	var steady []expr.Node
+	for _, name := range r.response.States() {
+		steady = append(steady, r.response.Steady(name).Node())
+	}
+	if r.window, err = chooseWindow(r.modes, inputFrequencies(steady, m.Variable()), m.Origin(), from, to); err != nil {
+		return nil, err
+	}
+	for _, share := range []string{"0", "1/100", "1/20", "1/10", "1/5", "1/2", "3/4", "1"} {
+		x, _ := algebra.ParseRat(share)
+		row := valueRow{time: r.window.at(x.Big())}
+		for _, name := range r.response.States() {
+			v, err := r.response.State(name).At(ctx, row.time, valueDigits)
+			if err != nil {
+				return nil, err
+			}
+			row.values = append(row.values, v)
+		}
+		r.values = append(r.values, row)
+	}
+	for _, name := range r.response.States() {
+		c, err := sample(ctx, name, r.response.State(name), r.window)
+		if err != nil {
+			return nil, err
+		}
+		r.curves = append(r.curves, c)
+	}
+	return r, nil
+}
+
+// title is the first sentence of the notes.
+func (r *report) title() string {
+	if first, _, _ := strings.Cut(r.src.notes(), ". "); first != "" {
+		return strings.TrimSuffix(first, ".")
+	}
+	return "Response of a linear model"
+}
+
+// further is the rest of the notes.
+func (r *report) further() string {
+	_, rest, _ := strings.Cut(r.src.notes(), ". ")
+	return rest
+}
+
+// timeText writes a time: as a decimal number if it is a short one.
+func timeText(x *big.Rat) string {
+	if n, exact := x.FloatPrec(); exact && n <= 12 {
+		return x.FloatString(n)
+	}
+	return x.RatString()
+}

@@ -1,0 +1,138 @@
+package expr
+
+import (
+	"context"
+	"errors"
+	"math/big"
+	"sync"
+
+	"example.org/closedform/algebra"
+)
+
+// Bundle is several functions of one time that are evaluated together, so that
+// the exponentials, sines and cosines they share are computed once. Bundles are
+// immutable; methods may be called concurrently.
+type Bundle struct {
+	fs     []Function
+	images []Image[algebra.Rat]
+	cache  expansions
+}
+
+// NewBundle returns the bundle of the functions. It panics when their variables
+// or origins differ.
+func NewBundle(fs ...Function) *Bundle {
+	b := &Bundle{fs: append([]Function(nil), fs...)}
+	for _, f := range fs {
+		if f.variable != fs[0].variable || !f.origin.Equal(fs[0].origin) {
+			panic("expr: bundle of functions in different times")
+		}
+		b.images = append(b.images, f.base)
+	}
+	return b
+}
+
+// At returns the values of all functions at t as [Function.At] does.
+func (b *Bundle) At(ctx context.Context, t *big.Rat, digits int) ([]string, error) {
+	for _, f := range b.fs {
+		if err := f.noFree(); err != nil {
+			return nil, err
+		}
+	}
+	if len(b.fs) == 0 {
+		return nil, nil
+	}
+	return b.cache.digits(ctx, b.images, algebra.RatFromBig(t).Sub(b.fs[0].origin), digits)
+}
+
+// expansions keeps the expansions of some images by their precision, of which
+// few occur: each is twice another.
+type expansions struct {
+	mu     sync.Mutex
+	byPrec map[uint]*expansion
+}
+
+func (c *expansions) get(ctx context.Context, images []Image[algebra.Rat], prec uint) (*expansion, error) {
+	c.mu.Lock()
+	defer c.mu.Unlock()
+	if x, ok := c.byPrec[prec]; ok {
+		return x, nil
+	}
+	x, err := expand[algebra.Rat](ctx, algebra.Q, images, prec)
+	if err != nil {
+		return nil, err
+	}
+	if c.byPrec == nil {
+		c.byPrec = map[uint]*expansion{}
+	}
+	c.byPrec[prec] = x
+	return x, nil
+}
+
+// mostPrecision is the working precision in bits where the search for digits
+// gives up, and mostDigits the digits it has room for.
+const (
+	mostPrecision = 1 << 17
+	mostDigits    = 30_000
+)
+
+// digits returns the values of the images at tau to so many significant digits,
+// raising the precision until every one is certain.
+func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], tau algebra.Rat, digits int) ([]string, error) {
+	digits = max(digits, 1)
+	if digits > mostDigits {
+		return nil, Errorf(LimitExceeded, Pos{}, "%d digits, at most %d are given", digits, mostDigits)
+	}
+	out := make([]string, len(images))
+	left := 0
+	for i, f := range images {
+		if x, ok := f.rationalAt(tau); ok {
+			out[i] = algebra.RatDecimal(x.Big(), digits)
+		} else {
+			left++
+		}
+	}
+	for prec := (uint(digits)*10/3 + 127) &^ 63; left > 0; prec *= 2 {
+		if prec > mostPrecision {
+			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", tau, mostPrecision)
+		}
+		balls, err := c.balls(ctx, images, tau, prec)
+		if err != nil {
+			return nil, err
+		}
+		for i, b := range balls {
+			if out[i] != "" {
+				continue
+			}
+			if s, ok := b.Decimal(digits); ok {
+				out[i] = s
+				left--
+			}
+		}
+	}
+	return out, nil
+}
+
+// balls returns balls around the values of the images at tau.
+func (c *expansions) balls(ctx context.Context, images []Image[algebra.Rat], tau algebra.Rat, prec uint) ([]algebra.Ball, error) {
+	if tau.IsZero() {
+		out := make([]algebra.Ball, len(images))
+		for i, f := range images {
+			out[i] = algebra.BallFromRat(f.Initial().Big(), prec)
+		}
+		return out, nil
+	}
+	x, err := c.get(ctx, images, prec)
+	if err != nil {
+		return nil, wrapCancel(err)
+	}
+	out, err := x.at(ctx, algebra.BallFromRat(tau.Big(), prec))
+	return out, wrapCancel(err)
+}
+
+// wrapCancel turns the error of a context into an *Error of kind Cancelled.
+func wrapCancel(err error) error {
+	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
+		return &Error{Kind: Cancelled, Message: err.Error(), Cause: err}
+	}
+	return err
+}
