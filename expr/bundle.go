@@ -48,24 +48,23 @@ func (b *Bundle) At(ctx context.Context, t *big.Rat, digits int) ([]string, erro
 // few occur: each is twice another.
 type expansions struct {
 	mu     sync.Mutex
-	byPrec map[uint]*expansion
+	byPrec map[uint]*shared[*expansion]
 }
 
 func (c *expansions) get(ctx context.Context, images []Image[algebra.Rat], prec uint) (*expansion, error) {
 	c.mu.Lock()
-	defer c.mu.Unlock()
-	if x, ok := c.byPrec[prec]; ok {
-		return x, nil
+	x, ok := c.byPrec[prec]
+	if !ok {
+		if c.byPrec == nil {
+			c.byPrec = map[uint]*shared[*expansion]{}
+		}
+		x = &shared[*expansion]{}
+		c.byPrec[prec] = x
 	}
-	x, err := expand[algebra.Rat](ctx, algebra.Q, images, prec)
-	if err != nil {
-		return nil, err
-	}
-	if c.byPrec == nil {
-		c.byPrec = map[uint]*expansion{}
-	}
-	c.byPrec[prec] = x
-	return x, nil
+	c.mu.Unlock()
+	return x.get(ctx, func(ctx context.Context) (*expansion, error) {
+		return expand[algebra.Rat](ctx, algebra.Q, images, prec)
+	})
 }
 
 // mostPrecision is the working precision in bits where the search for digits

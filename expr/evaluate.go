@@ -14,10 +14,11 @@ type series struct {
 	c    []algebra.ComplexBall
 }
 
-// rate is an enclosed root. A paired one stands for its conjugate as well: the
-// terms are twice the real parts.
+// rate is an enclosed root with its powers. A paired one stands for its
+// conjugate as well: the terms are twice the real parts.
 type rate struct {
 	at     algebra.ComplexBall
+	powers *algebra.Powers
 	paired bool
 }
 
@@ -35,6 +36,9 @@ type expansion struct {
 func expand[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E], prec uint) (*expansion, error) {
 	x := expander[E]{expansion: &expansion{prec: prec}, ctx: ctx, k: k}
 	for _, f := range images {
+		x.degree = max(x.degree, f.degree())
+	}
+	for _, f := range images {
 		terms, err := x.image(f)
 		if err != nil {
 			return nil, err
@@ -48,14 +52,14 @@ type expander[E any] struct {
 	*expansion
 	ctx    context.Context
 	k      algebra.Scalars[E]
+	degree int // the highest of the polynomials to be evaluated
 	primes []*expandedPrime[E]
 	dens   []expandedDenominator[E]
 }
 
-// expandedPrime is a prime in balls, with the indices of its rates.
+// expandedPrime is a prime with the indices of its rates.
 type expandedPrime[E any] struct {
 	*prime[E]
-	ball  []algebra.ComplexBall
 	rates []int
 }
 
@@ -74,7 +78,7 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 			return q, nil
 		}
 	}
-	q := &expandedPrime[E]{prime: p, ball: enclosePoly(x.k, p.p, x.prec)}
+	q := &expandedPrime[E]{prime: p}
 	roots, err := p.rootSet(x.ctx, x.k)
 	if err != nil {
 		return nil, err
@@ -88,7 +92,7 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 			return nil, err
 		}
 		q.rates = append(q.rates, len(x.rates))
-		x.rates = append(x.rates, rate{at: at, paired: roots.Conjugate(r) != r})
+		x.rates = append(x.rates, rate{at: at, powers: algebra.NewPowers(at, x.degree, x.prec), paired: roots.Conjugate(r) != r})
 	}
 	x.primes = append(x.primes, q)
 	return q, nil
@@ -126,13 +130,14 @@ next:
 				return nil, err
 			}
 			// p(L + h) = h q(h), and the part at L is N/(q^e Q) h^-e.
-			at := x.rates[r].at
+			at := x.rates[r].powers
 			product := []algebra.ComplexBall{one}
 			for j, other := range den {
-				q := taylorAt(d.primes[j].ball, at, n+1, x.prec)
+				skip := 0
 				if i == j {
-					q = q[1:]
+					skip = 1
 				}
+				q := taylorAt(x.k, other.p, at, skip, n)
 				product = mulBalls(product, powBalls(q, other.e, n, x.prec), n, x.prec)
 			}
 			all = append(all, divBalls([]algebra.ComplexBall{one}, product, n, x.prec))
@@ -150,7 +155,6 @@ func (x *expander[E]) image(f Image[E]) ([]series, error) {
 	if err != nil {
 		return nil, err
 	}
-	num := enclosePoly(x.k, f.num, x.prec)
 	var out []series
 	for i, pp := range f.den {
 		n := pp.e
@@ -158,7 +162,7 @@ func (x *expander[E]) image(f Image[E]) ([]series, error) {
 			if err := x.ctx.Err(); err != nil {
 				return nil, err
 			}
-			g := mulBalls(taylorAt(num, x.rates[r].at, n, x.prec), d.series[i][j], n, x.prec)
+			g := mulBalls(taylorAt(x.k, f.num, x.rates[r].powers, 0, n), d.series[i][j], n, x.prec)
 			c := make([]algebra.ComplexBall, n)
 			fact := big.NewInt(1)
 			for k := range c {
@@ -178,34 +182,37 @@ func (x *expander[E]) image(f Image[E]) ([]series, error) {
 // at returns balls around the values of the images at t.
 func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, error) {
 	prec := x.prec
-	// Twice e^(Lt) for a pair, whose sum is twice the real part.
-	exps := make([]algebra.ComplexBall, len(x.rates))
+	// The parts of e^(Lt), and of twice its conjugate for a pair: the sum is a dot
+	// product of real numbers.
+	re, im := make([]algebra.Ball, len(x.rates)), make([]algebra.Ball, len(x.rates))
 	for i, r := range x.rates {
 		if err := ctx.Err(); err != nil {
 			return nil, err
 		}
 		e := r.at.Re.Mul(t, prec).Exp(prec)
 		if !r.paired {
-			exps[i].Re = e
+			re[i] = e
 			continue
 		}
 		e = e.MulPow2(1)
 		sin, cos := r.at.Im.Mul(t, prec).SinCos(prec)
-		exps[i] = algebra.ComplexBall{Re: e.Mul(cos, prec), Im: e.Mul(sin, prec)}
+		re[i], im[i] = e.Mul(cos, prec), e.Mul(sin, prec).Neg()
 	}
 	out := make([]algebra.Ball, len(x.terms))
+	var coefs, exps []algebra.Ball
 	for i, terms := range x.terms {
+		coefs, exps = coefs[:0], exps[:0]
 		for _, s := range terms {
 			c := s.c[len(s.c)-1]
 			for k := len(s.c) - 2; k >= 0; k-- {
 				c = algebra.ComplexBall{Re: c.Re.Mul(t, prec), Im: c.Im.Mul(t, prec)}.Add(s.c[k], prec)
 			}
-			e := exps[s.rate]
-			out[i] = out[i].Add(c.Re.Mul(e.Re, prec), prec)
+			coefs, exps = append(coefs, c.Re), append(exps, re[s.rate])
 			if x.rates[s.rate].paired {
-				out[i] = out[i].Sub(c.Im.Mul(e.Im, prec), prec)
+				coefs, exps = append(coefs, c.Im), append(exps, im[s.rate])
 			}
 		}
+		out[i] = algebra.Dot(coefs, exps, prec)
 	}
 	return out, nil
 }
@@ -218,24 +225,14 @@ func divInt(x algebra.ComplexBall, n *big.Int, prec uint) algebra.ComplexBall {
 	return algebra.ComplexBall{Re: x.Re.Quo(b, prec), Im: x.Im.Quo(b, prec)}
 }
 
-func enclosePoly[E any](k algebra.Scalars[E], p algebra.Poly[E], prec uint) []algebra.ComplexBall {
-	out := make([]algebra.ComplexBall, p.Degree()+1)
-	for i := range out {
-		out[i] = algebra.ComplexBall{Re: k.Enclose(p.Coef(i), prec)}
+// taylorAt returns n coefficients of the expansion of p at an enclosed number,
+// from the power skip on, or all if there are fewer.
+func taylorAt[E any](k algebra.Scalars[E], p algebra.Poly[E], at *algebra.Powers, skip, n int) []algebra.ComplexBall {
+	c := make([]algebra.ComplexBall, max(0, min(n, p.Degree()+1-skip)))
+	for j := range c {
+		c[j] = algebra.Taylor(k, p, j+skip, at)
 	}
-	return out
-}
-
-// taylorAt returns the first n coefficients of the expansion of p at x, or all
-// if there are fewer, by repeated synthetic division.
-func taylorAt(p []algebra.ComplexBall, x algebra.ComplexBall, n int, prec uint) []algebra.ComplexBall {
-	c := append([]algebra.ComplexBall(nil), p...)
-	for i := 0; i < n && i < len(c)-1; i++ {
-		for j := len(c) - 2; j >= i; j-- {
-			c[j] = c[j].Add(x.Mul(c[j+1], prec), prec)
-		}
-	}
-	return c[:min(n, len(c))]
+	return c
 }
 
 func mulBalls(a, b []algebra.ComplexBall, n int, prec uint) []algebra.ComplexBall {

@@ -27,7 +27,8 @@ type GoOptions struct {
 // with no dependency but math, formatted by gofmt. Every constant is the float64
 // nearest to its exact value; exponentials, sines and cosines are computed once
 // for all functions; polynomials in time are in Horner's form. Free constants
-// become an array argument. The functions must share variable and origin.
+// become an array argument. It panics when the variables or origins of the
+// functions differ.
 func GoSource(ctx context.Context, names []string, fs []Function, constants []string, opt GoOptions) ([]byte, error) {
 	if opt.Package == "" {
 		opt.Package = "response"
@@ -55,6 +56,9 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	}
 	bodies := make([]string, len(fs))
 	for i, f := range fs {
+		if f.variable != fs[0].variable || !f.origin.Equal(fs[0].origin) {
+			panic("expr: Go source of functions in different times")
+		}
 		var err error
 		if bodies[i], err = g.function(ctx, f); err != nil {
 			return nil, err
@@ -98,11 +102,11 @@ func (g *goWriter) function(ctx context.Context, f Function) (string, error) {
 		if err != nil {
 			return "", err
 		}
-		for i, name := range g.constants {
-			if name == t.Name {
-				sum.add(false, fmt.Sprintf("c[%d]*(%s)", i, s))
-			}
+		i := slices.Index(g.constants, t.Name)
+		if i < 0 {
+			return "", Errorf(SideConditions, Pos{}, "the free constant %s is not among the constants", t.Name)
 		}
+		sum.add(false, fmt.Sprintf("c[%d]*(%s)", i, s))
 	}
 	s, err := g.image(ctx, f.base)
 	if err != nil {
@@ -446,8 +450,10 @@ func usesName(src, name string) bool {
 	return false
 }
 
-// inert keeps a text on its line: what does not print is escaped.
+// inert keeps a text on its line: what does not print is escaped, and so is the
+// plus sign of what could be taken for a build constraint.
 func inert(s string) string {
+	s = strings.ReplaceAll(s, "+build", `\+build`)
 	var b strings.Builder
 	for _, r := range s {
 		if unicode.IsPrint(r) {

@@ -2,7 +2,6 @@ package expr
 
 import (
 	"context"
-	"sync"
 
 	"example.org/closedform/algebra"
 )
@@ -25,8 +24,7 @@ type Image[E any] struct {
 // isolated when first asked for and shared by all images that hold the prime.
 type prime[E any] struct {
 	p     algebra.Poly[E]
-	mu    sync.Mutex
-	roots *algebra.RootSet
+	roots shared[*algebra.RootSet]
 }
 
 func newPrime[E any](k algebra.Scalars[E], p algebra.Poly[E]) *prime[E] {
@@ -35,16 +33,7 @@ func newPrime[E any](k algebra.Scalars[E], p algebra.Poly[E]) *prime[E] {
 
 // rootSet isolates the roots of the prime.
 func (p *prime[E]) rootSet(ctx context.Context, k algebra.Scalars[E]) (*algebra.RootSet, error) {
-	p.mu.Lock()
-	defer p.mu.Unlock()
-	if p.roots == nil {
-		roots, err := k.Roots(ctx, p.p)
-		if err != nil {
-			return nil, err
-		}
-		p.roots = roots
-	}
-	return p.roots, nil
+	return p.roots.get(ctx, func(ctx context.Context) (*algebra.RootSet, error) { return k.Roots(ctx, p.p) })
 }
 
 type primePower[E any] struct {

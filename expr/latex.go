@@ -228,6 +228,6 @@ func (l latex) call(fn string, arg piece) piece {
 }
 
 func (l latex) rootSum(v, poly string, body piece) piece {
-	// A sum binds like a product: its body ends where the next + or - begins.
-	return piece{`\sum_{` + LaTeXName(v) + `:\, ` + poly + ` = 0} ` + l.wrap(body, precProduct), precProduct}
+	// A sum binds loosely, so that nothing behind it is taken for its body.
+	return piece{`\sum_{` + LaTeXName(v) + `:\, ` + poly + ` = 0} ` + l.wrap(body, precProduct), precNeg}
 }

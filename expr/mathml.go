@@ -148,5 +148,5 @@ func (m mathml) call(fn string, arg piece) piece {
 
 func (m mathml) rootSum(v, poly string, body piece) piece {
 	under := mrow(m.symbol(v).text, "<mo>:</mo>", poly, "<mo>=</mo><mn>0</mn>")
-	return piece{mrow("<munder><mo>∑</mo>"+under+"</munder>", m.wrap(body, precProduct)), precProduct}
+	return piece{mrow("<munder><mo>∑</mo>"+under+"</munder>", m.wrap(body, precProduct)), precNeg}
 }

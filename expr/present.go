@@ -85,7 +85,7 @@ func before(p, q algebra.Poly[algebra.Rat]) bool {
 	} else if p.Degree() != q.Degree() {
 		return p.Degree() < q.Degree()
 	}
-	for i := p.Degree(); i >= 0; i-- {
+	for i := max(p.Degree(), q.Degree()); i >= 0; i-- {
 		if c := p.Coef(i).Compare(q.Coef(i)); c != 0 {
 			return c < 0
 		}
@@ -308,9 +308,15 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 		cn, n, _ := contentOf(num)
 		cd, d, _ := contentOf(den)
 		c := cn.Quo(cd)
+		minus := c.Sign() < 0
+		c = c.Abs()
 		top := Mul(Num(algebra.RatFromBigInt(c.Num())), PolyNode(n, z), exp)
 		bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), PolyNode(d, z))
-		return RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
+		var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
+		if minus {
+			sum = Neg{X: sum}
+		}
+		return sum
 	}
 	part := f.local(i)
 	var terms []Node

@@ -257,7 +257,11 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		if err != nil {
 			return nil, err
 		}
-		if v.Func != "exp" || len(arg) != 1 || arg[0].n != 1 || arg[0].exps != 0 || !arg[0].c.Equal(r.l.Root()) {
+		isRate := len(arg) == 1 && arg[0].n == 1 && arg[0].exps == 0 && arg[0].c.Equal(r.l.Root())
+		if r.l.Root().IsZero() {
+			isRate = len(arg) == 0
+		}
+		if v.Func != "exp" || !isRate {
 			return nil, r.outside(n)
 		}
 		return []rootTerm[E]{{exps: 1, c: r.l.One()}}, nil

@@ -82,7 +82,12 @@ func write(n Node, w notation) piece {
 					minus[i], t = true, Num(u.Val.Neg())
 				}
 			}
-			terms[i] = at(t, precNeg+1)
+			// A sum over roots reaches to the end, and may stand there as it is.
+			least := precNeg + 1
+			if _, ok := t.(RootSum); ok && i == len(v.Terms)-1 {
+				least = precNeg
+			}
+			terms[i] = at(t, least)
 		}
 		return piece{w.sum(terms, minus), precSum}
 	case Neg:

@@ -62,19 +62,23 @@ func each(n expr.Node, visit func(expr.Node)) {
 }
 
 // isSide tells whether a statement contains the value of something at a time,
-// which makes it a side condition.
+// and no derivative at all times, which makes it a side condition.
 func (b *builder) isSide(eq expr.Equation) bool {
-	found := false
+	value, derivative := false, false
 	for _, side := range []expr.Node{eq.Left, eq.Right} {
 		each(side, func(n expr.Node) {
-			if v, ok := n.(expr.Value); ok && v.At != nil {
-				if _, _, isFunction := b.functionOf(v); !isFunction {
-					found = true
-				}
+			v, ok := n.(expr.Value)
+			if !ok {
+				return
+			}
+			if _, order, isFunction := b.functionOf(v); !isFunction {
+				value = true
+			} else if order > 0 {
+				derivative = true
 			}
 		})
 	}
-	return found
+	return value && !derivative
 }
 
 // classify finds the unknowns and sorts the statements.
@@ -279,7 +283,6 @@ func (b *builder) readConditions() error {
 		}
 		u, isUnknown := b.unknowns[v.Name]
 		if !isUnknown {
-			fault = expr.Errorf(expr.SideConditions, v.Pos(), "%s is not a state of the model", expr.Quote(v.Name))
 			return derivative{}, false
 		}
 		at, err := r.env.Elementary(v.At)
@@ -297,6 +300,9 @@ func (b *builder) readConditions() error {
 		return derivative{u, v.Order}, true
 	}
 	for _, eq := range b.sideOf {
+		if err := b.refuseFunctions(eq); err != nil {
+			return err
+		}
 		l, err := r.readEquation(eq)
 		if fault != nil {
 			return fault
@@ -317,6 +323,9 @@ func (b *builder) readEquations() error {
 		return derivative{u, order}, ok && isUnknown
 	}}
 	for _, eq := range b.equations {
+		if err := b.refuseDelays(eq); err != nil {
+			return err
+		}
 		l, err := r.readEquation(eq)
 		if err != nil {
 			return err
@@ -341,6 +350,43 @@ func (b *builder) readEquations() error {
 		}
 	}
 	return nil
+}
+
+// refuseFunctions names what is written like the value of a state in a side
+// condition and is none: in z(0) = 1 a state that is missing, in y = f(2) a
+// function.
+func (b *builder) refuseFunctions(eq expr.Equation) (err error) {
+	for _, side := range []expr.Node{eq.Left, eq.Right} {
+		each(side, func(n expr.Node) {
+			v, ok := n.(expr.Value)
+			if _, isUnknown := b.unknowns[v.Name]; !ok || isUnknown || err != nil {
+				return
+			}
+			kind := expr.UnknownFunction
+			if left, ok := eq.Left.(expr.Value); ok && left.Name == v.Name {
+				kind = expr.SideConditions
+			}
+			err = expr.Errorf(kind, v.Pos(), "%s is not a state of the model", expr.Quote(v.Name))
+		})
+	}
+	return err
+}
+
+// refuseDelays names a state at another time, such as x(t - 1).
+func (b *builder) refuseDelays(eq expr.Equation) (err error) {
+	for _, side := range []expr.Node{eq.Left, eq.Right} {
+		each(side, func(n expr.Node) {
+			v, ok := n.(expr.Value)
+			if !ok || err != nil {
+				return
+			}
+			_, isUnknown := b.unknowns[v.Name]
+			if _, _, isFunction := b.functionOf(v); isUnknown && !isFunction {
+				err = expr.Errorf(expr.OutsideClass, v.Pos(), "%s is a value at another time: equations with delays are not covered", expr.Quote(v.String()))
+			}
+		})
+	}
+	return err
 }
 
 // readEquation returns left side minus right side.

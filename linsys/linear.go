@@ -93,6 +93,10 @@ func (r linearReader[E]) read(n expr.Node) (linear[E], error) {
 		return linear[E]{coef: map[derivative]E{}, rest: f, pos: n.Pos()}, err
 	}
 	switch v := n.(type) {
+	case expr.Value:
+		// Not an unknown, so not a function that anybody knows.
+		_, err := r.env.Elementary(n)
+		return linear[E]{}, err
 	case expr.Neg:
 		x, err := r.read(v.X)
 		if err != nil {

@@ -93,22 +93,25 @@ func substitute[E any](k algebra.Scalars[E], images []expr.Image[E], forcing exp
 // minus its right side. The image of u^(m) is s^m Y - s^(m-1) y(0) - ... -
 // y^(m-1)(0).
 func (s substitution[E]) residual(eq linear[E], homogeneous bool) algebra.Poly[E] {
-	var sum algebra.Poly[E]
+	var terms []algebra.Multiple[E]
+	var initial []E // coefficients of what the derivatives subtract
 	for _, d := range eq.keys() {
 		c := eq.coef[d]
-		sum = sum.Add(s.num[d.u].ShiftUp(d.order).Scale(c))
-		if d.order > 0 {
-			initial := make([]E, d.order)
-			for j := range initial {
-				initial[d.order-1-j] = s.k.Mul(c, s.at0[d.u][j])
-			}
-			sum = sum.Sub(algebra.NewPoly[E](s.k, initial...).Mul(s.d))
+		terms = append(terms, algebra.Multiple[E]{C: c, P: s.num[d.u], Shift: d.order})
+		for len(initial) < d.order {
+			initial = append(initial, s.k.Zero())
+		}
+		for j := range d.order {
+			i := d.order - 1 - j
+			initial[i] = s.k.Sub(initial[i], s.k.Mul(c, s.at0[d.u][j]))
 		}
 	}
+	one := s.k.One()
+	terms = append(terms, algebra.Multiple[E]{C: one, P: algebra.NewPoly[E](s.k, initial...).Mul(s.d)})
 	if !homogeneous {
-		sum = sum.Add(s.den.Numerator(eq.rest.Image()))
+		terms = append(terms, algebra.Multiple[E]{C: one, P: s.den.Numerator(eq.rest.Image())})
 	}
-	return sum
+	return algebra.Combine[E](s.k, terms)
 }
 
 // side returns the residual of a side condition.
