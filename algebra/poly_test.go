@@ -52,6 +52,9 @@ func TestPolyQuoRem(t *testing.T) {
 	t.Run("over Q", func(t *testing.T) {
 		algebratest.TestQuoRem(t, algebra.Q, algebratest.Polys(algebra.Q, algebratest.Rats, 6))
 	})
+	t.Run("over Q, short coefficients", func(t *testing.T) {
+		algebratest.TestQuoRem(t, algebra.Q, algebratest.Polys(algebra.Q, algebratest.SmallRats, 3))
+	})
 	t.Run("over Q(sqrt 2)", func(t *testing.T) {
 		k := numberFields()["sqrt2"]
 		algebratest.TestQuoRem(t, k, algebratest.Polys(k, algebratest.Elements(k, algebratest.SmallRats), 4))
@@ -61,6 +64,18 @@ func TestPolyQuoRem(t *testing.T) {
 		elements := algebratest.Elements(l, algebratest.Elements(k, algebratest.SmallRats))
 		algebratest.TestQuoRem(t, l, algebratest.Polys[algebra.Poly[ratPoly]](l, elements, 2))
 	})
+}
+
+// TestPolyDivExactKeepsZeros: a quotient with the factor s came back without it
+// when the divisor's leading coefficient was even, and SquareFree never ended.
+func TestPolyDivExactKeepsZeros(t *testing.T) {
+	for _, want := range []ratPoly{ints(0, 1), ints(0, 0, 1), ints(0, -1, 2), ints(0, 0, 3, 0, 5)} {
+		for _, d := range []ratPoly{ints(3, 2), ints(-3, 4), ints(3, -169, 56), ints(2, 3), ints(0, 1)} {
+			got, ok := want.Mul(d).DivExact(algebra.Q, d)
+			assert.True(t, ok)
+			wantPoly(t, "quotient", got, want)
+		}
+	}
 }
 
 func TestPolyDivisionByZeroPanics(t *testing.T) {

@@ -44,17 +44,21 @@ func TestSqrtPartsNamed(t *testing.T) {
 		{"18446744073709551616", "4294967296", "1"},    // 2^64
 		{"1/9223372036854775808", "1/4294967296", "2"}, // 2^-63
 		{"4294836225", "65535", "1"},
-		{"4294967291", "1", "4294967291"},                     // the largest prime below 2^32
-		{"18446744030759878681", "4294967291", "1"},           // its square: beyond trial division
-		{"36893488061519757362", "1", "36893488061519757362"}, // twice it: documented to stay
+		{"281273161412879", "65521", "65519"},       // the two largest primes below 2^16, the first squared
+		{"4294967291", "1", "4294967291"},           // the largest prime below 2^32
+		{"18446744030759878681", "4294967291", "1"}, // its square: beyond trial division
 	} {
 		got, m := checkSqrtParts(t, q(c.x))
-		if c.m == "36893488061519757362" {
-			continue
-		}
 		assert.Equal(t, c.c, got.String(), "c of %s", c.x)
 		assert.Equal(t, c.m, m.String(), "m of %s", c.x)
 	}
+}
+
+// TestSqrtPartsOfALargeSquare: the square of a prime beyond 2^16 is seen when it
+// stands alone and may stay in the radicand otherwise.
+func TestSqrtPartsOfALargeSquare(t *testing.T) {
+	_, m := checkSqrtParts(t, q("36893488061519757362")) // 2 * 4294967291^2
+	assert.Contains(t, []string{"2", "36893488061519757362"}, m.String())
 }
 
 func TestSqrtPartsOfNoPositiveNumberPanics(t *testing.T) {

@@ -43,7 +43,7 @@ type elementaryReader[E any] struct {
 
 // mostWork bounds the expansion of one tree. The unit is one product of two
 // short numbers; every word of a longer one costs another.
-const mostWork = 1 << 19
+const mostWork = 1 << 18
 
 // spend counts work, and fails when there is too much.
 func (r elementaryReader[E]) spend(units int, at Pos) error {

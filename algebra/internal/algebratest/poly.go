@@ -24,11 +24,18 @@ func TestQuoRem[E any](t *testing.T, f algebra.Field[E], gen Generator[algebra.P
 			t.Fatalf("the remainder %v is not of lower degree than %v", rem, d)
 		}
 		law(t, r, "Rem", p.Rem(f, d), rem, p, d)
-		if e, ok := p.DivExact(f, d); ok != rem.IsZero() || !e.Equal(quo) {
-			t.Fatalf("DivExact(%v, %v) = %v, %v, want %v, %v", p, d, e, ok, quo, rem.IsZero())
+		want := r.Zero()
+		if rem.IsZero() {
+			want = quo
+		}
+		if e, ok := p.DivExact(f, d); ok != rem.IsZero() || !e.Equal(want) {
+			t.Fatalf("DivExact(%v, %v) = %v, %v, want %v, %v", p, d, e, ok, want, rem.IsZero())
 		}
 		// Division undoes the multiplication of an arbitrary quotient.
 		s := gen(rng)
+		if e, ok := s.Mul(d).DivExact(f, d); !ok || !e.Equal(s) {
+			t.Fatalf("DivExact(%v, %v) = %v, %v, want %v, true", s.Mul(d), d, e, ok, s)
+		}
 		quo, again := s.Mul(d).Add(rem).QuoRem(f, d)
 		law(t, r, "(s d + r) / d = s", quo, s, s, d, rem)
 		law(t, r, "(s d + r) mod d = r", again, rem, s, d, rem)
