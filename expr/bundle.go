@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math/big"
+	"slices"
 	"sync"
 
 	"example.org/closedform/algebra"
@@ -82,17 +83,30 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 		return nil, Errorf(LimitExceeded, Pos{}, "%d digits, at most %d are given", digits, mostDigits)
 	}
 	out := make([]string, len(images))
-	left := 0
 	for i, f := range images {
-		if x, ok := f.rationalAt(tau); ok {
-			out[i] = algebra.RatDecimal(x.Big(), digits)
-		} else {
-			left++
+		if f.IsZero() {
+			out[i] = "0"
 		}
 	}
-	for prec := (uint(digits)*10/3 + 127) &^ 63; left > 0; prec *= 2 {
+	least := (uint(digits)*10/3 + 127) &^ 63
+	for prec := least; ; prec *= 2 {
 		if prec > mostPrecision {
 			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", tau, mostPrecision)
+		}
+		if prec > least || tau.IsZero() {
+			// Only a rational value can defy every precision: 0, or a number midway
+			// between two decimals.
+			for i, f := range images {
+				if out[i] != "" || prec > 2*least {
+					continue
+				}
+				if x, ok := f.rationalAt(tau); ok {
+					out[i] = algebra.RatDecimal(x.Big(), digits)
+				}
+			}
+		}
+		if !slices.Contains(out, "") {
+			return out, nil
 		}
 		balls, err := c.balls(ctx, images, tau, prec)
 		if err != nil {
@@ -104,11 +118,9 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 			}
 			if s, ok := b.Decimal(digits); ok {
 				out[i] = s
-				left--
 			}
 		}
 	}
-	return out, nil
 }
 
 // balls returns balls around the values of the images at tau.

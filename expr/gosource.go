@@ -47,6 +47,9 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	case slices.Contains([]string{"_", "init", "main", "math", "float64"}, opt.Func):
 		return nil, Errorf(Syntax, Pos{}, "%s cannot name the function: it has a meaning of its own in the source", Quote(opt.Func))
 	}
+	if len(names) != len(fs) {
+		panic(fmt.Sprintf("expr: Go source of %d functions with %d names", len(fs), len(names)))
+	}
 	g := goWriter{opt: opt, names: names, constants: constants, time: "t"}
 	if len(fs) > 0 && !fs[0].origin.IsZero() {
 		g.time = "tau"

@@ -89,12 +89,12 @@ func values(ctx context.Context, r *linsys.Response, req request) ([]object, err
 	out := []object{}
 	for _, m := range req.at {
 		o := object{{key, m.text}}
-		for _, name := range r.States() {
-			v, err := r.State(name).At(ctx, m.time, req.digits)
-			if err != nil {
-				return nil, err
-			}
-			o.add(name, v)
+		v, err := r.At(ctx, m.time, req.digits)
+		if err != nil {
+			return nil, err
+		}
+		for i, name := range r.States() {
+			o.add(name, v[i])
 		}
 		out = append(out, o)
 	}

@@ -78,12 +78,8 @@ func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error)
 	for _, share := range []string{"0", "1/100", "1/20", "1/10", "1/5", "1/2", "3/4", "1"} {
 		x, _ := algebra.ParseRat(share)
 		row := valueRow{time: r.window.at(x.Big())}
-		for _, name := range r.response.States() {
-			v, err := r.response.State(name).At(ctx, row.time, valueDigits)
-			if err != nil {
-				return nil, err
-			}
-			row.values = append(row.values, v)
+		if row.values, err = r.response.At(ctx, row.time, valueDigits); err != nil {
+			return nil, err
 		}
 		r.values = append(r.values, row)
 	}
