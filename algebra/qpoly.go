@@ -300,8 +300,8 @@ func (p *qpoly) mul(q *qpoly) *qpoly {
 	if p.w != nil && q.w != nil {
 		short := min(len(p.w), len(q.w))
 		if size := maxBits(p.w) + maxBits(q.w) + bits.Len(uint(short)); size <= 63 && short <= wordProductMost {
-			return newQ(mulWords(p.w, q.w), den)
-		} else if size <= 126 && short <= widePoductMost {
+			return mulWords(p.w, q.w).over(den)
+		} else if size <= 126 && short <= wideProductMost {
 			return newQBig(mulWide(p.w, q.w), den)
 		}
 	}
@@ -312,25 +312,47 @@ func (p *qpoly) mul(q *qpoly) *qpoly {
 // used; see BenchmarkPolyMul.
 var (
 	wordProductMost = 400
-	widePoductMost  = 100
+	wideProductMost = 100
 )
 
 // mulWords returns the product by the schoolbook method, the sums fitting a word.
-func mulWords(a, b []int64) []int64 {
+func mulWords(a, b []int64) *qpoly {
 	if len(a) > len(b) {
 		a, b = b, a
 	}
-	c := make([]int64, len(a)+len(b)-1)
+	p := zeroWords(len(a) + len(b) - 1)
 	for i, x := range a {
 		if x == 0 {
 			continue
 		}
-		row := c[i : i+len(b)]
+		row := p.w[i : i+len(b)]
 		for j, y := range b {
 			row[j] += x * y
 		}
 	}
-	return c
+	return p
+}
+
+// zeroWords returns n zero coefficients to be filled in; a short polynomial is
+// one allocation.
+func zeroWords(n int) *qpoly {
+	if n <= 12 {
+		p := &struct {
+			q   qpoly
+			buf [12]int64
+		}{}
+		p.q.w = p.buf[:n:n]
+		return &p.q
+	}
+	return &qpoly{w: make([]int64, n)}
+}
+
+// over returns p/den for a p whose leading coefficient is not zero.
+func (p *qpoly) over(den *big.Int) *qpoly {
+	if den == nil {
+		return p
+	}
+	return newQ(p.w, den)
 }
 
 // mulWide is mulWords with sums of two words. The values of the result share a

@@ -135,31 +135,8 @@ func (w presenter) exp(rate Node) Node {
 // scaled returns P(t) times the factors, with the rational content of P in
 // front.
 func (w presenter) scaled(p algebra.Poly[algebra.Rat], factors ...Node) Node {
-	content, prim, ascending := contentOf(p)
-	terms := 0
-	for i := range prim.Degree() + 1 {
-		if !prim.Coef(i).IsZero() {
-			terms++
-		}
-	}
-	var poly Node
-	switch {
-	case terms == 1 && p.Degree() == 0:
-		return Mul(append([]Node{Num(p.Coef(0))}, factors...)...)
-	case terms == 1:
-		return Mul(append([]Node{Num(p.Lead()), Pow(w.time, p.Degree())}, factors...)...)
-	case ascending:
-		var s []Node
-		for i := range prim.Degree() + 1 {
-			if c := prim.Coef(i); !c.IsZero() {
-				s = append(s, Mul(Num(c), w.power(i)))
-			}
-		}
-		poly = Add(s...)
-	default:
-		poly = PolyNode(prim, w.time)
-	}
-	return Mul(append([]Node{Num(content), poly}, factors...)...)
+	content, prim := contentOf(p, w.time)
+	return Mul(append([]Node{Num(content), prim}, factors...)...)
 }
 
 func (w presenter) power(i int) Node {
@@ -169,23 +146,30 @@ func (w presenter) power(i int) Node {
 	return Pow(w.time, i)
 }
 
-// contentOf writes p as a rational content times a primitive integer
-// polynomial. Its leading coefficient is positive, unless its lowest one is and
-// it reads better in ascending order: 1 - t.
-func contentOf(p algebra.Poly[algebra.Rat]) (content algebra.Rat, prim algebra.Poly[algebra.Rat], ascending bool) {
+// contentOf writes p, not zero, as a rational content times a primitive integer
+// polynomial in v. Its leading coefficient is positive, unless its lowest one is
+// and it reads better in ascending order: 1 - t.
+func contentOf(p algebra.Poly[algebra.Rat], v Node) (content algebra.Rat, prim Node) {
 	content = contentOfRats(p.Coefs()...)
-	low := 0
-	for low < p.Degree() && p.Coef(low).IsZero() {
-		low++
+	minus, ascending := writtenSign(p)
+	if minus {
+		content = content.Neg()
 	}
-	if p.Lead().Sign() < 0 {
-		if p.Coef(low).Sign() > 0 {
-			ascending = true
-		} else {
-			content = content.Neg()
+	q := p.Scale(content.Inv())
+	if !ascending {
+		return content, PolyNode(q, v)
+	}
+	var terms []Node
+	for i := range q.Degree() + 1 {
+		switch c := q.Coef(i); {
+		case c.IsZero():
+		case i == 0:
+			terms = append(terms, Num(c))
+		default:
+			terms = append(terms, Mul(Num(c), Pow(v, i)))
 		}
 	}
-	return content, p.Scale(content.Inv()), ascending
+	return content, Add(terms...)
 }
 
 // contentOfRats returns the positive rational c such that the x/c are coprime
@@ -244,17 +228,25 @@ func (w presenter) quadratic(part localPart[algebra.Rat]) Node {
 		return Add(w.scaled(a, cos), w.scaled(b, root, sin))
 	}
 	content := contentOfRats(append(a.Coefs(), b.Coefs()...)...)
-	if firstSign(a) < 0 {
+	if minus, _ := writtenSign(a); minus {
 		content = content.Neg()
 	}
 	inv := content.Inv()
 	return Mul(Num(content), exp, Add(w.scaled(a.Scale(inv), cos), w.scaled(b.Scale(inv), root, sin)))
 }
 
-// firstSign returns the sign that p is written with.
-func firstSign(p algebra.Poly[algebra.Rat]) int {
-	content, _, _ := contentOf(p)
-	return content.Sign()
+// writtenSign tells whether p, not zero, is written with a minus sign in front,
+// or in ascending order to avoid it.
+func writtenSign(p algebra.Poly[algebra.Rat]) (minus, ascending bool) {
+	if p.Lead().Sign() > 0 {
+		return false, false
+	}
+	low := 0
+	for p.Coef(low).IsZero() {
+		low++
+	}
+	ascending = p.Coef(low).Sign() > 0
+	return !ascending, ascending
 }
 
 // branch presents (sum of (u[k] + v[k] r) t^k) e^((h + r) t) with r = c sqrt(m).
@@ -305,13 +297,13 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 		g := algebra.GCD[algebra.Rat](algebra.Q, num, den)
 		num, _ = num.DivExact(algebra.Q, g)
 		den, _ = den.DivExact(algebra.Q, g)
-		cn, n, _ := contentOf(num)
-		cd, d, _ := contentOf(den)
+		cn, n := contentOf(num, z)
+		cd, d := contentOf(den, z)
 		c := cn.Quo(cd)
 		minus := c.Sign() < 0
 		c = c.Abs()
-		top := Mul(Num(algebra.RatFromBigInt(c.Num())), PolyNode(n, z), exp)
-		bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), PolyNode(d, z))
+		top := Mul(Num(algebra.RatFromBigInt(c.Num())), n, exp)
+		bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), d)
 		var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
 		if minus {
 			sum = Neg{X: sum}
@@ -322,8 +314,8 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 	var terms []Node
 	for k := len(part.c) - 1; k >= 0; k-- {
 		if !part.c[k].IsZero() {
-			content, prim, _ := contentOf(part.c[k])
-			terms = append(terms, Mul(Num(content), PolyNode(prim, z), w.power(k)))
+			content, prim := contentOf(part.c[k], z)
+			terms = append(terms, Mul(Num(content), prim, w.power(k)))
 		}
 	}
 	return RootSum{Var: w.root, Poly: poly, Body: Mul(Add(terms...), exp)}
