@@ -38,7 +38,7 @@ var operations = map[string]func(ctx context.Context, data []byte) (operation, e
 	}),
 	"inv": onMatrix(func(ctx context.Context, a matrix) (func() string, error) {
 		x, err := algebra.Inverse[algebra.Rat](ctx, algebra.Q, a)
-		return func() string { return describeInverse(x) }, err
+		return func() string { return describeInverse(ctx, a, x) }, err
 	}),
 	"solve_dixon": onMatrix(func(ctx context.Context, a matrix) (func() string, error) {
 		x, err := algebra.Solve[algebra.Rat](ctx, algebra.Q, a, rightSide(a))
@@ -215,17 +215,29 @@ func describeFactors(factors []algebra.Factor[algebra.Rat]) string {
 	return fmt.Sprintf("factors:%d:%s", len(factors), strings.Join(s, ","))
 }
 
-// describeInverse gives the bits of the common denominator and of the largest
-// numerator over it.
-func describeInverse(x matrix) string {
+// adjugateMost is the size up to which the reference describes an inverse as
+// adjugate over determinant, and beyond which in lowest terms.
+const adjugateMost = 12
+
+// describeInverse gives the bits of the denominator of the inverse x of a, and
+// of the largest numerator over it.
+func describeInverse(ctx context.Context, a, x matrix) string {
 	m, n := x.Dims()
 	den := big.NewInt(1)
-	var g big.Int
-	for i := range m {
-		for j := range n {
-			d := x.At(i, j).Den()
-			g.GCD(nil, nil, den, d)
-			den.Mul(den, d.Quo(d, &g))
+	if n <= adjugateMost {
+		d, err := algebra.Det[algebra.Rat](ctx, algebra.Q, a)
+		if err != nil {
+			return err.Error()
+		}
+		den = d.Num()
+	} else {
+		var g big.Int
+		for i := range m {
+			for j := range n {
+				d := x.At(i, j).Den()
+				g.GCD(nil, nil, den, d)
+				den.Mul(den, d.Quo(d, &g))
+			}
 		}
 	}
 	bits := 0
