@@ -174,7 +174,7 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 
 // States returns the names of the states, in the order of their first
 // appearance.
-func (m *Model) States() []string { return append([]string(nil), m.names...) }
+func (m *Model) States() []string { return append([]string{}, m.names...) }
 
 // Variable returns the name of the independent variable.
 func (m *Model) Variable() string { return m.variable }
