@@ -82,6 +82,9 @@ func (sv *solver[E]) images(ctx context.Context, y0 []E, homogeneous bool) ([]ex
 	}
 	out := make([]expr.Image[E], len(y0))
 	for i := range out {
+		if err := ctx.Err(); err != nil {
+			return nil, wrapCancel(err)
+		}
 		out[i] = den.Image(numerators[i])
 	}
 	return out, nil
