@@ -10,8 +10,18 @@ import (
 type Matrix[E any] struct {
 	ring Ring[E]
 	m, n int
-	e    []E // row by row
+	e    []E      // row by row
+	q    *qmatrix // over Rationals, where e is nil
 }
+
+// qmatrix holds rational entries, row by row, as integers over one common
+// denominator, the form in which integer algorithms give them.
+type qmatrix struct {
+	num []*big.Int
+	den *big.Int
+}
+
+func (q *qmatrix) entry(i int) Rat { return RatFromFrac(q.num[i], q.den) }
 
 // NewMatrix returns the m x n matrix with the given entries, row by row. It
 // panics when their number is not m n.
@@ -51,21 +61,48 @@ func (a Matrix[E]) Ring() Ring[E] { return a.ring }
 func (a Matrix[E]) Dims() (m, n int) { return a.m, a.n }
 
 // At returns the entry in row i, column j, counted from 0.
-func (a Matrix[E]) At(i, j int) E { return a.row(i)[j] }
+func (a Matrix[E]) At(i, j int) E {
+	if a.q != nil && j < a.n {
+		return any(a.q.entry(i*a.n + j)).(E)
+	}
+	return a.row(i)[j]
+}
 
 // Row returns a copy of row i.
 func (a Matrix[E]) Row(i int) []E { return append([]E(nil), a.row(i)...) }
 
 // row returns row i for reading only.
-func (a Matrix[E]) row(i int) []E { return a.e[i*a.n : (i+1)*a.n : (i+1)*a.n] }
+func (a Matrix[E]) row(i int) []E {
+	if a.q != nil {
+		row := make([]Rat, a.n)
+		for j := range row {
+			row[j] = a.q.entry(i*a.n + j)
+		}
+		return any(row).([]E)
+	}
+	return a.e[i*a.n : (i+1)*a.n : (i+1)*a.n]
+}
+
+// entries returns all entries, row by row, for reading only.
+func (a Matrix[E]) entries() []E {
+	if a.q == nil {
+		return a.e
+	}
+	e := make([]Rat, len(a.q.num))
+	for i := range e {
+		e[i] = a.q.entry(i)
+	}
+	return any(e).([]E)
+}
 
 // Equal tells whether a = b; matrices of different shape are not equal.
 func (a Matrix[E]) Equal(b Matrix[E]) bool {
 	if a.m != b.m || a.n != b.n {
 		return false
 	}
-	for i := range a.e {
-		if !a.ring.Equal(a.e[i], b.e[i]) {
+	x, y := a.entries(), b.entries()
+	for i := range x {
+		if !a.ring.Equal(x[i], y[i]) {
 			return false
 		}
 	}
@@ -74,7 +111,7 @@ func (a Matrix[E]) Equal(b Matrix[E]) bool {
 
 // IsZero tells whether every entry is 0.
 func (a Matrix[E]) IsZero() bool {
-	for _, x := range a.e {
+	for _, x := range a.entries() {
 		if !a.ring.IsZero(x) {
 			return false
 		}
@@ -187,12 +224,12 @@ func (a Matrix[E]) Above(b Matrix[E]) Matrix[E] {
 	if a.n != b.n {
 		panic(ShapeError{Op: "stacking", R1: a.m, C1: a.n, R2: b.m, C2: b.n})
 	}
-	return Matrix[E]{ring: a.ring, m: a.m + b.m, n: a.n, e: append(append([]E(nil), a.e...), b.e...)}
+	return Matrix[E]{ring: a.ring, m: a.m + b.m, n: a.n, e: append(append([]E(nil), a.entries()...), b.entries()...)}
 }
 
 // intRows returns the integer matrix d a and the least common denominator d > 0.
 func (a Matrix[E]) intRows() ([][]*big.Int, *big.Int) {
-	entries, ok := any(a.e).([]Rat)
+	entries, ok := any(a.entries()).([]Rat)
 	if !ok {
 		panic("algebra: integer rows of a matrix that is not over Q")
 	}

@@ -16,12 +16,7 @@ import (
 // at d*s, which is found modulo primes.
 func (Rationals) CharPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error) {
 	a.mustBeSquare("characteristic polynomial")
-	ints, d := a.intRows()
-	c, err := intmat.CharPoly(ctx, ints)
-	if err != nil {
-		return Poly[Rat]{}, err
-	}
-	return unscaled(c, d), nil
+	return spectral(ctx, a, intmat.CharPolyWords, intmat.CharPoly)
 }
 
 // unscaled returns the monic polynomial whose roots are those of the monic c
@@ -40,8 +35,25 @@ func unscaled(c []*big.Int, d *big.Int) Poly[Rat] {
 }
 
 func (Rationals) minPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error) {
-	ints, d := a.intRows()
-	c, err := intmat.MinPoly(ctx, ints)
+	return spectral(ctx, a, intmat.MinPolyWords, intmat.MinPoly)
+}
+
+// spectral returns a polynomial of a that two functions give for integer
+// matrices, one of them for entries in words.
+func spectral(ctx context.Context, a Matrix[Rat],
+	words func(context.Context, int, []int64) ([]*big.Int, error),
+	ints func(context.Context, [][]*big.Int) ([]*big.Int, error),
+) (Poly[Rat], error) {
+	d := big.NewInt(1)
+	var c []*big.Int
+	var err error
+	if w, ok := wordsOf(a.entries()); ok {
+		c, err = words(ctx, a.n, w)
+	} else {
+		var rows [][]*big.Int
+		rows, d = a.intRows()
+		c, err = ints(ctx, rows)
+	}
 	if err != nil {
 		return Poly[Rat]{}, err
 	}
@@ -49,6 +61,13 @@ func (Rationals) minPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error) 
 }
 
 func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
+	if w, ok := wordsOf(a.entries()); ok {
+		x, err := intmat.DetWords(ctx, a.n, w)
+		if err != nil {
+			return Rat{}, err
+		}
+		return RatFromBigInt(x), nil
+	}
 	ints, d := a.intRows()
 	x, err := intmat.Det(ctx, ints)
 	if err != nil {
@@ -59,13 +78,21 @@ func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
 
 func (Rationals) solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error) {
 	// (da a) X' = (db b) gives X = X' da / db.
-	ai, da := a.intRows()
 	bi, db := b.intRows()
+	if w, ok := wordsOf(a.entries()); ok {
+		num, den, err := intmat.SolveWords(ctx, a.n, w, bi)
+		return overCommon(num, den, big.NewInt(1), db, a.n, b.n, err)
+	}
+	ai, da := a.intRows()
 	num, den, err := intmat.Solve(ctx, ai, bi)
 	return overCommon(num, den, da, db, a.n, b.n, err)
 }
 
 func (Rationals) inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error) {
+	if w, ok := wordsOf(a.entries()); ok {
+		num, den, err := intmat.InverseWords(ctx, a.n, w)
+		return overCommon(num, den, big.NewInt(1), big.NewInt(1), a.n, a.n, err)
+	}
 	ints, d := a.intRows()
 	num, den, err := intmat.Inverse(ctx, ints)
 	return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
@@ -79,13 +106,14 @@ func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matr
 	if err != nil {
 		return Matrix[Rat]{}, err
 	}
-	scale := RatFromFrac(p, new(big.Int).Mul(den, q))
-	integral := scale.IsInt()
-	return MatrixFromFunc[Rat](Q, m, n, func(i, j int) Rat {
-		x := RatFromBigInt(num[i][j])
-		if integral && scale.IsOne() {
-			return x
+	entries := make([]*big.Int, 0, m*n)
+	for _, row := range num {
+		for _, x := range row {
+			if !isOne(p) {
+				x = new(big.Int).Mul(x, p)
+			}
+			entries = append(entries, x)
 		}
-		return x.Mul(scale)
-	}), nil
+	}
+	return Matrix[Rat]{ring: Q, m: m, n: n, q: &qmatrix{num: entries, den: new(big.Int).Mul(den, q)}}, nil
 }

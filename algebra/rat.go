@@ -51,6 +51,9 @@ func RatFromBig(x *big.Rat) Rat {
 
 // RatFromBigInt returns the value of n, which is copied.
 func RatFromBigInt(n *big.Int) Rat {
+	if fits63(n) {
+		return Rat{num: n.Int64(), den: 1}
+	}
 	return ownRat(new(big.Rat).SetInt(n))
 }
 
@@ -58,6 +61,9 @@ func RatFromBigInt(n *big.Int) Rat {
 func RatFromFrac(a, b *big.Int) Rat {
 	if b.Sign() == 0 {
 		panic(ErrDivisionByZero)
+	}
+	if fits63(a) && fits63(b) {
+		return NewRat(a.Int64(), b.Int64())
 	}
 	return ownRat(new(big.Rat).SetFrac(a, b))
 }

@@ -29,6 +29,9 @@ type RootSet struct {
 	roots  []*isolatedRoot
 	conj   []int
 	real   int
+
+	mu    sync.Mutex
+	words []*wordPoly // of coeffs, as they were needed
 }
 
 // isolatedRoot is a root with its refinements. The lower root of a pair shares
@@ -87,12 +90,12 @@ func NewRootSet(ctx context.Context, coeffs []*big.Int) (*RootSet, error) {
 	for i := range c {
 		c[i] = new(big.Int).Set(c[i])
 	}
-	if err := checkSquareFree(ctx, c); err != nil {
-		return nil, err
-	}
 	r := &RootSet{coeffs: c}
 	var reals, uppers []*isolatedRoot
 	if c[0].Sign() == 0 {
+		if c[1].Sign() == 0 {
+			return nil, ErrNotSquareFree
+		}
 		r.coeffs = c[1:]
 		reals = append(reals, newIsolatedRoot(rootDisc{}, infinite))
 	}
@@ -140,8 +143,40 @@ func comparePoints(x, y Ball) int {
 	return sign
 }
 
-// sortPairs orders the upper roots of pairs as [RootSet] says.
+// sortPairs orders the upper roots of pairs as [RootSet] says. Only those that
+// their isolating discs do not order are refined.
 func (r *RootSet) sortPairs(ctx context.Context, uppers []*isolatedRoot) ([]*isolatedRoot, error) {
+	slices.SortStableFunc(uppers, func(a, b *isolatedRoot) int {
+		return comparePoints(a.chain[0].at.Re, b.chain[0].at.Re)
+	})
+	// Farther apart than this, discs settle the order of their roots, and so they
+	// do for all discs before and after.
+	var rad magnitude
+	size := int64(math.MinInt64)
+	for _, u := range uppers {
+		if d := u.chain[0]; rad.cmp(d.rad) < 0 {
+			rad = d.rad
+		}
+		size = max(size, u.chain[0].at.absUp().top())
+	}
+	far := rad.mulPow2(1).addUp(magPow2(size - 60))
+	for i := 0; i < len(uppers); {
+		j := i + 1
+		for j < len(uppers) && uppers[j].chain[0].at.Re.Sub(uppers[j-1].chain[0].at.Re, 64).absDown().cmp(far) <= 0 {
+			j++
+		}
+		if j > i+1 {
+			if err := r.sortClosePairs(ctx, uppers[i:j]); err != nil {
+				return nil, err
+			}
+		}
+		i = j
+	}
+	return uppers, nil
+}
+
+// sortClosePairs is sortPairs with all roots refined to 128 bits.
+func (r *RootSet) sortClosePairs(ctx context.Context, uppers []*isolatedRoot) error {
 	type pair struct {
 		root *isolatedRoot
 		at   ComplexBall
@@ -150,7 +185,7 @@ func (r *RootSet) sortPairs(ctx context.Context, uppers []*isolatedRoot) ([]*iso
 	for i, u := range uppers {
 		d, err := r.refine(ctx, u, 128)
 		if err != nil {
-			return nil, err
+			return err
 		}
 		pairs[i] = pair{u, d.at}
 	}
@@ -170,7 +205,7 @@ func (r *RootSet) sortPairs(ctx context.Context, uppers []*isolatedRoot) ([]*iso
 	for i, p := range pairs {
 		uppers[i] = p.root
 	}
-	return uppers, nil
+	return nil
 }
 
 // Len returns the number of roots, the degree of the polynomial.
@@ -264,6 +299,71 @@ func (r *RootSet) reach(x *isolatedRoot, d rootDisc) int64 {
 // newtonStep returns the disc around the Newton iterate of d.at of radius at
 // most t = 2^-goal |d.at|, for goal at most reach.
 func (r *RootSet) newtonStep(ctx context.Context, x *isolatedRoot, d rootDisc, goal int64) (rootDisc, error) {
+	if d, ok := r.newtonInWords(x, d, goal); ok {
+		return d, ctx.Err()
+	}
+	return r.newtonInBalls(ctx, x, d, goal)
+}
+
+// newtonInWords is newtonStep for a step that gains few enough bits for p/p' to
+// be found in float64, with p and p' from wordPoly; or ok is false.
+func (r *RootSet) newtonInWords(x *isolatedRoot, d rootDisc, goal int64) (to rootDisc, ok bool) {
+	z := d.at
+	t := z.absDown().mulPow2(-goal)
+	unit := t.top() - 6
+	abs := z.absUp()
+	exp, size := abs.top(), math.Ldexp(float64(abs.m), -32)
+	if t.isZero() || goal-d.bits() > 40 {
+		return to, false
+	}
+	left := r.newtonError(x, d).addUp(magUp(3, unit))
+	var mem [2 * maxWords]uint64
+	for w := 2; w <= maxWords; w++ {
+		low := exp + 1 - 64*int64(w)
+		if z.Re.exp < low && z.Re.man != nil || z.Im.exp < low && z.Im.man != nil {
+			continue
+		}
+		at := wordPoint{mem[:w], mem[maxWords : maxWords+w], exp}
+		setFixed(at.re, z.Re.mantissa(), z.Re.exp-low)
+		setFixed(at.im, z.Im.mantissa(), z.Im.exp-low)
+		p := r.wordPoly(newWordScale(exp, size, w))
+		v, dv := p.eval(at, true)
+		ev, ed := p.errors()
+		// With the values v + e and v' + e', of true size, the quotient is off by at most
+		// (|e| + |v e'/v'|) / (|v'| - |e'|), beside roundings to float64.
+		val, slope := floatAbs(v), floatAbs(dv)
+		den := slope*(1-0x1p-40) - ed
+		if den <= 0 {
+			continue
+		}
+		q := v / dv
+		off := (ev+val*ed/slope)/den*(1+0x1p-20) + floatAbs(q)*0x1p-46
+		rad := left.addUp(magFloatUp(off).mulPow2(exp))
+		if rad.cmp(t) > 0 {
+			continue
+		}
+		// Rounding costs q 1/2 and z 1 unit in each part, below 3 in all.
+		part := func(x Ball, q float64) Ball {
+			m := new(big.Int)
+			if s := x.exp - unit; s >= 0 {
+				m.Lsh(x.mantissa(), uint(s))
+			} else {
+				m.Rsh(x.mantissa(), uint(-s))
+			}
+			s := big.NewInt(int64(math.RoundToEven(math.Ldexp(q, int(exp-unit)))))
+			return ownBall(m.Sub(m, s), unit, magnitude{}, math.MaxUint)
+		}
+		to = rootDisc{ComplexBall{Re: part(z.Re, real(q))}, rad}
+		if !z.isReal() {
+			to.at.Im = part(z.Im, imag(q))
+		}
+		return to, true
+	}
+	return to, false
+}
+
+// newtonInBalls is newtonStep for any step.
+func (r *RootSet) newtonInBalls(ctx context.Context, x *isolatedRoot, d rootDisc, goal int64) (rootDisc, error) {
 	z := d.at
 	t := z.absDown().mulPow2(-goal)
 	unit := t.top() - 6
@@ -307,6 +407,20 @@ func (r *RootSet) newtonStep(ctx context.Context, x *isolatedRoot, d rootDisc, g
 		prec += 16
 		mid += 16
 	}
+}
+
+// wordPoly returns the polynomial for points of the given scale.
+func (r *RootSet) wordPoly(s wordScale) *wordPoly {
+	r.mu.Lock()
+	defer r.mu.Unlock()
+	for _, p := range r.words {
+		if p.wordScale == s {
+			return p
+		}
+	}
+	p := newWordPoly(r.coeffs, s)
+	r.words = append(r.words, p)
+	return p
 }
 
 // cut returns the midpoint of x rounded down to a multiple of 2^unit.
@@ -410,113 +524,4 @@ func zpGCDDegree(f zp.Field, a, b []uint64) int {
 		a, b = b, a
 	}
 	return len(a) - 1
-}
-
-// isolateRoots returns a disc around every root of a square-free polynomial
-// with c[0] != 0, and lower bounds for the distances from the centres to the
-// other roots: at least 64 n times the radius.
-func isolateRoots(ctx context.Context, c []*big.Int) ([]rootDisc, []magnitude, error) {
-	n := len(c) - 1
-	it := newAberth(c)
-	sweeps := 30 + 2*n
-	prec, left := uint(64), uint(0)
-	for {
-		settled, err := it.run(ctx, sweeps)
-		if err != nil {
-			return nil, nil, err
-		}
-		discs, gaps, err := certifyRoots(ctx, c, it.at, prec+prec/2+64)
-		if err != nil || discs != nil {
-			return discs, gaps, err
-		}
-		// The points around a cluster of roots gain a bit or so in a sweep: more
-		// precision does not help before they have used up what there is.
-		if settled || left == 0 {
-			prec = it.raise(2 * prec)
-			left = prec
-		}
-		left -= min(left, uint(sweeps))
-	}
-}
-
-// certifyRoots returns discs as isolateRoots does, or none if the
-// approximations z do not prove them.
-//
-// All roots lie in the union of the discs D_i of radius n |W_i| around z_i, and
-// disjoint discs hold one each (Smith). A root w in a D_i that meets the real
-// axis is real if the mirror image of D_i meets no other disc: the conjugate of
-// w is a root in the mirror image, so none of another disc, and D_i has only
-// one. If D_i does not meet the axis and its mirror image meets D_j alone,
-// the conjugate of w is the root in D_j.
-func certifyRoots(ctx context.Context, c []*big.Int, z []ComplexBall, prec uint) ([]rootDisc, []magnitude, error) {
-	n := len(z)
-	discs := make([]rootDisc, n)
-	for i := range z {
-		w, err := hornerBall(ctx, c, z[i], prec)
-		if err != nil {
-			return nil, nil, err
-		}
-		q := intMagDown(c[n], 0)
-		for j := range z {
-			if j != i {
-				q = q.mulDown(z[i].Sub(z[j], 64).absDown())
-			}
-		}
-		discs[i] = rootDisc{z[i], magUp(uint64(n), 0).mulUp(w.absUp()).quoUp(q)}
-		if discs[i].rad.mulPow2(2).cmp(z[i].absDown()) > 0 {
-			return nil, nil, nil // no bit of the root is certain
-		}
-	}
-	// gap returns a lower bound of the distance from the centre of d to the disc e.
-	gap := func(d, e rootDisc) magnitude {
-		return d.at.Sub(e.at, 64).absDown().subDown(e.rad)
-	}
-	meets := func(d, e rootDisc) bool { return gap(d, e).cmp(d.rad) <= 0 }
-	for i := range discs {
-		if err := ctx.Err(); err != nil {
-			return nil, nil, err
-		}
-		for j := range i {
-			if meets(discs[i], discs[j]) {
-				return nil, nil, nil
-			}
-		}
-	}
-	var out []rootDisc
-	for i, d := range discs {
-		mirror, met := d.conj(), -1
-		for j, e := range discs {
-			if meets(mirror, e) {
-				if met >= 0 {
-					return nil, nil, nil
-				}
-				met = j
-			}
-		}
-		switch axis := d.at.Im.absDown().cmp(d.rad) <= 0; {
-		case axis && met == i:
-			d.at.Im = Ball{}
-			out = append(out, d)
-		case axis || met == i:
-			return nil, nil, nil
-		case d.at.Im.man.Sign() > 0:
-			out = append(out, d, d.conj())
-		}
-	}
-	if len(out) != n {
-		return nil, nil, nil
-	}
-	gaps := make([]magnitude, n)
-	for i, d := range out {
-		gaps[i] = infinite
-		for j, e := range out {
-			if g := gap(d, e); j != i && g.cmp(gaps[i]) < 0 {
-				gaps[i] = g
-			}
-		}
-		if magUp(64*uint64(n), 0).mulUp(d.rad).cmp(gaps[i]) > 0 {
-			return nil, nil, nil
-		}
-	}
-	return out, gaps, nil
 }

@@ -1,63 +1,155 @@
 package intmat
 
-import "math/big"
+import "math"
 
-// normBits is the number of fraction bits of a rounded norm.
-const normBits = 16
+// upper is the upper bound frac 2^exp of a nonnegative number. Bounds in
+// floating point are proven when the factor slack makes up for the rounding.
+type upper struct {
+	frac float64
+	exp  int
+}
 
-// ceilNorm returns the least integer at least 2^normBits sqrt(squares).
-func ceilNorm(squares *big.Int) *big.Int {
-	scaled := new(big.Int).Lsh(squares, 2*normBits)
-	r := new(big.Int).Sqrt(scaled)
-	if new(big.Int).Mul(r, r).Cmp(scaled) < 0 {
-		r.Add(r, big.NewInt(1))
+// slack covers the relative rounding error of sums of fewer than 2^10 terms
+// and of a few operations more: (1 + 2^-53)^(2^11) < 1 + 2^-41. Longer sums
+// get a factor for every 2^10 terms.
+const slack = 1 + 0x1p-41
+
+// times returns an upper bound of the product of u and x, for x.frac at most
+// 2^500.
+func (u upper) times(x upper) upper {
+	f, e := u.frac*x.frac*slack, u.exp+x.exp
+	if f > 0x1p500 {
+		f, e = f*0x1p-500, e+500
+	}
+	return upper{f, e}
+}
+
+// bits returns the least b that the bound shows to have u < 2^b.
+func (u upper) bits() int {
+	if u.frac == 0 {
+		return 0
+	}
+	_, e := math.Frexp(u.frac)
+	return e + u.exp
+}
+
+// slack returns the factor for sums over a row.
+func (s *square) slack() float64 {
+	if s.n < 1<<10 {
+		return slack
+	}
+	return math.Pow(slack, float64(1+s.n>>10))
+}
+
+// floatLimbs is the number of limbs whose squares can be summed in floating
+// point without overflow; entries longer than that are bounded by powers of
+// two.
+const floatLimbs = 7
+
+// absFloat returns the absolute value of the two's complement x, of at most
+// floatLimbs limbs, with relative error below 2^-50.
+func absFloat(x []uint64) float64 {
+	if len(x) == 1 {
+		return math.Abs(float64(int64(x[0])))
+	}
+	top := len(x) - 1
+	negative := x[top]>>63 == 1
+	var r float64
+	carry := uint64(1)
+	for i, v := range x {
+		if negative {
+			v = ^v + carry
+			if v != 0 {
+				carry = 0
+			}
+		}
+		r += math.Ldexp(float64(v), 64*i)
 	}
 	return r
 }
 
-// squaredNorms returns the sums of squares of the rows and of the columns of
-// a square matrix.
-func squaredNorms(a [][]*big.Int) (rows, cols []*big.Int) {
-	rows, cols = make([]*big.Int, len(a)), make([]*big.Int, len(a))
-	for i := range a {
-		rows[i], cols[i] = new(big.Int), new(big.Int)
-	}
-	sq := new(big.Int)
-	for i, row := range a {
-		for j, x := range row {
-			if x.Sign() != 0 {
-				sq.Mul(x, x)
-				rows[i].Add(rows[i], sq)
-				cols[j].Add(cols[j], sq)
+// norms returns upper bounds of shift + r_i over the Euclidean norms r_i of
+// the rows and of the columns of s.
+func (s *square) norms(shift float64) (rows, cols []upper) {
+	n := s.n
+	out := make([]upper, 2*n)
+	rows, cols = out[:n], out[n:]
+	if s.w > floatLimbs {
+		for i := range n {
+			for j := range n {
+				b := bitLen(s.at(i, j))
+				rows[i].exp = max(rows[i].exp, b)
+				cols[j].exp = max(cols[j].exp, b)
 			}
 		}
+		root := math.Sqrt(float64(n))*slack + 1 // the shift is at most one such entry
+		for i := range out {
+			if out[i].exp > 0 || shift > 0 {
+				out[i].frac = root
+			}
+		}
+		return rows, cols
+	}
+	sums := make([]float64, 2*n)
+	for i := range n {
+		for j := range n {
+			var x float64
+			if s.w == 1 {
+				x = float64(int64(s.e[i*n+j]))
+			} else {
+				x = absFloat(s.at(i, j))
+			}
+			sums[i] += x * x
+			sums[n+j] += x * x
+		}
+	}
+	more := s.slack()
+	for i, x := range sums {
+		out[i].frac = (shift + math.Sqrt(x)) * more
 	}
 	return rows, cols
 }
 
-// shiftedNormProduct returns an integer not below the product of c + r_i,
-// where r_i are the norms with the given squares.
-func shiftedNormProduct(squares []*big.Int, c int64) *big.Int {
-	shift := big.NewInt(c << normBits)
-	prod := big.NewInt(1)
-	for _, s := range squares {
-		prod.Mul(prod, new(big.Int).Add(ceilNorm(s), shift))
+// smallerProduct returns the smaller of the products of two lists of bounds.
+func smallerProduct(x, y []upper) upper {
+	p, q := product(x), product(y)
+	if p.frac == 0 || q.frac == 0 {
+		return upper{}
 	}
-	prod.Rsh(prod, uint(normBits*len(squares)))
-	return prod.Add(prod, big.NewInt(1))
+	if p.bits() < q.bits() {
+		return p
+	}
+	return q
 }
 
-// hadamardBound returns B with |det A| <= B: the product of the Euclidean
-// norms of the rows, or of the columns, whichever is smaller.
+func product(factors []upper) upper {
+	p := upper{1, 0}
+	for _, x := range factors {
+		p = p.times(x)
+	}
+	return p
+}
+
+// hadamardBits returns b with |det A| < 2^b: the product of the Euclidean
+// norms of the rows, or of the columns, whichever is smaller. The minors of
+// a nonsingular A have the same bound, as an integer row or column that is
+// not zero has norm at least 1.
 //
 // Source: J. von zur Gathen, J. Gerhard, Modern Computer Algebra,
 // Theorem 16.6 (Hadamard's inequality).
-func hadamardBound(a [][]*big.Int) *big.Int {
-	rows, cols := squaredNorms(a)
-	return smaller(shiftedNormProduct(rows, 0), shiftedNormProduct(cols, 0))
+func (s *square) hadamardBits() int {
+	return smallerProduct(s.norms(0)).bits()
 }
 
-// charPolyBound returns B with |c| <= B for every coefficient c of the
+// columnBits is [square.hadamardBits] from the columns alone. Replacing a
+// column by a vector v of norm at least 1 multiplies that bound by at most
+// the norm, so that it serves for Cramer's rule, too.
+func (s *square) columnBits() int {
+	_, cols := s.norms(0)
+	return product(cols).bits()
+}
+
+// charPolyBits returns b with |c| < 2^b for every coefficient c of the
 // characteristic polynomial of A.
 //
 // The coefficient of s^(n-k) is, up to sign, the sum of the principal k x k
@@ -73,40 +165,29 @@ func hadamardBound(a [][]*big.Int) *big.Int {
 // discs as the largest absolute row (or column) sum, never beats it by more
 // than a factor n + 1, as r_i is at most the i-th row sum: its maximum over k
 // is at least (1 + rho)^n / (n + 1).
-func charPolyBound(a [][]*big.Int) *big.Int {
-	rows, cols := squaredNorms(a)
-	return smaller(shiftedNormProduct(rows, 1), shiftedNormProduct(cols, 1))
+func (s *square) charPolyBits() int {
+	return smallerProduct(s.norms(1)).bits()
 }
 
-// maxRowSum returns the largest sum of absolute values of a row of a.
-func maxRowSum(a [][]*big.Int) *big.Int {
-	best, sum, abs := new(big.Int), new(big.Int), new(big.Int)
-	for _, row := range a {
-		sum.SetInt64(0)
-		for _, x := range row {
-			sum.Add(sum, abs.Abs(x))
+// rowSumBits returns b such that every sum of absolute values of a row is
+// below 2^b.
+func (s *square) rowSumBits() int {
+	best := 0
+	for i := range s.n {
+		var sum float64
+		longest := 0
+		for j := range s.n {
+			if s.w > floatLimbs {
+				longest = max(longest, bitLen(s.at(i, j)))
+			} else {
+				sum += absFloat(s.at(i, j))
+			}
 		}
-		if sum.Cmp(best) > 0 {
-			best.Set(sum)
+		if s.w > floatLimbs {
+			sum = float64(s.n)
 		}
+		_, e := math.Frexp(sum * s.slack())
+		best = max(best, longest+e)
 	}
 	return best
-}
-
-// maxAbs returns the largest absolute value in v, 0 for an empty v.
-func maxAbs(v []*big.Int) *big.Int {
-	best := new(big.Int)
-	for _, x := range v {
-		if x.CmpAbs(best) > 0 {
-			best.Abs(x)
-		}
-	}
-	return best
-}
-
-func smaller(x, y *big.Int) *big.Int {
-	if x.Cmp(y) <= 0 {
-		return x
-	}
-	return y
 }

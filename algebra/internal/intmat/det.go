@@ -10,16 +10,45 @@ import (
 // Det returns the determinant of a square A, 1 when A is empty.
 //
 // It is the product over the diagonal blocks of the block triangular form;
-// each block of order m is eliminated modulo enough 62-bit primes for
-// Hadamard's bound, O(m^3) word operations for each.
+// each block of order m is eliminated modulo 2^64 and enough 62-bit primes
+// for Hadamard's bound, O(m^3) word operations for each. A determinant that
+// fits a signed word takes no primes and no blocks; that of a companion matrix
+// is read off.
 //
 // Source: J. von zur Gathen, J. Gerhard, Modern Computer Algebra,
 // Algorithm 5.10 (small primes determinant).
 func Det(ctx context.Context, a [][]*big.Int) (*big.Int, error) {
-	mustBeSquare(a)
+	return squareOf(a).det(ctx)
+}
+
+// DetWords is [Det] for the matrix of order n with rows a.
+func DetWords(ctx context.Context, n int, a []int64) (*big.Int, error) {
+	return squareOfWords(n, a).det(ctx)
+}
+
+func (s *square) det(ctx context.Context) (*big.Int, error) {
+	if p := s.companionPoly(); p != nil {
+		if s.n%2 == 1 {
+			p[0].Neg(p[0])
+		}
+		return p[0], ctx.Err()
+	}
+	bits := s.hadamardBits()
+	if bits <= 63 {
+		d, err := zp.DetWord(ctx, s.n, s.low())
+		if err != nil {
+			return nil, err
+		}
+		return big.NewInt(int64(d)), ctx.Err()
+	}
+	blocks := diagonalBlocks(s)
+	if len(blocks) == 1 {
+		return s.blockDet(ctx, bits)
+	}
 	det := big.NewInt(1)
-	for _, block := range diagonalBlocks(a) {
-		d, err := blockDet(ctx, submatrix(a, block, block))
+	for _, index := range blocks {
+		block := s.sub(index)
+		d, err := block.blockDet(ctx, block.hadamardBits())
 		if err != nil {
 			return nil, err
 		}
@@ -30,30 +59,39 @@ func Det(ctx context.Context, a [][]*big.Int) (*big.Int, error) {
 	return det, ctx.Err()
 }
 
-// blockDet is Det without the split into blocks.
-func blockDet(ctx context.Context, a [][]*big.Int) (*big.Int, error) {
-	n := len(a)
-	count := primesFor(hadamardBound(a))
-	if preferDivisionFree(n, count) {
-		p, err := berkowitz(ctx, a)
+// blockDet is det without the split into blocks, for a determinant of at
+// most the given number of bits.
+func (s *square) blockDet(ctx context.Context, bits int) (*big.Int, error) {
+	count := primesBeside(bits)
+	if preferDivisionFree(s.n, count) {
+		p, err := berkowitz(ctx, s.bigs())
 		if err != nil {
 			return nil, err
 		}
-		if n%2 == 1 {
+		if s.n%2 == 1 {
 			p[0].Neg(p[0])
 		}
 		return p[0], nil
 	}
-	fields := make([]zp.Field, count)
-	residues := make([]uint64, count)
-	err := forEach(ctx, count, modularNanos(n, count, 1), func(ctx context.Context, i int) error {
-		fields[i] = zp.NewField(prime(i))
+	c := leadingCRT(count)
+	images := make([][]uint64, count+1) // the last one is that modulo 2^64
+	err := forEach(ctx, count+1, modularNanos(s.n, count, 0.4), func(ctx context.Context, i int) error {
+		var d uint64
 		var err error
-		residues[i], err = fields[i].MatrixFromBig(a).Det(ctx)
+		if i == count {
+			d, err = zp.DetWord(ctx, s.n, s.low())
+		} else {
+			d, err = s.image(ctx, c.fields[i]).Det(ctx)
+		}
+		images[i] = []uint64{d}
 		return err
 	})
 	if err != nil {
 		return nil, err
 	}
-	return newCRT(fields).lift(ctx, residues)
+	out, err := c.liftAll(ctx, images[:count], images[count])
+	if err != nil {
+		return nil, err
+	}
+	return out[0], nil
 }

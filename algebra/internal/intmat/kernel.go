@@ -44,15 +44,15 @@ func kernelFrom(ctx context.Context, a [][]*big.Int, n int, f zp.Field) (basis [
 	if len(free) == 0 {
 		return [][]*big.Int{}, true, nil
 	}
-	square := submatrix(a, rows, pivots)
-	inv, regular, err := f.MatrixFromBig(square).Inverse(ctx)
+	minor := squareOf(submatrix(a, rows, pivots))
+	inv, regular, err := minor.image(ctx, f).Inverse(ctx)
 	if err != nil {
 		return nil, false, err
 	}
 	if !regular {
 		panic("intmat: singular pivots")
 	}
-	l := newLifter(square, f, inv)
+	l := newLifter(minor, f, inv)
 	num, den, err := l.columns(ctx, submatrix(a, rows, free), len(free))
 	if err != nil {
 		return nil, false, err

@@ -17,34 +17,25 @@ import (
 // Source: J. Dixon, Exact solution of linear equations using p-adic
 // expansions, Numerische Mathematik 40.
 type lifter struct {
-	a       [][]*big.Int
+	a       *square
 	field   zp.Field
-	inverse *zp.Matrix
-	norm    *big.Int // largest absolute row sum of A
-	minors  *big.Int // bound for the minors of A of every order
-	small   []int64  // A by rows when row sums are below 2^62, else nil
+	inverse *zp.Multiplier
+	norm    *big.Int // bound for the absolute row sums of A
+	minors  *big.Int // bound for det A from the norms of its columns
 	pinv    uint64   // inverse of p modulo 2^64
 }
 
 // newLifter takes the inverse of a modulo the prime of field.
-func newLifter(a [][]*big.Int, field zp.Field, inverse *zp.Matrix) *lifter {
-	l := &lifter{a: a, field: field, inverse: inverse, norm: maxRowSum(a)}
-	// A column of a nonsingular integer matrix has norm at least 1, so the
-	// product over all columns bounds that over any choice of them.
-	_, cols := squaredNorms(a)
-	l.minors = shiftedNormProduct(cols, 0)
-	l.pinv = field.P // correct to 3 bits; Newton's iteration doubles them
-	for range 5 {
-		l.pinv *= 2 - field.P*l.pinv
+func newLifter(a *square, field zp.Field, inverse *zp.Matrix) *lifter {
+	one := big.NewInt(1)
+	return &lifter{
+		a:       a,
+		field:   field,
+		inverse: inverse.Multiplier(),
+		norm:    new(big.Int).Lsh(one, uint(a.rowSumBits())),
+		minors:  new(big.Int).Lsh(one, uint(a.columnBits())),
+		pinv:    zp.InverseWord(field.P),
 	}
-	if l.norm.BitLen() <= 62 {
-		for _, row := range a {
-			for _, x := range row {
-				l.small = append(l.small, x.Int64())
-			}
-		}
-	}
-	return l
 }
 
 // column returns num and den > 0 with A num = den b and no factor common to
@@ -72,7 +63,7 @@ func (l *lifter) column(ctx context.Context, b []*big.Int, hint *big.Int) (num [
 	}
 
 	var step func(context.Context) ([]uint64, error)
-	if l.small != nil && beta.BitLen() <= 62 {
+	if l.a.w == 1 && l.norm.BitLen() <= 63 && beta.BitLen() <= 62 {
 		step = l.wordSteps(b)
 	} else {
 		step = l.limbSteps(b, (max(beta.BitLen(), l.norm.BitLen())+65)/64)
@@ -120,7 +111,7 @@ func (l *lifter) attempt(ctx context.Context, digits [][]uint64, power, beta, hi
 		limit.Rsh(limit, 1)
 	}
 	den = new(big.Int).Set(hint)
-	num = make([]*big.Int, len(l.a))
+	num = make([]*big.Int, l.a.n)
 	w := new(big.Int)
 	for i := range num {
 		x := new(big.Int)
@@ -164,12 +155,19 @@ func (l *lifter) attempt(ctx context.Context, digits [][]uint64, power, beta, hi
 
 // cancel divides num and den in place by their greatest common divisor.
 func cancel(num []*big.Int, den *big.Int) {
-	g, w := new(big.Int).Set(den), new(big.Int)
+	one := big.NewInt(1)
+	g, q, r := new(big.Int).Set(den), new(big.Int), new(big.Int)
 	for _, x := range num {
-		if g.BitLen() == 1 {
+		if g.Cmp(one) == 0 {
 			return
 		}
-		g.GCD(nil, nil, g, w.Abs(x))
+		// A division shows most often that g stays as it is.
+		if q.QuoRem(x, g, r); r.Sign() != 0 {
+			g.GCD(nil, nil, g, r.Abs(r))
+		}
+	}
+	if g.Cmp(one) == 0 {
+		return
 	}
 	den.Quo(den, g)
 	for _, x := range num {
@@ -177,30 +175,13 @@ func cancel(num []*big.Int, den *big.Int) {
 	}
 }
 
-// wordSteps returns the function giving the next digit of x for |b| < 2^62
-// and row sums R below 2^62. Then |r_(k+1)| <= |r_k|/p + R stays below 2^63,
-// so the residual is known from its value modulo 2^64, where division by p is
-// multiplication by its inverse.
-func (l *lifter) wordSteps(b []*big.Int) func(context.Context) ([]uint64, error) {
-	n, f := len(b), l.field
-	r := make([]int64, n)
-	for i, x := range b {
-		r[i] = x.Int64()
-	}
-	residue := make([]uint64, n)
-	return func(context.Context) ([]uint64, error) {
-		for i, v := range r {
-			residue[i] = f.FromInt64(v)
+// maxAbs returns the largest absolute value in v, 0 for an empty v.
+func maxAbs(v []*big.Int) *big.Int {
+	best := new(big.Int)
+	for _, x := range v {
+		if x.CmpAbs(best) > 0 {
+			best.Abs(x)
 		}
-		x := l.inverse.MulVec(residue)
-		for i := range r {
-			row := l.small[i*n : (i+1)*n]
-			acc := uint64(r[i])
-			for j, c := range row {
-				acc -= uint64(c) * x[j]
-			}
-			r[i] = int64(acc * l.pinv)
-		}
-		return x, nil
 	}
+	return best
 }

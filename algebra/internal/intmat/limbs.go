@@ -1,54 +1,25 @@
 package intmat
 
 import (
-	"context"
-	"encoding/binary"
 	"math/big"
 	"math/bits"
 )
 
-// limbSteps is [lifter.wordSteps] with residuals modulo 2^(64 w), in two's
-// complement, least limb first, for |b| and row sums below 2^(64 w - 2).
-func (l *lifter) limbSteps(b []*big.Int, w int) func(context.Context) ([]uint64, error) {
-	n, f := len(b), l.field
-	a := make([]uint64, 0, n*n*w)
-	for _, row := range l.a {
-		for _, x := range row {
-			a = appendLimbs(a, x, w)
-		}
-	}
-	r := make([]uint64, 0, n*w)
-	for _, x := range b {
-		r = appendLimbs(r, x, w)
-	}
-	residue := make([]uint64, n)
-	return func(ctx context.Context) ([]uint64, error) {
-		for i := range residue {
-			residue[i] = residueOfLimbs(r[i*w:(i+1)*w], f.P)
-		}
-		x := l.inverse.MulVec(residue)
-		for i := range n {
-			if err := ctx.Err(); err != nil {
-				return nil, err
-			}
-			acc := r[i*w : (i+1)*w]
-			row := a[i*n*w : (i+1)*n*w]
-			for _, d := range x {
-				subMulLimbs(acc, row[:w], d)
-				row = row[w:]
-			}
-			divideLimbs(acc, f.P, l.pinv)
-		}
-		return x, nil
-	}
-}
-
 // appendLimbs appends the w limbs of x, |x| < 2^(64 w - 1).
 func appendLimbs(to []uint64, x *big.Int, w int) []uint64 {
-	magnitude := x.FillBytes(make([]byte, 8*w))
+	if w == 1 && x.IsInt64() {
+		return append(to, uint64(x.Int64()))
+	}
 	start := len(to)
-	for i := w - 1; i >= 0; i-- {
-		to = append(to, binary.BigEndian.Uint64(magnitude[8*i:]))
+	words := x.Bits()
+	for i := range w {
+		var limb uint64
+		for h := range wordsPerLimb {
+			if k := i*wordsPerLimb + h; k < len(words) {
+				limb |= uint64(words[k]) << (h * bits.UintSize)
+			}
+		}
+		to = append(to, limb)
 	}
 	if x.Sign() < 0 {
 		negateLimbs(to[start:])
@@ -68,28 +39,62 @@ func negateLimbs(x []uint64) {
 func residueOfLimbs(x []uint64, p uint64) uint64 {
 	// Only the top limb carries a sign.
 	top := len(x) - 1
-	var r uint64
-	if s := int64(x[top]); s >= 0 {
-		r = uint64(s) % p
-	} else if r = -uint64(s) % p; r > 0 {
-		r = p - r
-	}
+	r := residueOfWord(x[top], p)
 	for i := top - 1; i >= 0; i-- {
 		_, r = bits.Div64(r, x[i], p)
 	}
 	return r
 }
 
-// subMulLimbs subtracts c d from acc.
+// residueOfWord returns the signed word x modulo p, below 2^62.
+func residueOfWord(x, p uint64) uint64 {
+	if int64(x) >= 0 {
+		if x >= p {
+			x %= p
+		}
+		return x
+	}
+	if r := x + p; r < p { // x is at least -p
+		return r
+	}
+	if r := -x % p; r > 0 {
+		return p - r
+	}
+	return 0
+}
+
+// subMulLimbs subtracts c d from acc, which is at least as long as the
+// nonnegative c, or as long as the signed c.
 func subMulLimbs(acc, c []uint64, d uint64) {
 	var carry, borrow uint64
-	c = c[:len(acc)]
-	for i := range acc {
-		hi, lo := bits.Mul64(c[i], d)
+	head := acc[:len(c)]
+	for i, x := range c {
+		hi, lo := bits.Mul64(x, d)
 		var up uint64
 		lo, up = bits.Add64(lo, carry, 0)
 		carry = hi + up
-		acc[i], borrow = bits.Sub64(acc[i], lo, borrow)
+		head[i], borrow = bits.Sub64(head[i], lo, borrow)
+	}
+	for i := len(c); i < len(acc); i++ {
+		acc[i], borrow = bits.Sub64(acc[i], carry, borrow)
+		carry = 0
+	}
+}
+
+// addMulLimbs adds c d to acc, which is at least as long as the nonnegative
+// c.
+func addMulLimbs(acc, c []uint64, d uint64) {
+	var carry, up uint64
+	head := acc[:len(c)]
+	for i, x := range c {
+		hi, lo := bits.Mul64(x, d)
+		lo, up = bits.Add64(lo, carry, 0)
+		carry = hi + up
+		head[i], up = bits.Add64(head[i], lo, 0)
+		carry += up
+	}
+	for i := len(c); i < len(acc); i++ {
+		acc[i], carry = bits.Add64(acc[i], carry, 0)
 	}
 }
 

@@ -12,23 +12,40 @@ import (
 // 1 when A is empty.
 //
 // The minimal polynomial of A modulo a prime divides the image of the wanted
-// one, so the largest degree d seen is a lower bound for its degree. If d = n
-// it is the characteristic polynomial ([CharPoly]). Otherwise images of
-// degree d are combined to a polynomial f with f(A) = 0 modulo the product M
-// of their primes, until
+// one, so the largest degree d seen is a lower bound for its degree. If d = n,
+// as the Hessenberg form modulo the first prime often shows, it is the
+// characteristic polynomial ([CharPoly]). Otherwise images of degree d are
+// combined to a polynomial f with f(A) = 0 modulo the product M of their
+// primes, until
 //
 //	2 sum_i |f_i| R^i < M,
 //
-// R the largest absolute row sum of A. That bounds the entries of f(A) below
-// M/2, whence f(A) = 0; and no polynomial of lower degree does that. Every
+// R a bound for the absolute row sums of A. That bounds the entries of f(A)
+// below M/2, whence f(A) = 0; and no polynomial of lower degree does that. Every
 // image is an exact computation, O(n^3) word operations when A has few
 // blocks per eigenvalue.
 //
 // Source: M. Neunhoeffer, C. Praeger, Computing minimal polynomials of
 // matrices, for the images; the bound is derived here.
 func MinPoly(ctx context.Context, a [][]*big.Int) ([]*big.Int, error) {
-	n := mustBeSquare(a)
-	norm := maxRowSum(a)
+	return squareOf(a).minPoly(ctx)
+}
+
+// MinPolyWords is [MinPoly] for the matrix of order n with rows a.
+func MinPolyWords(ctx context.Context, n int, a []int64) ([]*big.Int, error) {
+	return squareOfWords(n, a).minPoly(ctx)
+}
+
+func (s *square) minPoly(ctx context.Context) ([]*big.Int, error) {
+	n := s.n
+	cyclic, err := s.image(ctx, zp.NewField(prime(0))).Cyclic(ctx)
+	if err != nil {
+		return nil, err
+	}
+	if cyclic {
+		return s.charPoly(ctx)
+	}
+	norm := new(big.Int).Lsh(big.NewInt(1), uint(s.rowSumBits()))
 	var fields []zp.Field
 	var images [][]uint64
 	degree, used := 0, 0
@@ -37,7 +54,7 @@ func MinPoly(ctx context.Context, a [][]*big.Int) ([]*big.Int, error) {
 		nanos := modularNanos(n, batch, 5)
 		err := forEach(ctx, batch, nanos, func(ctx context.Context, i int) error {
 			f := zp.NewField(prime(used + i))
-			image, err := f.MatrixFromBig(a).MinPoly(ctx)
+			image, err := s.image(ctx, f).MinPoly(ctx)
 			newFields[i], newImages[i] = f, image
 			return err
 		})
@@ -55,21 +72,21 @@ func MinPoly(ctx context.Context, a [][]*big.Int) ([]*big.Int, error) {
 			}
 		}
 		if degree == n {
-			return CharPoly(ctx, a)
+			return s.charPoly(ctx)
 		}
-		c := newCRT(fields)
-		poly, err := c.liftAll(ctx, images)
+		poly, err := newCRT(fields).liftAll(ctx, images, nil)
 		if err != nil {
 			return nil, err
 		}
-		if vanishes(poly, norm, c.half) {
+		half := new(big.Int).Lsh(big.NewInt(1), uint(primeBits*len(fields)-2))
+		if vanishes(poly, norm, half) {
 			return poly, nil
 		}
 	}
 }
 
-// vanishes tells whether sum |f_i| norm^i <= half, half the modulus rounded
-// down.
+// vanishes tells whether sum |f_i| norm^i <= half, a number below half the
+// modulus.
 func vanishes(f []*big.Int, norm, half *big.Int) bool {
 	sum, abs := new(big.Int), new(big.Int)
 	for i := len(f) - 1; i >= 0; i-- {

@@ -1,7 +1,6 @@
 package intmat
 
 import (
-	"math/big"
 	"sync"
 
 	"example.org/closedform/algebra/internal/zp"
@@ -23,17 +22,32 @@ func prime(i int) uint64 {
 		if k := len(primes.list); k > 0 {
 			below = primes.list[k-1]
 		}
-		primes.list = append(primes.list, zp.PrimeBelow(below))
+		p := zp.PrimeBelow(below)
+		if p < 1<<primeBits-1<<(primeBits-30) {
+			panic("intmat: too many primes")
+		}
+		primes.list = append(primes.list, p)
 	}
 	return primes.list[i]
 }
 
-// primeBits is a lower bound for the bits each prime of the sequence adds to
-// a product.
-const primeBits = 61
+// primeBits is the bits of the primes of the sequence: k of them have a
+// product above 2^(62 k - 1), since each is above 2^62 (1 - 2^-30) and k is
+// below 2^29.
+const primeBits = 62
 
-// primesFor returns how many primes have a product above 2 bound, which tells
-// the integers of absolute value at most bound apart.
-func primesFor(bound *big.Int) int {
-	return (bound.BitLen()+1)/primeBits + 1
+// primesFor returns how many primes tell integers below 2^bits in absolute
+// value apart with a margin: their product is above 4 2^bits.
+func primesFor(bits int) int {
+	return (bits + 3 + primeBits - 1) / primeBits
+}
+
+// primesBeside returns how many primes do so together with the modulus 2^64:
+// none when such integers fit a signed word, else enough for their product P
+// to have 2^bits < (2^63 - 4) P.
+func primesBeside(bits int) int {
+	if bits <= 63 {
+		return 0
+	}
+	return (bits - 61 + primeBits - 1) / primeBits
 }

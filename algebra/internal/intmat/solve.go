@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math/big"
+	mathbits "math/bits"
 
 	"example.org/closedform/algebra/internal/zp"
 )
@@ -13,18 +14,57 @@ import (
 // den > 0 has no factor in common with all of num. It returns [ErrSingular]
 // when det A = 0, proven by Hadamard's bound.
 //
-// The solution is lifted p-adically ([lifter]): O(n^3) for the inverse modulo
-// p, then O(n^2) word operations for every 62 bits of a column.
+// A solution known to fit words is found modulo 2^64 ([square.wordSolve]);
+// many right-hand sides use Cramer's rule modulo primes ([square.cramer]),
+// O(n^3) for each prime; few are lifted p-adically ([lifter]): O(n^3) for
+// the inverse modulo p, then O(n^2) word operations for every 62 bits of a
+// column.
 //
 // Source: J. Dixon, Exact solution of linear equations using p-adic
 // expansions, Numerische Mathematik 40.
 func Solve(ctx context.Context, a, b [][]*big.Int) (num [][]*big.Int, den *big.Int, err error) {
-	n := mustBeSquare(a)
+	return squareOf(a).solve(ctx, b)
+}
+
+// SolveWords is [Solve] for the matrix of order n with rows a.
+func SolveWords(ctx context.Context, n int, a []int64, b [][]*big.Int) (num [][]*big.Int, den *big.Int, err error) {
+	return squareOfWords(n, a).solve(ctx, b)
+}
+
+// wordSolveOrder and wordSolveColumns bound the systems solved by powers
+// modulo 2^64; BenchmarkWordSolve compares.
+var (
+	wordSolveOrder   = 64
+	wordSolveColumns = 2
+)
+
+func (s *square) solve(ctx context.Context, b [][]*big.Int) (num [][]*big.Int, den *big.Int, err error) {
+	n := s.n
 	if len(b) != n {
 		panic(fmt.Sprintf("intmat: %d right-hand rows for a matrix of order %d", len(b), n))
 	}
 	k := mustBeRectangular(b)
-	l, err := findLifter(ctx, a)
+	bits, entryBits := s.hadamardBits(), 0
+	for _, row := range b {
+		for _, x := range row {
+			entryBits = max(entryBits, x.BitLen())
+		}
+	}
+	// adj(A) b is a sum of n products of a minor and an entry.
+	rhsBits := entryBits + mathbits.Len(uint(n))
+	if s.w == 1 && bits+rhsBits <= 63 && n <= wordSolveOrder && k <= wordSolveColumns {
+		cols := make([]uint64, 0, n*k)
+		for j := range k {
+			for i := range n {
+				cols = append(cols, uint64(b[i][j].Int64()))
+			}
+		}
+		return s.wordSolution(ctx, cols, k)
+	}
+	if 2*k >= n {
+		return s.cramer(ctx, b, k, bits+rhsBits, entryBits)
+	}
+	l, err := findLifter(ctx, s)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -35,29 +75,33 @@ func Solve(ctx context.Context, a, b [][]*big.Int) (num [][]*big.Int, den *big.I
 // is num/den, with den > 0 and no factor in common with all of num. It
 // returns [ErrSingular] when det A = 0. See [Solve].
 func Inverse(ctx context.Context, a [][]*big.Int) (num [][]*big.Int, den *big.Int, err error) {
-	n := mustBeSquare(a)
-	unit := make([][]*big.Int, n)
-	for i := range unit {
-		unit[i] = make([]*big.Int, n)
-		for j := range unit[i] {
-			unit[i][j] = new(big.Int)
-		}
-		unit[i][i].SetInt64(1)
+	return squareOf(a).invert(ctx)
+}
+
+// InverseWords is [Inverse] for the matrix of order n with rows a.
+func InverseWords(ctx context.Context, n int, a []int64) (num [][]*big.Int, den *big.Int, err error) {
+	return squareOfWords(n, a).invert(ctx)
+}
+
+func (s *square) invert(ctx context.Context) (num [][]*big.Int, den *big.Int, err error) {
+	bits := s.hadamardBits()
+	if bits <= 60 {
+		return s.wordInverse(ctx)
 	}
-	return Solve(ctx, a, unit)
+	return s.cramer(ctx, nil, s.n, bits, 1)
 }
 
 // findLifter finds a prime that does not divide det A. When the product of
 // the primes that do exceeds Hadamard's bound, det A is 0.
-func findLifter(ctx context.Context, a [][]*big.Int) (*lifter, error) {
-	for i, tries := 0, primesFor(hadamardBound(a)); i < tries; i++ {
+func findLifter(ctx context.Context, s *square) (*lifter, error) {
+	for i, tries := 0, primesFor(s.hadamardBits()); i < tries; i++ {
 		f := zp.NewField(prime(i))
-		inv, ok, err := f.MatrixFromBig(a).Inverse(ctx)
+		inv, ok, err := s.image(ctx, f).Inverse(ctx)
 		if err != nil {
 			return nil, err
 		}
 		if ok {
-			return newLifter(a, f, inv), nil
+			return newLifter(s, f, inv), nil
 		}
 	}
 	return nil, ErrSingular

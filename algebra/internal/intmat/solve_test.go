@@ -150,7 +150,7 @@ func TestLifterWithSmallPrimes(t *testing.T) {
 				continue
 			}
 			solved++
-			l := newLifter(a, f, inv)
+			l := newLifter(squareOf(a), f, inv)
 			for _, b := range [][][]*big.Int{random(r, len(a), 1, 9), randomBorders(r, len(a), 1)} {
 				rhs := make([]*big.Int, len(a))
 				for i := range rhs {

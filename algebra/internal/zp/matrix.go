@@ -111,112 +111,77 @@ func (m *Matrix) transpose() *Matrix {
 }
 
 // Hessenberg returns a matrix similar to the square matrix m whose entries
-// below the subdiagonal are zero, in O(n^3). Columns already in that shape
-// cost only the scan, so a tridiagonal matrix costs O(n^2).
-//
-// Source: H. Cohen, A Course in Computational Algebraic Number Theory,
-// Algorithm 2.2.9 (steps 1 to 4).
+// below the subdiagonal are zero, in O(n^3); m itself when it has that shape.
+// See [hessenberg].
 func (m *Matrix) Hessenberg(ctx context.Context) (*Matrix, error) {
-	m.mustBeSquare()
-	h := m.Clone()
-	f, n := m.Field, m.Rows
-	u := make([]uint64, n)
-	for k := 1; k+1 < n; k++ {
-		if err := ctx.Err(); err != nil {
-			return nil, err
-		}
-		pivot := k
-		for pivot < n && h.At(pivot, k-1) == 0 {
-			pivot++
-		}
-		if pivot == n {
-			continue
-		}
-		if pivot != k {
-			h.swapRows(pivot, k)
-			h.swapCols(pivot, k)
-		}
-		top := h.Row(k)
-		minusInv := f.Neg(f.Inv(top[k-1]))
-		first, last := n, 0
-		for i := k + 1; i < n; i++ {
-			row := h.Row(i)
-			if row[k-1] == 0 {
-				u[i] = 0
-				continue
-			}
-			c := f.Mul(row[k-1], minusInv)
-			f.rowAddScaled(row[k-1:], top[k-1:], c)
-			u[i] = f.Neg(c)
-			first, last = min(first, i), i+1
-		}
-		if first >= last {
-			continue
-		}
-		// The inverse column operations all change column k only.
-		for i := range n {
-			row := h.Row(i)
-			row[k] = f.Add(row[k], f.rowDot(row[first:last], u[first:last]))
+	ring, cols, err := m.hessenberg(ctx)
+	if err != nil {
+		return nil, err
+	}
+	n := m.Rows
+	h := m.Field.NewMatrix(n, n)
+	ring.decode(cols)
+	for j := range n {
+		for i := range min(n, j+2) {
+			h.e[i*n+j] = cols[j*n+i]
 		}
 	}
 	return h, nil
 }
 
+// hessenberg returns the columns of the Hessenberg form in Montgomery form.
+func (m *Matrix) hessenberg(ctx context.Context) (*matrixRing, []uint64, error) {
+	m.mustBeSquare()
+	ring := newMatrixRing(m.Field)
+	a := slices.Clone(m.e)
+	ring.encode(a)
+	cols, err := hessenberg(ctx, ring, m.Rows, a)
+	return ring, cols, err
+}
+
 // CharPoly returns the coefficients of det(s I - m) for a square m, that of
-// s^i at index i, monic of length n+1, in O(n^3).
-//
-// With H the Hessenberg form and p_k the characteristic polynomial of its
-// leading k x k block, expanding along the last column gives
-//
-//	p_k = (s - h_kk) p_(k-1) - sum_(i<k) h_ik (h_(i+1,i) ... h_(k,k-1)) p_(i-1).
-//
-// Zero multipliers are skipped, and the sum stops at a zero subdiagonal.
+// s^i at index i, monic of length n+1, in O(n^3), from the Hessenberg form.
 //
 // Source: H. Cohen, A Course in Computational Algebraic Number Theory,
-// Algorithm 2.2.9 (steps 5 to 7).
+// Algorithm 2.2.9.
 func (m *Matrix) CharPoly(ctx context.Context) ([]uint64, error) {
-	h, err := m.Hessenberg(ctx)
+	ring, h, err := m.hessenberg(ctx)
 	if err != nil {
 		return nil, err
 	}
-	f, n := m.Field, m.Rows
-	p := make([][]uint64, n+1)
-	p[0] = []uint64{1}
-	for k := range n {
-		if err := ctx.Err(); err != nil {
-			return nil, err
-		}
-		q := make([]uint64, k+2)
-		copy(q[1:], p[k])
-		if c := h.At(k, k); c != 0 {
-			f.rowAddScaled(q[:k+1], p[k], f.Neg(c))
-		}
-		chain := uint64(1)
-		for i := k - 1; i >= 0; i-- {
-			chain = f.Mul(chain, h.At(i+1, i))
-			if chain == 0 {
-				break
-			}
-			if c := h.At(i, k); c != 0 {
-				f.rowAddScaled(q[:i+1], p[i], f.Neg(f.Mul(chain, c)))
-			}
-		}
-		p[k+1] = q
+	p, err := hessenbergCharPoly(ctx, ring, m.Rows, h)
+	if err != nil {
+		return nil, err
 	}
-	return p[n], nil
+	ring.decode(p)
+	return p, nil
+}
+
+// Cyclic tells whether the Hessenberg form of a square m has no zero on its
+// subdiagonal. Then the powers of m on the first unit vector span the space,
+// so the minimal and the characteristic polynomial of m agree; the converse
+// fails for an unlucky first vector. The cost is O(n^3).
+func (m *Matrix) Cyclic(ctx context.Context) (bool, error) {
+	_, h, err := m.hessenberg(ctx)
+	if err != nil {
+		return false, err
+	}
+	for i := 1; i < m.Rows; i++ {
+		if h[(i-1)*m.Rows+i] == 0 {
+			return false, nil
+		}
+	}
+	return true, nil
 }
 
 // Det returns the determinant of a square m by Gaussian elimination in O(n^3).
 func (m *Matrix) Det(ctx context.Context) (uint64, error) {
 	m.mustBeSquare()
-	e, err := m.eliminate(ctx, m.Cols, false)
-	if err != nil {
-		return 0, err
-	}
-	if len(e.cols) < m.Rows {
-		return 0, nil
-	}
-	return e.det, nil
+	ring := newMatrixRing(m.Field)
+	a := slices.Clone(m.e)
+	ring.encode(a)
+	det, err := determinant(ctx, ring, m.Rows, a)
+	return ring.reduce(0, det), err
 }
 
 // Rank returns the rank of m in O(n^3).
@@ -297,13 +262,6 @@ func (m *Matrix) Solve(ctx context.Context, b *Matrix) (x *Matrix, ok bool, err 
 	return x, true, nil
 }
 
-// Inverse returns the inverse of a square m in O(n^3); ok is false when m is
-// singular.
-func (m *Matrix) Inverse(ctx context.Context) (inv *Matrix, ok bool, err error) {
-	m.mustBeSquare()
-	return m.Solve(ctx, m.Field.IdentityMatrix(m.Rows))
-}
-
 // echelon is the outcome of eliminating in the leading columns of a matrix.
 type echelon struct {
 	m    *Matrix
@@ -381,16 +339,31 @@ func (m *Matrix) mustBeSquare() {
 	}
 }
 
-// rowAddScaled adds u x to y, where x is at least as long as y.
-//
-// The quotient floor(u 2^64 / P) replaces division: its product with x, cut
-// to the high word, misses the quotient of u x by P by at most one.
+// shoupQuotient returns floor(u 2^64 / P), which replaces division by P in many
+// products with u: its product with v, cut to the high word, misses the
+// quotient of u v by P by at most one.
 //
 // Source: D. Harvey, Faster arithmetic for number-theoretic transforms,
 // section 2 (the trick is V. Shoup's).
+func (f Field) shoupQuotient(u uint64) uint64 {
+	q, _ := bits.Div64(u, 0, f.P)
+	return q
+}
+
+// shoupMul returns v u, where q is shoupQuotient(u).
+func (f Field) shoupMul(v, u, q uint64) uint64 {
+	h, _ := bits.Mul64(q, v)
+	r := u*v - h*f.P
+	if r >= f.P {
+		r -= f.P
+	}
+	return r
+}
+
+// rowAddScaled adds u x to y, where x is at least as long as y.
 func (f Field) rowAddScaled(y, x []uint64, u uint64) {
 	p, p2 := f.P, 2*f.P
-	q, _ := bits.Div64(u, 0, p)
+	q := f.shoupQuotient(u)
 	x = x[:len(y)]
 	for i, v := range x {
 		h, _ := bits.Mul64(q, v)
@@ -427,137 +400,4 @@ func (f Field) rowDot(x, y []uint64) uint64 {
 	}
 	_, r := bits.Div64(hi%f.P, lo, f.P)
 	return r
-}
-
-// MinPoly returns the minimal polynomial of a square m, monic, the
-// coefficient of s^i at index i.
-//
-// It chooses generators v_1, v_2, ... of the space as a module over
-// polynomials in m: the first pseudo-random (constant seed), the others unit
-// vectors outside the span of what the earlier ones generate. The minimal
-// polynomial is the least common multiple of the orders of the generators,
-// where a polynomial f is extended to lcm(f, ord v) by the factor
-// ord(f(m) v). The result is exact whatever the pseudo-random vector; a good
-// one makes the cost O(s d n^2) with s generators and degree d.
-//
-// Source: M. Neunhoeffer, C. Praeger, Computing minimal polynomials of
-// matrices (the reduction to orders of module generators).
-func (m *Matrix) MinPoly(ctx context.Context) ([]uint64, error) {
-	m.mustBeSquare()
-	f, n := m.Field, m.Rows
-	if n == 0 {
-		return []uint64{1}, nil
-	}
-	v := make([]uint64, n)
-	state := uint64(0x9e3779b97f4a7c15)
-	for i := range v {
-		state = state*6364136223846793005 + 1442695040888963407
-		v[i] = (state >> 2) % f.P
-	}
-	if v[0] == 0 {
-		v[0] = 1
-	}
-	span := &krylovSpan{m: m, taken: make([]bool, n)}
-	poly, err := span.spin(ctx, v, true)
-	if err != nil {
-		return nil, err
-	}
-	for len(span.rows) < n {
-		v := make([]uint64, n)
-		for j, taken := range span.taken {
-			if !taken { // a span holds no unit vector off its pivots
-				v[j] = 1
-				break
-			}
-		}
-		w, err := m.evalAt(ctx, poly, v)
-		if err != nil {
-			return nil, err
-		}
-		if !isZeroRow(w) {
-			alone := &krylovSpan{m: m, taken: make([]bool, n)}
-			g, err := alone.spin(ctx, w, true)
-			if err != nil {
-				return nil, err
-			}
-			prod := make([]uint64, len(poly)+len(g)-1)
-			for i, c := range g {
-				f.rowAddScaled(prod[i:i+len(poly)], poly, c)
-			}
-			poly = prod
-		}
-		if _, err := span.spin(ctx, v, false); err != nil {
-			return nil, err
-		}
-	}
-	return poly, nil
-}
-
-// evalAt returns poly(m) v by Horner's rule.
-func (m *Matrix) evalAt(ctx context.Context, poly, v []uint64) ([]uint64, error) {
-	w := make([]uint64, len(v))
-	for i := len(poly) - 1; i >= 0; i-- {
-		if err := ctx.Err(); err != nil {
-			return nil, err
-		}
-		w = m.MulVec(w)
-		m.Field.rowAddScaled(w, v, poly[i])
-	}
-	return w, nil
-}
-
-// krylovSpan is a subspace closed under m, as rows (v | c) in the order they
-// were found: v reduced by the rows before, with pivot 1, and c the
-// combination of m^k v_0 that gives v, tracked on demand.
-type krylovSpan struct {
-	m      *Matrix
-	rows   [][]uint64
-	pivots []int
-	taken  []bool // taken[j]: column j is a pivot
-}
-
-// spin adds v, m v, m^2 v, ... until the span is closed. On an empty span
-// with track it returns the order of v: the least monic polynomial that
-// takes v to zero.
-func (s *krylovSpan) spin(ctx context.Context, v []uint64, track bool) ([]uint64, error) {
-	f, n := s.m.Field, s.m.Rows
-	for k := 0; ; k++ {
-		if err := ctx.Err(); err != nil {
-			return nil, err
-		}
-		row := make([]uint64, n, 2*n+1)
-		copy(row, v)
-		if track {
-			row = row[:n+k+1]
-			row[n+k] = 1
-		}
-		for i, r := range s.rows {
-			if c := row[s.pivots[i]]; c != 0 {
-				f.rowAddScaled(row[:min(len(r), len(row))], r, f.Neg(c))
-			}
-		}
-		pivot := 0
-		for pivot < n && row[pivot] == 0 {
-			pivot++
-		}
-		if pivot == n {
-			return row[n:], nil
-		}
-		inv := f.Inv(row[pivot])
-		for j, x := range row {
-			row[j] = f.Mul(x, inv)
-		}
-		s.rows, s.pivots = append(s.rows, row), append(s.pivots, pivot)
-		s.taken[pivot] = true
-		v = s.m.MulVec(v)
-	}
-}
-
-func isZeroRow(v []uint64) bool {
-	for _, x := range v {
-		if x != 0 {
-			return false
-		}
-	}
-	return true
 }

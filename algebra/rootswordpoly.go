@@ -1,0 +1,424 @@
+package algebra
+
+import (
+	"math"
+	"math/big"
+	"math/bits"
+)
+
+// maxWords bounds the words of a fixed-point number: more would not fit the
+// exponents of float64, and big.Int is as fast by then.
+const maxWords = 14
+
+// wordPoly evaluates p(2^exp t) = 2^scale sum C_k t^k for 1/4 <= |t| <= 2^(-level/8)
+// in fixed-point numbers of w words: X 2^(-64w) for a two's complement integer X
+// of w words, the lowest first.
+//
+// The scheme of Horner, b_k = C_k + t b_{k+1} and d_k = b_{k+1} + t d_{k+1} for
+// the derivative, runs on B_k = 2^-s_k b_k and D_k = 2^-s_k d_k with
+// s_k = floor(k level/8), which keeps high coefficients from wasting bits on
+// small points: the factor is t or 2t from step to step, the product of those
+// from any step to any other at most 2, and to the last at most 1.
+// The scale makes the sum of (k+1) 2^-s_k |C_k| less than 1/16. It bounds all
+// |B_k| by 1/8 and all |D_k| by 2/(16|t|) <= 1/2: nothing overflows.
+type wordPoly struct {
+	wordScale
+	n     int
+	scale int64
+	c     []uint64 // 2^-s_k C_k in words w k ... w (k+1) - 1, towards zero
+	shift []uint8  // s_{k+1} - s_k
+}
+
+// wordScale tells which points a wordPoly is for.
+type wordScale struct {
+	exp   int64
+	level int // 0 ... 8
+	w     int
+}
+
+// newWordScale is for points of modulus about size 2^exp, 1/4 < size < 1.
+func newWordScale(exp int64, size float64, w int) wordScale {
+	level := int(-8 * math.Log2(size*(1+0x1p-30)))
+	return wordScale{exp, min(max(level, 0), 8), w}
+}
+
+// wordPoint is the number 2^(exp+1) (re + i im), of modulus at most 2^exp.
+type wordPoint struct {
+	re, im []uint64
+	exp    int64
+}
+
+func newWordPoly(c []*big.Int, s wordScale) *wordPoly {
+	n := len(c) - 1
+	p := &wordPoly{wordScale: s, n: n, scale: math.MinInt64, c: make([]uint64, (n+1)*s.w), shift: make([]uint8, n+1)}
+	at := func(k int) int64 { return s.exp*int64(k) - int64(k*s.level/8) }
+	for k, x := range c {
+		if x.Sign() != 0 { // |c_k| < 2^BitLen
+			p.scale = max(p.scale, int64(x.BitLen()+bits.Len(uint(k+1)))+at(k))
+		}
+		p.shift[k] = uint8((k+1)*s.level/8 - k*s.level/8)
+	}
+	p.scale += int64(bits.Len(uint(n+1))) + 4
+	for k, x := range c {
+		setFixed(p.c[k*s.w:(k+1)*s.w], x, 64*int64(s.w)+at(k)-p.scale)
+	}
+	return p
+}
+
+// errors returns bounds of the errors of the values and the derivatives that
+// eval finds, without the rounding to float64. In units of the last place a
+// product is off by less than w+1, always downward, see fixedMul. A step
+// C + 4(x+iy)b, t = 2(x+iy), is off by less than 4(w+1) in the real part, a
+// difference of products, and 8(w+1) in the imaginary part, and C by 1: at most
+// u = 9(w+1)+1 in all. As the factors from a step to the last one are at most 1,
+// the n+1 steps add up to (n+1)u, and to 2(n+1)u for any B_k, as those are at
+// most 2. A step of the derivative takes over twice the error of B and adds u:
+// in all n (4(n+1) + 1) u.
+func (p *wordPoly) errors() (value, deriv float64) {
+	n := float64(p.n)
+	u := math.Ldexp(float64(9*(p.w+1)+1), -64*p.w)
+	return (n + 1) * u, n * (4*n + 5) * u
+}
+
+// eval returns sum C_k t^k and, if asked for, its derivative by t at the point
+// z = 2^exp t with the exponent of p and as many words, within the bounds of
+// errors and 2^-50 of the value.
+func (p *wordPoly) eval(z wordPoint, deriv bool) (value, slope complex128) {
+	real := true
+	for _, x := range z.im {
+		real = real && x == 0
+	}
+	switch {
+	case p.w == 2 && real:
+		return p.evalReal2(z, deriv)
+	case p.w == 2:
+		return p.evalComplex2(z, deriv)
+	}
+	var mem [8 * maxWords]uint64
+	part := func(i int) []uint64 { return mem[i*maxWords : i*maxWords+p.w] }
+	br, bi, dr, di := part(0), part(1), part(2), part(3)
+	nr, ni, u, v := part(4), part(5), part(6), part(7)
+	// step returns the parts of 2(x+iy)(a+bi), in nr and ni.
+	step := func(a, b []uint64) {
+		fixedMul(u, z.re, a)
+		if real {
+			fixedAdd(nr, u, u)
+			return
+		}
+		fixedMul(v, z.im, b)
+		fixedSub(u, u, v)
+		fixedAdd(nr, u, u)
+		fixedMul(u, z.re, b)
+		fixedMul(v, z.im, a)
+		fixedAdd(u, u, v)
+		fixedAdd(ni, u, u)
+	}
+	for k := p.n; k >= 0; k-- {
+		twice := p.shift[k] > 0
+		if deriv && k < p.n {
+			step(dr, di)
+			fixedAdd(dr, nr, br)
+			fixedAdd(di, ni, bi)
+			if twice {
+				fixedAdd(dr, dr, dr)
+				fixedAdd(di, di, di)
+			}
+		}
+		c := p.c[k*p.w : (k+1)*p.w]
+		if k == p.n {
+			copy(br, c)
+			continue
+		}
+		step(br, bi)
+		if twice {
+			fixedAdd(nr, nr, nr)
+			fixedAdd(ni, ni, ni)
+		}
+		fixedAdd(br, nr, c)
+		bi, ni = ni, bi
+	}
+	return complex(fixedFloat(br), fixedFloat(bi)), complex(fixedFloat(dr), fixedFloat(di))
+}
+
+// evalReal2 is eval for two words and a real point.
+func (p *wordPoly) evalReal2(z wordPoint, deriv bool) (value, slope complex128) {
+	x0, x1 := z.re[0], z.re[1]
+	var b0, b1, d0, d1 uint64
+	for k := p.n; k >= 0; k-- {
+		s := p.shift[k] & 1
+		if deriv {
+			t1, t0 := fixedMul2(x1, x0, d1, d0)
+			t1, t0 = t1<<1|t0>>63, t0<<1
+			var c uint64
+			d0, c = bits.Add64(t0, b0, 0)
+			d1 = t1 + b1 + c
+			d1, d0 = d1<<s|d0>>63>>(s^1), d0<<s
+		}
+		t1, t0 := fixedMul2(x1, x0, b1, b0)
+		s++
+		t1, t0 = t1<<s|t0>>(64-s), t0<<s
+		var c uint64
+		b0, c = bits.Add64(t0, p.c[2*k], 0)
+		b1 = t1 + p.c[2*k+1] + c
+	}
+	return complex(fixedFloat2(b1, b0), 0), complex(fixedFloat2(d1, d0), 0)
+}
+
+// evalComplex2 is eval for two words.
+func (p *wordPoly) evalComplex2(z wordPoint, deriv bool) (value, slope complex128) {
+	x0, x1, y0, y1 := z.re[0], z.re[1], z.im[0], z.im[1]
+	var r0, r1, i0, i1, dr0, dr1, di0, di1 uint64
+	for k := p.n; k >= 0; k-- {
+		var c uint64
+		s := p.shift[k] & 1
+		if deriv {
+			a1, a0, b1, b0 := fixedMulComplex2(x1, x0, y1, y0, dr1, dr0, di1, di0)
+			a1, a0, b1, b0 = a1<<1|a0>>63, a0<<1, b1<<1|b0>>63, b0<<1
+			a0, c = bits.Add64(a0, r0, 0)
+			a1 += r1 + c
+			b0, c = bits.Add64(b0, i0, 0)
+			b1 += i1 + c
+			dr1, dr0 = a1<<s|a0>>63>>(s^1), a0<<s
+			di1, di0 = b1<<s|b0>>63>>(s^1), b0<<s
+		}
+		a1, a0, b1, b0 := fixedMulComplex2(x1, x0, y1, y0, r1, r0, i1, i0)
+		s++
+		a1, a0, b1, b0 = a1<<s|a0>>(64-s), a0<<s, b1<<s|b0>>(64-s), b0<<s
+		r0, c = bits.Add64(a0, p.c[2*k], 0)
+		r1 = a1 + p.c[2*k+1] + c
+		i0, i1 = b0, b1
+	}
+	return complex(fixedFloat2(r1, r0), fixedFloat2(i1, i0)), complex(fixedFloat2(dr1, dr0), fixedFloat2(di1, di0))
+}
+
+// fixedMulComplex2 returns the parts of (x+iy) (a+bi) for numbers of two words.
+func fixedMulComplex2(x1, x0, y1, y0, a1, a0, b1, b0 uint64) (r1, r0, i1, i0 uint64) {
+	s1, s0 := fixedMul2(x1, x0, a1, a0)
+	t1, t0 := fixedMul2(y1, y0, b1, b0)
+	r0, c := bits.Sub64(s0, t0, 0)
+	r1 = s1 - t1 - c
+	s1, s0 = fixedMul2(x1, x0, b1, b0)
+	t1, t0 = fixedMul2(y1, y0, a1, a0)
+	i0, c = bits.Add64(s0, t0, 0)
+	i1 = s1 + t1 + c
+	return r1, r0, i1, i0
+}
+
+// fixedMul2 is fixedMul for two words.
+func fixedMul2(x1, x0, y1, y0 uint64) (z1, z0 uint64) {
+	ah, al := bits.Mul64(x0, y1)
+	bh, bl := bits.Mul64(x1, y0)
+	z1, z0 = bits.Mul64(x1, y1)
+	_, c := bits.Add64(al, bl, 0)
+	z0, c = bits.Add64(z0, ah, c)
+	z1 += c
+	z0, c = bits.Add64(z0, bh, 0)
+	z1 += c
+	m := uint64(int64(x1) >> 63)
+	z0, c = bits.Sub64(z0, y0&m, 0)
+	z1 -= y1&m + c
+	m = uint64(int64(y1) >> 63)
+	z0, c = bits.Sub64(z0, x0&m, 0)
+	z1 -= x1&m + c
+	return z1, z0
+}
+
+// fixedMul sets z to the product of x and y, all of w words, off by less than
+// w+1 units in the last place, downward. z is neither x nor y.
+//
+// The product of the words as unsigned numbers is formed from the columns from
+// w-1 on. The others hold at most w-1 high halves of products beside numbers
+// below one of their units, so dropping them costs less than w units, and
+// dropping column w-1 then one more. A negative x stands for x + 2^(64w), whose
+// product has y 2^(64w) too much: subtract it, and likewise for y.
+func fixedMul(z, x, y []uint64) {
+	w := len(z)
+	x, y = x[:w], y[:w]
+	var acc [maxWords + 1]uint64
+	for i, a := range x {
+		var carry uint64
+		row := y[w-1-i:]
+		for j, b := range row {
+			hi, lo := bits.Mul64(a, b)
+			var c uint64
+			lo, c = bits.Add64(lo, acc[j], 0)
+			hi += c
+			lo, c = bits.Add64(lo, carry, 0)
+			carry = hi + c
+			acc[j] = lo
+		}
+		acc[i+1] = carry
+	}
+	copy(z, acc[1:w+1])
+	if int64(x[w-1]) < 0 {
+		fixedSub(z, z, y)
+	}
+	if int64(y[w-1]) < 0 {
+		fixedSub(z, z, x)
+	}
+}
+
+func fixedAdd(z, x, y []uint64) {
+	var c uint64
+	x, y = x[:len(z)], y[:len(z)]
+	for i := range z {
+		z[i], c = bits.Add64(x[i], y[i], c)
+	}
+}
+
+func fixedSub(z, x, y []uint64) {
+	var c uint64
+	x, y = x[:len(z)], y[:len(z)]
+	for i := range z {
+		z[i], c = bits.Sub64(x[i], y[i], c)
+	}
+}
+
+// fixedHalve sets x to x/2, rounded down.
+func fixedHalve(x []uint64) {
+	for i := range x {
+		hi := uint64(int64(x[i]) >> 63)
+		if i+1 < len(x) {
+			hi = x[i+1]
+		}
+		x[i] = x[i]>>1 | hi<<63
+	}
+}
+
+func fixedNeg(z []uint64) {
+	c := uint64(1)
+	for i := range z {
+		z[i], c = bits.Add64(^z[i], 0, c)
+	}
+}
+
+// setFixed sets z to m 2^shift rounded towards zero. The result must fit.
+func setFixed(z []uint64, m *big.Int, shift int64) {
+	words := m.Bits()
+	word := func(i int64) uint64 {
+		if wordBits == 32 {
+			var v uint64
+			for k := 2*i + 1; k >= 2*i; k-- {
+				v <<= 32
+				if k >= 0 && k < int64(len(words)) {
+					v |= uint64(words[k])
+				}
+			}
+			return v
+		}
+		if i < 0 || i >= int64(len(words)) {
+			return 0
+		}
+		return uint64(words[i])
+	}
+	q, s := (-shift)>>6, uint(-shift)&63
+	for i := range z {
+		z[i] = word(q+int64(i))>>s | word(q+int64(i)+1)<<(64-s) // a shift by 64 gives 0
+	}
+	if m.Sign() < 0 {
+		fixedNeg(z)
+	}
+}
+
+// fixedBig returns the integer X.
+func fixedBig(x []uint64) *big.Int {
+	neg := int64(x[len(x)-1]) < 0
+	if neg {
+		y := make([]uint64, len(x))
+		copy(y, x)
+		fixedNeg(y)
+		x = y
+	}
+	var m *big.Int
+	if wordBits == 64 {
+		w := make([]big.Word, len(x))
+		for i, v := range x {
+			w[i] = big.Word(v)
+		}
+		m = new(big.Int).SetBits(w)
+	} else {
+		m = new(big.Int)
+		for i := len(x) - 1; i >= 0; i-- {
+			m.Lsh(m, 64).Or(m, new(big.Int).SetUint64(x[i]))
+		}
+	}
+	if neg {
+		m.Neg(m)
+	}
+	return m
+}
+
+// fixedFloat returns the number x within 2^-51 of its absolute value.
+func fixedFloat(x []uint64) float64 {
+	neg := int64(x[len(x)-1]) < 0
+	i, carry := len(x)-1, uint64(0)
+	if neg { // the words of -x are the complements, plus a carry from below
+		carry = ^uint64(0)
+	}
+	for i > 0 && x[i] == carry {
+		i--
+	}
+	if i < 2 {
+		i = min(2, len(x)-1)
+	}
+	// Three words from the first that counts hold at least 128 bits of it, so that
+	// leaving out the carry that the lower ones may send is harmless.
+	var f float64
+	for k := i; k >= max(i-2, 0); k-- {
+		f = f*0x1p64 + float64(x[k]^carry)
+	}
+	if neg {
+		if i <= 2 {
+			f++
+		}
+		f = -f
+	}
+	return math.Ldexp(f, 64*(max(i-2, 0)-len(x)))
+}
+
+// fixedFloat2 is fixedFloat for two words.
+func fixedFloat2(x1, x0 uint64) float64 {
+	neg := int64(x1) < 0
+	if neg {
+		var c uint64
+		x0, c = bits.Sub64(0, x0, 0)
+		x1 = -x1 - c
+	}
+	f := float64(x1)*0x1p-64 + float64(x0)*0x1p-128
+	if neg {
+		return -f
+	}
+	return f
+}
+
+// fixedAddFloat adds f to x, rounded to a unit in the last place. |f| < 1/2.
+func fixedAddFloat(x []uint64, f float64) {
+	if f == 0 {
+		return
+	}
+	frac, e := math.Frexp(math.Abs(f)) // f = frac 2^e = m 2^(e-53)
+	m := uint64(frac * 0x1p53)
+	s := e - 53 + 64*len(x)
+	if s < 0 {
+		m >>= uint(min(-s, 64))
+		s = 0
+	}
+	i := s / 64
+	lo, hi := m<<(s%64), m>>(64-s%64)
+	var c uint64
+	add := func(v uint64) {
+		if i < len(x) {
+			if f > 0 {
+				x[i], c = bits.Add64(x[i], v, c)
+			} else {
+				x[i], c = bits.Sub64(x[i], v, c)
+			}
+			i++
+		}
+	}
+	add(lo)
+	add(hi)
+	for i < len(x) && c != 0 {
+		add(0)
+	}
+}
