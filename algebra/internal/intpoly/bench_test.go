@@ -2,6 +2,7 @@ package intpoly
 
 import (
 	"context"
+	"fmt"
 	"testing"
 )
 
@@ -59,6 +60,52 @@ func BenchmarkGCD(b *testing.B) {
 		b.Run(c.name, func(b *testing.B) {
 			for b.Loop() {
 				GCD(p, q)
+			}
+		})
+	}
+}
+
+// BenchmarkMulWays calibrates mulWordTerms, mulFlatTerms and kroneckerTwo: each
+// way at several lengths for products of k words a coefficient.
+func BenchmarkMulWays(b *testing.B) {
+	for _, k := range []int{1, 2, 3, 4, 5, 6, 8, 16} {
+		for _, n := range []int{4, 8, 12, 16, 20, 40, 60, 100, 200} {
+			size := min((k*word-12)/2, word*k/2)
+			p, q := randomPoly(1, n-1, size), randomPoly(2, n-1, size)
+			ways := map[string]func(){
+				"flat": func() { mulFlat(p, q, k) },
+				"one":  func() { mulPacked(p, q) },
+				"two":  func() { mulPackedTwo(p, q) },
+			}
+			if k < 3 {
+				ways["word"] = func() { mulWord(p, q, k) }
+			}
+			for _, way := range []string{"word", "flat", "one", "two"} {
+				if f := ways[way]; f != nil {
+					b.Run(fmt.Sprintf("k=%d/n=%d/%s", k, n, way), func(b *testing.B) {
+						for b.Loop() {
+							f()
+						}
+					})
+				}
+			}
+		}
+	}
+}
+
+// BenchmarkDivWays calibrates flatWords.
+func BenchmarkDivWays(b *testing.B) {
+	for _, k := range []int{1, 2, 4, 8, 12, 16, 24} {
+		q := randomPoly(1, 20, k*word/2-8)
+		p := Mul(q, randomPoly(2, 20, k*word/2-8))
+		b.Run(fmt.Sprintf("k=%d/flat", k), func(b *testing.B) {
+			for b.Loop() {
+				divFlat(p, q)
+			}
+		})
+		b.Run(fmt.Sprintf("k=%d/ints", k), func(b *testing.B) {
+			for b.Loop() {
+				divSchoolbook(p, q)
 			}
 		})
 	}

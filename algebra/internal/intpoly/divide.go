@@ -26,7 +26,25 @@ func DivExact(p, q Poly) (quo Poly, ok bool) {
 			return nil, false
 		}
 	}
+	return divide(p, q)
+}
+
+// divide is DivExact for deg p >= deg q >= 0 without the filter.
+func divide(p, q Poly) (Poly, bool) {
+	if quo, ok, decided := divFlat(p, q); decided {
+		return quo, ok
+	}
 	return divSchoolbook(p, q)
+}
+
+// isDivisor reports whether q divides p, deg p >= deg q >= 0, without the
+// filter.
+func isDivisor(p, q Poly) bool {
+	if _, _, ok, decided := provenQuotient(p, q); decided {
+		return ok
+	}
+	_, ok := divSchoolbook(p, q)
+	return ok
 }
 
 // divides reports whether d divides x.
@@ -77,8 +95,10 @@ func divSchoolbook(p, q Poly) (Poly, bool) {
 }
 
 // reduce returns p modulo the field's prime.
-func reduce(p Poly, f zp.Field) zp.Poly {
-	a := make(zp.Poly, len(p))
+func reduce(p Poly, f zp.Field) zp.Poly { return reduceTo(make(zp.Poly, len(p)), p, f) }
+
+// reduceTo is reduce into the memory of a, as long as p.
+func reduceTo(a zp.Poly, p Poly, f zp.Field) zp.Poly {
 	for i, c := range p {
 		a[i] = f.FromBig(c)
 	}

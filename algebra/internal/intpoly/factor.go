@@ -73,8 +73,8 @@ func factorSquareFree(ctx context.Context, f Poly) ([]Poly, error) {
 }
 
 // factorDense factors a polynomial as factorSquareFree does, without a look at
-// its exponents: modulo a well chosen prime, by Hensel lifting and
-// recombination.
+// its exponents: low degrees by their roots, others modulo a well chosen prime,
+// by Hensel lifting and recombination.
 //
 // Source: von zur Gathen and Gerhard, Modern Computer Algebra, chapter 15.
 func factorDense(ctx context.Context, f Poly) ([]Poly, error) {
@@ -84,6 +84,14 @@ func factorDense(ctx context.Context, f Poly) ([]Poly, error) {
 	if f.Degree() == 2 {
 		return factorQuadratic(f), nil
 	}
+	if f.Degree() == 3 && f.maxBits() <= cubicBits {
+		return factorCubic(f), nil
+	}
+	return factorLifting(ctx, f)
+}
+
+// factorLifting is factorDense without the special ways of low degree.
+func factorLifting(ctx context.Context, f Poly) ([]Poly, error) {
 	choice, err := choosePrime(ctx, f)
 	if err != nil {
 		return nil, err
@@ -95,27 +103,9 @@ func factorDense(ctx context.Context, f Poly) ([]Poly, error) {
 	if err != nil {
 		return nil, err
 	}
-	lift, err := newLift(ctx, f, choice.field, local, factorBound(f))
-	if err != nil {
-		return nil, err
-	}
-	return recombine(ctx, lift, choice.degrees)
-}
-
-// factorQuadratic factors a primitive a s^2 + b s + c with a > 0 by its
-// discriminant.
-func factorQuadratic(f Poly) []Poly {
-	a, b, c := f[2], f[1], f[0]
-	d := new(big.Int).Mul(b, b)
-	t := new(big.Int).Mul(a, c)
-	d.Sub(d, t.Lsh(t, 2))
-	root, ok := exactRoot(d, 2)
-	if !ok {
-		return []Poly{f}
-	}
-	// 2a s + b - root is a multiple of one factor.
-	_, g := New(root.Sub(b, root), t.Lsh(a, 1)).Primitive()
-	return []Poly{g, quotient(f, g)}
+	l := &lift{f: f, field: choice.field, bound: factorBound(f)}
+	l.start(local)
+	return liftAndRecombine(ctx, l, choice.degrees)
 }
 
 // primeChoice is the outcome of looking at a polynomial modulo a few primes.
@@ -137,7 +127,7 @@ func (c *primeChoice) irreducible() bool {
 // have in a row neither narrowed the degrees nor given fewer factors.
 const (
 	maxPrimes  = 14
-	idlePrimes = 5
+	idlePrimes = 4
 )
 
 // choosePrime factors f by degrees modulo small primes that keep its degree

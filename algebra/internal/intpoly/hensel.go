@@ -17,7 +17,8 @@ type lift struct {
 	bezoutExp int      // the Bezout coefficients of the tree hold modulo p^bezoutExp
 	modulus   *big.Int // p^exp
 	factors   []Poly
-	root      *liftNode // nil until factors given without a tree are raised
+	words     *wordNode // the tree while the modulus fits a word
+	root      *liftNode // the tree afterwards; none until factors given without one are raised
 }
 
 // liftNode is a node of the factor tree: product = left right and
@@ -30,85 +31,66 @@ type liftNode struct {
 	s, t        Poly
 }
 
-// newLift lifts the monic irreducible factors of f modulo a prime, f
-// square-free there, to p^exp > 2 bound.
+// newLift returns the monic irreducible factors of f modulo a prime, f
+// square-free there, lifted to p^exp > 2 bound.
 func newLift(ctx context.Context, f Poly, field zp.Field, local []zp.Poly, bound *big.Int) (*lift, error) {
-	l := &lift{f: f, field: field, bound: bound, exp: 1, bezoutExp: 1, modulus: new(big.Int).SetUint64(field.P)}
-	l.root = buildTree(field, local)
+	l := &lift{f: f, field: field, bound: bound}
+	l.start(local)
+	return l, l.raise(ctx, l.sufficient())
+}
+
+// start sets the factors to those modulo the prime.
+func (l *lift) start(local []zp.Poly) {
+	l.exp, l.bezoutExp, l.modulus = 1, 1, new(big.Int).SetUint64(l.field.P)
+	l.root, l.words = nil, buildTree(l.field, local)
 	l.factors = make([]Poly, len(local))
-	l.root.leaves(l.factors)
-	p := new(big.Int).SetUint64(field.P)
+	l.words.leaves(l.factors)
+}
+
+// sufficient returns the least exp with p^exp > 2 bound.
+func (l *lift) sufficient() int {
+	p := new(big.Int).SetUint64(l.field.P)
 	power := new(big.Int).Set(p)
-	need := new(big.Int).Lsh(bound, 1)
+	need := new(big.Int).Lsh(l.bound, 1)
 	exp := 1
 	for power.Cmp(need) <= 0 {
 		power.Mul(power, p)
 		exp++
 	}
-	return l, l.raise(ctx, exp)
+	return exp
 }
 
-// buildTree joins the two factors of least degree until one node is left.
-func buildTree(field zp.Field, local []zp.Poly) *liftNode {
-	type item struct {
-		node *liftNode
-		p    zp.Poly
-	}
-	var queue []item
-	for i, g := range local {
-		queue = append(queue, item{&liftNode{product: fromField(g), index: i}, g})
-	}
-	takeLeast := func() item {
-		best := 0
-		for i := range queue {
-			if len(queue[i].p) < len(queue[best].p) {
-				best = i
-			}
-		}
-		it := queue[best]
-		queue = append(queue[:best], queue[best+1:]...)
-		return it
-	}
-	for len(queue) > 1 {
-		a, b := takeLeast(), takeLeast()
-		_, s, t := field.BezoutPoly(a.p, b.p)
-		prod := field.MulPoly(a.p, b.p)
-		queue = append(queue, item{&liftNode{
-			product: fromField(prod), left: a.node, right: b.node,
-			s: fromField(s), t: fromField(t),
-		}, prod})
-	}
-	return queue[0].node
-}
-
-// fromField returns the polynomial with the residues of g as coefficients.
-func fromField(g zp.Poly) Poly {
-	p := make(Poly, len(g))
-	for i, c := range g {
-		p[i] = new(big.Int).SetUint64(c)
-	}
-	return p
-}
-
-// raise lifts to p^exp, exp at least the present one. The exponents at most
-// double and are chosen from the top, so that the last step, the dearest, is
-// not longer than needed. The Bezout coefficients follow one step behind.
-//
-// Source: von zur Gathen and Gerhard, Modern Computer Algebra, algorithm 15.17.
-func (l *lift) raise(ctx context.Context, exp int) error {
-	if l.root == nil {
-		local := make([]zp.Poly, len(l.factors))
-		for i, g := range l.factors {
-			local[i] = reduce(g, l.field)
-		}
-		l.root = buildTree(l.field, local)
-		l.exp, l.bezoutExp, l.modulus = 1, 1, new(big.Int).SetUint64(l.field.P)
-	}
+// steps returns the exponents passed on the way from the present one to exp,
+// the last first: they at most double and are chosen from the top, so that the
+// last step, the dearest, is not longer than needed.
+func (l *lift) steps(exp int) []int {
 	var steps []int
 	for e := exp; e > l.exp; e = (e + 1) / 2 {
 		steps = append(steps, e)
 	}
+	return steps
+}
+
+// raise lifts to p^exp, exp at least the present one. The Bezout coefficients
+// follow one step behind.
+//
+// Source: von zur Gathen and Gerhard, Modern Computer Algebra, algorithm 15.17.
+func (l *lift) raise(ctx context.Context, exp int) error {
+	if l.root == nil && l.words == nil {
+		l.restart()
+	}
+	steps := l.steps(exp)
 	for i := len(steps) - 1; i >= 0; i-- {
+		if l.words != nil {
+			ok, err := l.raiseWords(ctx, steps[i])
+			if err != nil {
+				return err
+			}
+			if ok {
+				continue
+			}
+			l.root, l.words = l.words.big(), nil
+		}
 		gain := steps[i] - l.exp
 		for l.bezoutExp < gain {
 			to := min(2*l.bezoutExp, gain)
@@ -126,8 +108,43 @@ func (l *lift) raise(ctx context.Context, exp int) error {
 		l.exp, l.modulus = steps[i], s.next
 	}
 	l.factors = make([]Poly, len(l.factors))
-	l.root.leaves(l.factors)
+	if l.words != nil {
+		l.words.leaves(l.factors)
+	} else {
+		l.root.leaves(l.factors)
+	}
 	return nil
+}
+
+// restart goes back to the factors modulo the prime.
+func (l *lift) restart() {
+	local := make([]zp.Poly, len(l.factors))
+	for i, g := range l.factors {
+		local[i] = reduce(g, l.field)
+	}
+	l.start(local)
+}
+
+// raiseWords takes a step to p^exp, unless p^exp is too large for one word.
+func (l *lift) raiseWords(ctx context.Context, exp int) (ok bool, err error) {
+	st, ok := l.wordStep(l.exp, exp)
+	if !ok {
+		return false, nil
+	}
+	for gain := exp - l.exp; l.bezoutExp < gain; {
+		to := min(2*l.bezoutExp, gain)
+		bezout, _ := l.wordStep(l.bezoutExp, to)
+		if err := l.words.raiseBezout(ctx, bezout); err != nil {
+			return false, err
+		}
+		l.bezoutExp = to
+	}
+	monic := st.next.MonicPoly(reduce(l.f, st.next))
+	if err := l.words.raiseProduct(ctx, monic, st); err != nil {
+		return false, err
+	}
+	l.exp, l.modulus = exp, new(big.Int).SetUint64(st.next.P)
+	return true, nil
 }
 
 // step is a step from modulus m to next = m gain, where gain divides m.

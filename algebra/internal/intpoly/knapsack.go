@@ -225,7 +225,7 @@ func classFactors(l *lift, classes [][]Poly) []Poly {
 	rest := l.f
 	var out []Poly
 	for _, members := range classes[:len(classes)-1] {
-		g := candidate(rest, members, l.modulus)
+		g := candidate(rest, members, l.modulus, 0)
 		if g == nil {
 			return nil
 		}

@@ -5,27 +5,33 @@ import (
 	"math/bits"
 )
 
-// useSchoolbook reports whether the schoolbook product measures faster than
-// packing: for very short factors, and for moderate ones with coefficients of
-// several words, where packing saves little.
-func useSchoolbook(p, q Poly) bool {
-	n := min(len(p), len(q))
-	return n <= 2 || n <= 16 && p.maxBits()+q.maxBits() > 12*bits.UintSize
-}
+// kroneckerTwo is the size of a packed product, in words, from which two
+// products of half the size measure faster than one.
+var kroneckerTwo = 300
 
 // Mul returns p q. Short products are formed coefficient by coefficient; long
 // ones by Kronecker substitution, at the cost of one product of integers of
-// (deg p + deg q)(bits of a result coefficient) bits.
+// (deg p + deg q)(bits of a result coefficient) bits, or two of half the size.
 //
 // Source: von zur Gathen and Gerhard, Modern Computer Algebra, section 8.4.
 func Mul(p, q Poly) Poly {
 	if len(p) == 0 || len(q) == 0 {
 		return nil
 	}
-	if useSchoolbook(p, q) {
+	n, bp, bq := min(len(p), len(q)), p.maxBits(), q.maxBits()
+	size := bp + bq + bits.Len(uint(n)) // of a coefficient of the product
+	k := wordsFor(size)
+	switch {
+	case bp <= bits.UintSize && bq <= bits.UintSize && k <= len(mulWordTerms) && n <= mulWordTerms[k-1]:
+		return mulWord(p, q, k)
+	case k <= len(mulFlatTerms) && n <= mulFlatTerms[k-1]:
+		return mulFlat(p, q, k)
+	case n <= 2 || n <= 16 && bp+bq > 12*bits.UintSize:
 		return mulSchoolbook(p, q)
+	case (len(p)+len(q))*k > kroneckerTwo:
+		return mulKroneckerTwo(p, q, size+1)
 	}
-	return mulKronecker(p, q)
+	return mulKronecker(p, q, size+1)
 }
 
 // mulSchoolbook returns p q, non-zero factors, in deg p deg q products.
@@ -49,17 +55,59 @@ func mulSchoolbook(p, q Poly) Poly {
 	return r
 }
 
-// mulKronecker returns p q, non-zero factors, from p(2^k) q(2^k) with k so
-// large that every coefficient of the product is below 2^(k-1).
-func mulKronecker(p, q Poly) Poly {
-	slot := p.maxBits() + q.maxBits() + bits.Len(uint(min(len(p), len(q)))) + 1
+// mulKronecker returns p q, non-zero factors, from p(2^slot) q(2^slot), with
+// every coefficient of the product below 2^(slot-1) in size.
+func mulKronecker(p, q Poly, slot int) Poly {
 	x := pack(p, slot)
-	if len(p) == len(q) && &p[0] == &q[0] {
+	if same(p, q) {
 		x.Mul(x, x)
 	} else {
 		x.Mul(x, pack(q, slot))
 	}
-	return unpack(x, slot, len(p)+len(q)-1)
+	return trim(unpack(x, slot, len(p)+len(q)-1))
+}
+
+// same reports whether p and q share their memory.
+func same(p, q Poly) bool { return len(p) == len(q) && &p[0] == &q[0] }
+
+// mulKroneckerTwo is mulKronecker from the values at 2^h and -2^h, 2h = slot or
+// slot + 1: with p = e(s^2) + s o(s^2), these are e(2^slot) +- 2^h o(2^slot).
+//
+// Source: Harvey, Faster polynomial multiplication via multipoint Kronecker
+// substitution, J. Symbolic Computation 44 (2009), section 3.1.
+func mulKroneckerTwo(p, q Poly, slot int) Poly {
+	h := (slot + 1) / 2
+	plus, minus := packTwo(p, h)
+	if same(p, q) {
+		plus.Mul(plus, plus)
+		minus.Mul(minus, minus)
+	} else {
+		plusQ, minusQ := packTwo(q, h)
+		plus.Mul(plus, plusQ)
+		minus.Mul(minus, minusQ)
+	}
+	n := len(p) + len(q) - 1
+	even := new(big.Int).Add(plus, minus)
+	odd := plus.Sub(plus, minus)
+	r := make(Poly, n)
+	for i, c := range unpack(even.Rsh(even, 1), 2*h, (n+1)/2) {
+		r[2*i] = c
+	}
+	for i, c := range unpack(odd.Rsh(odd, uint(h+1)), 2*h, n/2) {
+		r[2*i+1] = c
+	}
+	return trim(r)
+}
+
+// packTwo returns p(2^h) and p(-2^h).
+func packTwo(p Poly, h int) (plus, minus *big.Int) {
+	var parts [2]Poly
+	for i, c := range p {
+		parts[i%2] = append(parts[i%2], c)
+	}
+	even, odd := pack(parts[0], 2*h), pack(parts[1], 2*h)
+	odd.Lsh(odd, uint(h))
+	return new(big.Int).Add(even, odd), even.Sub(even, odd)
 }
 
 // pack returns p(2^slot). Every coefficient must be below 2^slot in size.
@@ -87,8 +135,8 @@ func pack(p Poly, slot int) *big.Int {
 	return x
 }
 
-// unpack returns the polynomial of at most n coefficients in
-// [-2^(slot-1), 2^(slot-1)) whose value at 2^slot is x.
+// unpack returns the polynomial of n coefficients in [-2^(slot-1), 2^(slot-1))
+// whose value at 2^slot is x, leading zeros included.
 func unpack(x *big.Int, slot, n int) Poly {
 	words := x.Bits()
 	flip := x.Sign() < 0
@@ -134,16 +182,5 @@ func unpack(x *big.Int, slot, n int) Poly {
 			p[i].Neg(p[i])
 		}
 	}
-	return trim(p)
-}
-
-// increment adds 1 to v in place and reports the carry out.
-func increment(v []big.Word) bool {
-	for j := range v {
-		v[j]++
-		if v[j] != 0 {
-			return false
-		}
-	}
-	return true
+	return p
 }

@@ -6,6 +6,7 @@ package intpoly
 import (
 	"cmp"
 	"math/big"
+	"math/bits"
 )
 
 // Poly is a polynomial over Z: the coefficient of s^i at index i, the last
@@ -40,20 +41,60 @@ func (p Poly) Degree() int { return len(p) - 1 }
 // lead returns the leading coefficient of p != 0; it must not be modified.
 func (p Poly) lead() *big.Int { return p[len(p)-1] }
 
+// isOne reports whether x = 1.
+func isOne(x *big.Int) bool { return x.IsInt64() && x.Int64() == 1 }
+
+// one returns the polynomial 1.
+func one() Poly { return Poly{big.NewInt(1)} }
+
 // Content returns the non-negative greatest common divisor of the
 // coefficients, 0 for the zero polynomial.
 func (p Poly) Content() *big.Int {
 	g := new(big.Int)
 	// The ends are taken first: they are often coprime already.
 	for i := len(p) - 1; i >= 0; i-- {
-		if i < len(p)-1 && g.IsInt64() && g.Int64() == 1 {
-			break
+		if g.Sign() != 0 && g.IsUint64() {
+			return g.SetUint64(wordContent(p[:i+1], g.Uint64()))
 		}
 		if p[i].Sign() != 0 {
 			g.GCD(nil, nil, g, new(big.Int).Abs(p[i]))
 		}
 	}
 	return g
+}
+
+// wordContent returns the gcd of g > 0 and the coefficients.
+func wordContent(p Poly, g uint64) uint64 {
+	for i := len(p) - 1; i >= 0 && g != 1; i-- {
+		for a, b := g, remWord(p[i], g); ; a, b = b, a%b {
+			if b == 0 {
+				g = a
+				break
+			}
+		}
+	}
+	return g
+}
+
+// remWord returns |x| modulo m > 0.
+func remWord(x *big.Int, m uint64) uint64 {
+	if x.IsInt64() {
+		v := x.Int64()
+		if v < 0 {
+			v = -v // -2^63 stays itself, which is right as unsigned number
+		}
+		return uint64(v) % m
+	}
+	if bits.UintSize < 64 {
+		t := new(big.Int).SetUint64(m)
+		return t.Rem(x, t).Abs(t).Uint64()
+	}
+	var r uint64
+	w := x.Bits()
+	for i := len(w) - 1; i >= 0; i-- {
+		_, r = bits.Div64(r, uint64(w[i]), m)
+	}
+	return r
 }
 
 // Primitive returns p = content pp, where pp has content 1 and a positive
@@ -67,14 +108,56 @@ func (p Poly) Primitive() (content *big.Int, pp Poly) {
 	if p.lead().Sign() < 0 {
 		content.Neg(content)
 	}
-	if content.IsInt64() && content.Int64() == 1 {
-		return content, p
+	return content, p.over(content)
+}
+
+// primitivePart returns the primitive part of p != 0, with the sign of p.
+func (p Poly) primitivePart() Poly {
+	if isOne(p.lead()) {
+		return p
 	}
-	pp = make(Poly, len(p))
-	for i, c := range p {
-		pp[i] = new(big.Int).Quo(c, content)
+	return p.over(p.Content())
+}
+
+// over returns p / c for a divisor c of all coefficients.
+func (p Poly) over(c *big.Int) Poly {
+	if isOne(c) {
+		return p
 	}
-	return content, pp
+	q := make(Poly, len(p))
+	cells := make([]big.Int, len(p))
+	d := c.Bits()
+	if len(d) > 1 {
+		for i, x := range p {
+			q[i] = cells[i].Quo(x, c)
+		}
+		return q
+	}
+	size := 0
+	for _, x := range p {
+		size += len(x.Bits())
+	}
+	words := make([]big.Word, size)
+	for i, x := range p {
+		w := x.Bits()
+		v := words[:len(w):len(w)]
+		words = words[len(w):]
+		var rem uint
+		for j := len(w) - 1; j >= 0; j-- {
+			if rem == 0 {
+				v[j], rem = w[j]/d[0], uint(w[j]%d[0])
+				continue
+			}
+			var quo uint
+			quo, rem = bits.Div(rem, uint(w[j]), uint(d[0]))
+			v[j] = big.Word(quo)
+		}
+		q[i] = cells[i].SetBits(v)
+		if x.Sign() != c.Sign() {
+			q[i].Neg(q[i])
+		}
+	}
+	return q
 }
 
 // Add returns p + q.
@@ -122,11 +205,12 @@ func (p Poly) Derivative() Poly {
 	if len(p) < 2 {
 		return nil
 	}
-	d := make(Poly, len(p)-1)
-	for i := range d {
-		d[i] = new(big.Int).Mul(p[i+1], big.NewInt(int64(i+1)))
+	k := wordsFor(p.maxBits() + bits.Len(uint(len(p))))
+	a := toFlat(p[1:], k, false)
+	for i := range len(p) - 1 {
+		scaleWords(a.at(i), uint64(i+1))
 	}
-	return d
+	return a.poly()
 }
 
 // compare orders polynomials by degree, then by coefficients from the top.

@@ -3,6 +3,7 @@ package intpoly
 import (
 	"fmt"
 	"math/big"
+	"math/bits"
 	"testing"
 
 	"github.com/stretchr/testify/require"
@@ -95,12 +96,21 @@ func TestRingLaws(t *testing.T) {
 	}
 }
 
+// slotFor is the size of a coefficient of p q with its sign.
+func slotFor(p, q Poly) int {
+	return p.maxBits() + q.maxBits() + bits.Len(uint(min(len(p), len(q)))) + 1
+}
+
+func mulPacked(p, q Poly) Poly    { return mulKronecker(p, q, slotFor(p, q)) }
+func mulPackedTwo(p, q Poly) Poly { return mulKroneckerTwo(p, q, slotFor(p, q)) }
+
 func TestMulKroneckerIsSchoolbook(t *testing.T) {
 	ps := samples()
 	for _, p := range ps {
 		for _, q := range ps {
 			if len(p) > 0 && len(q) > 0 {
-				requireSame(t, mulSchoolbook(p, q), mulKronecker(p, q))
+				requireSame(t, mulSchoolbook(p, q), mulPacked(p, q))
+				requireSame(t, mulSchoolbook(p, q), mulPackedTwo(p, q))
 			}
 		}
 		if len(p) > 0 {
@@ -115,8 +125,10 @@ func TestMulKroneckerIsSchoolbook(t *testing.T) {
 			for i := range p {
 				p[i], q[i] = m, new(big.Int).Neg(m)
 			}
-			requireSame(t, mulSchoolbook(p, q), mulKronecker(p, q))
-			requireSame(t, mulSchoolbook(q, q), mulKronecker(q, q))
+			requireSame(t, mulSchoolbook(p, q), mulPacked(p, q))
+			requireSame(t, mulSchoolbook(p, q), mulPackedTwo(p, q))
+			requireSame(t, mulSchoolbook(q, q), mulPacked(q, q))
+			requireSame(t, mulSchoolbook(q, q), mulPackedTwo(q, q))
 		}
 	}
 }

@@ -114,7 +114,7 @@ func TestKnapsackRaisesThePrecision(t *testing.T) {
 		require.NoError(t, err)
 		require.Equal(t, 1, low.exp)
 		if !tree {
-			low.root = nil
+			low.root, low.words = nil, nil
 		}
 		got, err := knapsack(ctx, low, degrees)
 		require.NoError(t, err)

@@ -3,6 +3,8 @@ package intpoly
 import (
 	"context"
 	"math/big"
+
+	"example.org/closedform/algebra/internal/zp"
 )
 
 // Factor is a polynomial together with its multiplicity.
@@ -26,37 +28,61 @@ func squareFree(ctx context.Context, p Poly) ([]Factor, error) {
 	if len(p) < 2 {
 		return nil, nil
 	}
-	_, p = p.Primitive()
-	d := p.Derivative()
-	g, err := gcd(ctx, p, d)
-	if err != nil {
-		return nil, err
-	}
-	if g.Degree() == 0 {
+	p = positive(p.primitivePart())
+	if isSquareFree(p) {
 		return []Factor{{p, 1}}, nil
 	}
+	if parts := squareFreeImage(p); parts != nil {
+		return parts, nil
+	}
+	return squareFreeYun(ctx, p)
+}
+
+// certificatePrime is the largest prime below 2^31: half as dear as a longer
+// one, and dividing the discriminant of few polynomials.
+const certificatePrime = 1<<31 - 1
+
+// isSquareFree reports whether p, of positive degree, is proven square-free by
+// being so, with its degree, modulo one prime.
+func isSquareFree(p Poly) bool {
+	f := zp.NewField(certificatePrime)
+	buf := make(zp.Poly, 2*len(p))
+	a := reduceTo(buf[:len(p)], p, f)
+	return len(a) == len(p) && f.GCDInPlace(a, f.DerivativeTo(buf[len(p):], a)).Degree() == 0
+}
+
+// squareFreeYun is Yun's algorithm over Z for a primitive p of positive degree
+// with positive leading coefficient.
+func squareFreeYun(ctx context.Context, p Poly) ([]Factor, error) {
+	d := p.Derivative()
+	content, pp := d.Primitive()
+	var over [2]Poly
+	if _, err := gcdPrimitive(ctx, p, pp, &over); err != nil {
+		return nil, err
+	}
 	var parts []Factor
-	c := quotient(p, g)
-	w := Sub(quotient(d, g), c.Derivative())
+	c := over[0]
+	w := Sub(over[1].Scale(content), c.Derivative())
 	for i := 1; ; i++ {
 		if len(w) == 0 { // all that is left has multiplicity i
 			return append(parts, Factor{positive(c), i}), nil
 		}
-		a, err := gcd(ctx, c, w)
+		content, pp = w.Primitive()
+		a, err := gcdPrimitive(ctx, c, pp, &over)
 		if err != nil {
 			return nil, err
 		}
+		c = over[0]
 		if a.Degree() > 0 {
 			parts = append(parts, Factor{a, i})
 		}
-		c = quotient(c, a)
-		w = Sub(quotient(w, a), c.Derivative())
+		w = Sub(over[1].Scale(content), c.Derivative())
 	}
 }
 
 // quotient returns p / q for a known divisor q.
 func quotient(p, q Poly) Poly {
-	if q.Degree() == 0 && q[0].IsInt64() && q[0].Int64() == 1 {
+	if q.Degree() == 0 && isOne(q[0]) {
 		return p
 	}
 	r, ok := DivExact(p, q)

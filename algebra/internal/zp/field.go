@@ -12,6 +12,10 @@ import (
 	"math/bits"
 )
 
+// The kernels read the words of a big.Int as 64 bits each: a platform with
+// shorter ones is refused here, at compile time.
+const _ uint = bits.UintSize - 64
+
 // Field is the prime field with P elements.
 type Field struct {
 	P uint64

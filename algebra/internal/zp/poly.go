@@ -86,14 +86,7 @@ func (f Field) MonicPoly(a Poly) Poly {
 
 // DerivativePoly returns the derivative of a.
 func (f Field) DerivativePoly(a Poly) Poly {
-	if len(a) < 2 {
-		return nil
-	}
-	d := make(Poly, len(a)-1)
-	for i := range d {
-		d[i] = f.Mul(a[i+1], uint64(i+1)%f.P)
-	}
-	return trim(d)
+	return f.DerivativeTo(make(Poly, len(a)), a)
 }
 
 // EvalPoly returns a(x).
@@ -116,18 +109,8 @@ func (f Field) crossSum(a, b []uint64) uint64 {
 	if n == 0 {
 		return 0
 	}
-	if f.P < 1<<24 && n < 1<<16 {
-		var s0, s1 uint64
-		for len(a) >= 4 && len(b) >= 4 { // unrolled: this is where the time goes
-			c := b[len(b)-4:]
-			s0 += a[0]*c[3] + a[1]*c[2]
-			s1 += a[2]*c[1] + a[3]*c[0]
-			a, b = a[4:], b[:len(b)-4]
-		}
-		for i, x := range a {
-			s0 += x * b[len(b)-1-i]
-		}
-		return (s0 + s1) % f.P
+	if f.lazy(n) {
+		return crossDot(a, b) % f.P
 	}
 	var hi, lo uint64
 	for i, x := range a {
@@ -159,6 +142,14 @@ func (f Field) MulPoly(a, b Poly) Poly {
 		return nil
 	}
 	c := make(Poly, len(a)+len(b)-1)
+	if f.lazy(min(len(a), len(b))) {
+		mulLazy(c, a, b)
+		red := newReducer(f.P)
+		for i, x := range c {
+			c[i] = red.mod(x)
+		}
+		return trim(c)
+	}
 	for k := range c {
 		c[k] = f.coeffOfProduct(a, b, k)
 	}
@@ -178,6 +169,11 @@ func (f Field) DivRemPoly(a, b Poly) (q, r Poly) {
 	inv := uint64(1)
 	if b.Lead() != 1 {
 		inv = f.Inv(b.Lead())
+	}
+	if inv == 1 && f.lazy(n-m+1) {
+		r = append(r, a...)
+		newReducer(f.P).divRemLazy(r, b)
+		return trim(r[m-1:]), trim(r[: m-1 : m-1])
 	}
 	q = make(Poly, n-m+1)
 	for k := n - m; k >= 0; k-- {
@@ -210,6 +206,10 @@ func (f Field) MulModPoly(a, b, m Poly) Poly {
 // PowModPoly returns a^e modulo m by binary powering.
 func (f Field) PowModPoly(a Poly, e uint64, m Poly) Poly {
 	a = f.RemPoly(a, m)
+	if len(a) > 0 && e > 0 && f.lazy(2*len(m)) && m.Lead() == 1 {
+		ring := f.newQuotients(m)
+		return trim(ring.pow(ring.element(a), e))
+	}
 	r := f.RemPoly(Poly{1}, m)
 	for i := bits.Len64(e) - 1; i >= 0; i-- {
 		r = f.MulModPoly(r, r, m)
@@ -218,76 +218,6 @@ func (f Field) PowModPoly(a Poly, e uint64, m Poly) Poly {
 		}
 	}
 	return r
-}
-
-// GCDPoly returns the monic greatest common divisor of a and b, nil when both
-// are zero. Cost: about deg(a) deg(b) word products.
-func (f Field) GCDPoly(a, b Poly) Poly {
-	if f.P < 1<<30 {
-		return f.gcdSmall(a, b)
-	}
-	for len(b) > 0 {
-		a, b = b, f.RemPoly(a, b)
-	}
-	return f.MonicPoly(a)
-}
-
-// gcdSmall is GCDPoly for primes below 2^30, in two buffers. Quotients of two
-// terms, the rule, are taken off in one pass with one reduction for a
-// coefficient.
-func (f Field) gcdSmall(a, b Poly) Poly {
-	a, b = append(Poly(nil), a...), append(Poly(nil), b...)
-	red := newReducer(f.P)
-	if len(a) < len(b) {
-		a, b = b, a
-	}
-	for len(b) > 0 {
-		inv := f.Inv(b.Lead())
-		for len(a) >= len(b) {
-			// a <- a - (q1 x + q0) x^d b, or without q1 at the end.
-			n, m := len(a), len(b)
-			q := f.P - red.mod(a[n-1]*inv) // minus the leading quotient
-			if n == m {
-				for i, c := range b {
-					a[i] = red.mod(a[i] + q*c)
-				}
-				a = trim(a)
-				continue
-			}
-			next := a[n-2]
-			if m > 1 {
-				next = red.mod(next + q*b[m-2])
-			}
-			q0 := f.P - red.mod(next*inv)
-			low := a[n-m-1 : n]
-			low[0] = red.mod(low[0] + q0*b[0])
-			for i := 1; i < m; i++ {
-				low[i] = red.mod(low[i] + q0*b[i] + q*b[i-1])
-			}
-			low[m] = 0 // the leading terms cancel
-			a = trim(a)
-		}
-		a, b = b, a
-	}
-	return f.MonicPoly(a)
-}
-
-// reducer reduces numbers below 2^63 modulo a fixed p without division.
-//
-// Source: Barrett, Implementing the Rivest Shamir and Adleman public key
-// encryption algorithm on a standard digital signal processor, CRYPTO 1986.
-type reducer struct{ p, inverse uint64 }
-
-func newReducer(p uint64) reducer { return reducer{p, ^uint64(0) / p} }
-
-// mod returns x modulo p for x < 2^63: the quotient estimate is at most 1 low.
-func (r reducer) mod(x uint64) uint64 {
-	q, _ := bits.Mul64(x, r.inverse)
-	x -= q * r.p
-	if x >= r.p {
-		x -= r.p
-	}
-	return x
 }
 
 // BezoutPoly returns the monic greatest common divisor g of a and b and s, t

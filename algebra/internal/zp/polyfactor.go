@@ -8,8 +8,9 @@ import (
 
 // DegreePart is the product of all monic irreducible factors of one degree.
 type DegreePart struct {
-	Degree int  // of every irreducible factor of P
-	P      Poly // monic
+	Degree int        // of every irreducible factor of P
+	P      Poly       // monic
+	frob   *frobenius // of a multiple of P
 }
 
 // Count returns the number of irreducible factors in the part.
@@ -31,7 +32,7 @@ func (f Field) DistinctDegree(ctx context.Context, a Poly) ([]DegreePart, error)
 	rest := f.MonicPoly(a)
 	var parts []DegreePart
 	if rest.Degree() < 2 {
-		return append(parts, DegreePart{1, rest}), nil
+		return append(parts, DegreePart{1, rest, nil}), nil
 	}
 	frob, err := f.newFrobenius(ctx, rest)
 	if err != nil {
@@ -46,12 +47,12 @@ func (f Field) DistinctDegree(ctx context.Context, a Poly) ([]DegreePart, error)
 		power = frob.apply(power)
 		g := f.GCDPoly(rest, f.SubPoly(power, x))
 		if g.Degree() > 0 {
-			parts = append(parts, DegreePart{d, g})
+			parts = append(parts, DegreePart{d, g, &frob})
 			rest, _ = f.DivRemPoly(rest, g)
 		}
 	}
 	if rest.Degree() > 0 {
-		parts = append(parts, DegreePart{rest.Degree(), rest})
+		parts = append(parts, DegreePart{rest.Degree(), rest, &frob})
 	}
 	return parts, nil
 }
@@ -80,6 +81,7 @@ func (f Field) newFrobenius(ctx context.Context, m Poly) (frobenius, error) {
 	if f.P <= uint64(2*n) && f.P < 1<<20 {
 		// Single steps row <- x row lead from x^(ip) to the next. An entry
 		// gains less than P^2 a step, so P steps fit a word unreduced.
+		red := newReducer(f.P)
 		row := make(Poly, n)
 		row[0] = 1
 		for i := 0; i < n; i++ {
@@ -88,18 +90,33 @@ func (f Field) newFrobenius(ctx context.Context, m Poly) (frobenius, error) {
 			}
 			set(i, row)
 			for range f.P {
-				top := row[n-1] % f.P
+				top := red.mod(row[n-1])
 				copy(row[1:], row)
 				row[0] = 0
 				if top != 0 {
-					top = f.P - top
-					for j, c := range m[:n] {
-						row[j] += top * c
-					}
+					addRow(row, m[:n], f.P-top)
 				}
 			}
 			for j := range row {
-				row[j] %= f.P
+				row[j] = red.mod(row[j])
+			}
+		}
+		return fr, nil
+	}
+	if f.lazy(2 * n) {
+		ring := f.newQuotients(m)
+		h := ring.powX(f.P)
+		row := make([]uint64, n)
+		row[0] = 1
+		set(0, row)
+		copy(row, h)
+		for i := 1; i < n; i++ {
+			if err := ctx.Err(); err != nil {
+				return fr, err
+			}
+			set(i, row)
+			if i < n-1 {
+				ring.mul(row, row, h)
 			}
 		}
 		return fr, nil
@@ -120,6 +137,13 @@ func (f Field) newFrobenius(ctx context.Context, m Poly) (frobenius, error) {
 func (fr frobenius) apply(h Poly) Poly {
 	n := len(fr.cols)
 	r := make(Poly, n)
+	if fr.field.lazy(n) {
+		red := newReducer(fr.field.P)
+		for i, col := range fr.cols {
+			r[i] = red.mod(crossDot(h, col[n-len(h):]))
+		}
+		return trim(r)
+	}
 	for i, col := range fr.cols {
 		r[i] = fr.field.crossSum(h, col[n-len(h):])
 	}
@@ -129,15 +153,33 @@ func (fr frobenius) apply(h Poly) Poly {
 // EqualDegree returns the monic irreducible factors, each of degree d, of the
 // square-free product a of such factors, in the order of [ComparePoly]. The
 // trial elements come from a generator with a constant seed. Expected cost:
-// d log p log(deg a / d) products modulo a.
+// log(deg a / d) times d applications of the Frobenius map and log p products
+// modulo a.
 //
 // Source: Cantor and Zassenhaus, A new algorithm for factoring polynomials
-// over finite fields, Math. Comp. 36 (1981).
+// over finite fields, Math. Comp. 36 (1981); von zur Gathen and Shoup, Computing
+// Frobenius maps and factoring polynomials, Comput. Complexity 2 (1992), for
+// the trace in place of the norm.
 func (f Field) EqualDegree(ctx context.Context, a Poly, d int) ([]Poly, error) {
-	a = f.MonicPoly(a)
+	return f.equalDegree(ctx, DegreePart{Degree: d, P: f.MonicPoly(a)})
+}
+
+func (f Field) equalDegree(ctx context.Context, part DegreePart) ([]Poly, error) {
+	d := part.Degree
+	if part.P.Degree() <= d {
+		return []Poly{part.P}, nil
+	}
+	frob := part.frob
+	if frob == nil && d > 1 {
+		fr, err := f.newFrobenius(ctx, part.P)
+		if err != nil {
+			return nil, err
+		}
+		frob = &fr
+	}
 	rng := splitMix(0x9E3779B97F4A7C15)
 	var out []Poly
-	stack := []Poly{a}
+	stack := []Poly{part.P}
 	for len(stack) > 0 {
 		g := stack[len(stack)-1]
 		stack = stack[:len(stack)-1]
@@ -149,7 +191,7 @@ func (f Field) EqualDegree(ctx context.Context, a Poly, d int) ([]Poly, error) {
 			if err := ctx.Err(); err != nil {
 				return nil, err
 			}
-			h := f.splitEqual(g, d, &rng)
+			h := f.splitEqual(g, d, frob, &rng)
 			if h.Degree() > 0 && h.Degree() < g.Degree() {
 				q, _ := f.DivRemPoly(g, h)
 				stack = append(stack, h, q)
@@ -161,9 +203,11 @@ func (f Field) EqualDegree(ctx context.Context, a Poly, d int) ([]Poly, error) {
 	return out, nil
 }
 
-// splitEqual returns gcd(g, t^((p^d-1)/2) - 1) for a random t: each factor of
-// g is in it with probability one half.
-func (f Field) splitEqual(g Poly, d int, rng *splitMix) Poly {
+// splitEqual returns gcd(g, s^((p-1)/2) - 1) for the trace s = t + t^p + ... +
+// t^(p^(d-1)) of a random t, whose residue modulo each factor of g is a random
+// element of the prime field: the factor divides the result with probability
+// (p-1)/(2p).
+func (f Field) splitEqual(g Poly, d int, frob *frobenius, rng *splitMix) Poly {
 	t := make(Poly, g.Degree())
 	for i := range t {
 		t[i] = rng.next() % f.P
@@ -172,13 +216,12 @@ func (f Field) splitEqual(g Poly, d int, rng *splitMix) Poly {
 	if t.Degree() < 1 {
 		return nil
 	}
-	// (p^d-1)/2 = (1 + p + ... + p^(d-1)) (p-1)/2: first the norm of t.
-	norm, conj := t, t
+	trace, conj := t, t
 	for i := 1; i < d; i++ {
-		conj = f.PowModPoly(conj, f.P, g)
-		norm = f.MulModPoly(norm, conj, g)
+		conj = f.RemPoly(frob.apply(conj), g)
+		trace = f.AddPoly(trace, conj)
 	}
-	h := f.PowModPoly(norm, (f.P-1)/2, g)
+	h := f.PowModPoly(trace, (f.P-1)/2, g)
 	return f.GCDPoly(g, f.SubPoly(h, Poly{1}))
 }
 
@@ -197,7 +240,7 @@ func (f Field) FactorSquareFree(ctx context.Context, a Poly) ([]Poly, error) {
 func (f Field) FactorParts(ctx context.Context, parts []DegreePart) ([]Poly, error) {
 	var out []Poly
 	for _, part := range parts {
-		g, err := f.EqualDegree(ctx, part.P, part.Degree)
+		g, err := f.equalDegree(ctx, part)
 		if err != nil {
 			return nil, err
 		}
