@@ -23,7 +23,7 @@ func TestDetails(t *testing.T) {
 		{"solve_dixon", "a.mat", "2 2\n2 0\n0 3\n", "ok:1,denbits:2"},
 		{"solve", "a.mat", "2 2\n0 1\n-1 0\n", "deg:2,factors:1,real:0,proven:1"},
 		// (s - 1)^2 (s^2 + 1)
-		{"factor", "a.poly", "4 1 -2 2 -2 1\n", "factors:2:1^2,2^1"},
+		{"factor", "a.poly", "4 1 -2 2 -2 1\n", "factors:2:2^1,1^2"},
 		{"sqfree", "a.poly", "4 1 -2 2 -2 1\n", "factors:2:2^1,1^2"},
 		{"roots", "a.poly", "4 1 -2 2 -2 1\n", "roots:3,real:1"},
 		// gcd((s - 1)(s + 2), (s - 1)(s + 3)), and a square

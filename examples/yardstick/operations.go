@@ -2,11 +2,13 @@ package main
 
 import (
 	"bytes"
+	"cmp"
 	"context"
 	"fmt"
 	"io"
 	"math/big"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"example.org/closedform/algebra"
@@ -207,9 +209,14 @@ func describePoly(p poly) string {
 	return fmt.Sprintf("deg:%d,bits:%d", p.Degree(), bits)
 }
 
+// describeFactors lists degree^multiplicity, by multiplicity and then degree.
 func describeFactors(factors []algebra.Factor[algebra.Rat]) string {
-	s := make([]string, len(factors))
-	for i, f := range factors {
+	sorted := slices.Clone(factors)
+	slices.SortStableFunc(sorted, func(x, y algebra.Factor[algebra.Rat]) int {
+		return cmp.Or(cmp.Compare(x.Mult, y.Mult), cmp.Compare(x.P.Degree(), y.P.Degree()))
+	})
+	s := make([]string, len(sorted))
+	for i, f := range sorted {
 		s[i] = fmt.Sprintf("%d^%d", f.P.Degree(), f.Mult)
 	}
 	return fmt.Sprintf("factors:%d:%s", len(factors), strings.Join(s, ","))
