@@ -38,14 +38,19 @@ func expand[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E],
 	for _, f := range images {
 		x.degree = max(x.degree, f.degree())
 	}
-	for _, f := range images {
-		terms, err := x.image(f)
-		if err != nil {
+	dens := make([]*expandedDenominator[E], len(images))
+	for i, f := range images {
+		var err error
+		if dens[i], err = x.denominator(f.den); err != nil {
 			return nil, err
 		}
-		x.terms = append(x.terms, terms)
 	}
-	return x.expansion, nil
+	x.terms = make([][]series, len(images))
+	err := inParallel(len(images), func(i int) (err error) {
+		x.terms[i], err = x.image(images[i], dens[i])
+		return err
+	})
+	return x.expansion, err
 }
 
 type expander[E any] struct {
@@ -54,7 +59,7 @@ type expander[E any] struct {
 	k      algebra.Scalars[E]
 	degree int // the highest of the polynomials to be evaluated
 	primes []*expandedPrime[E]
-	dens   []expandedDenominator[E]
+	dens   []*expandedDenominator[E]
 }
 
 // expandedPrime is a prime with the indices of its rates.
@@ -83,6 +88,7 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 	if err != nil {
 		return nil, err
 	}
+	first := len(x.rates)
 	for r := range roots.Len() {
 		if roots.Conjugate(r) < r {
 			continue
@@ -92,7 +98,15 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 			return nil, err
 		}
 		q.rates = append(q.rates, len(x.rates))
-		x.rates = append(x.rates, rate{at: at, powers: algebra.NewPowers(at, x.degree, x.prec), paired: roots.Conjugate(r) != r})
+		x.rates = append(x.rates, rate{at: at, paired: roots.Conjugate(r) != r})
+	}
+	err = inParallel(len(q.rates), func(i int) error {
+		r := &x.rates[first+i]
+		r.powers = algebra.NewPowers(r.at, x.degree, x.prec)
+		return x.ctx.Err()
+	})
+	if err != nil {
+		return nil, err
 	}
 	x.primes = append(x.primes, q)
 	return q, nil
@@ -101,8 +115,7 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 // denominator returns the expansion of a denominator.
 func (x *expander[E]) denominator(den []primePower[E]) (*expandedDenominator[E], error) {
 next:
-	for i := range x.dens {
-		d := &x.dens[i]
+	for _, d := range x.dens {
 		if len(d.den) != len(den) {
 			continue
 		}
@@ -113,7 +126,7 @@ next:
 		}
 		return d, nil
 	}
-	d := expandedDenominator[E]{den: den}
+	d := &expandedDenominator[E]{den: den}
 	for _, pp := range den {
 		q, err := x.prime(pp.prime)
 		if err != nil {
@@ -124,13 +137,10 @@ next:
 	one := algebra.ComplexBall{Re: algebra.BallFromInt(big.NewInt(1))}
 	for i, pp := range den {
 		n := pp.e
-		var all [][]algebra.ComplexBall
-		for _, r := range d.primes[i].rates {
-			if err := x.ctx.Err(); err != nil {
-				return nil, err
-			}
+		all := make([][]algebra.ComplexBall, len(d.primes[i].rates))
+		err := inParallel(len(all), func(r int) error {
 			// p(L + h) = h q(h), and the part at L is N/(q^e Q) h^-e.
-			at := x.rates[r].powers
+			at := x.rates[d.primes[i].rates[r]].powers
 			product := []algebra.ComplexBall{one}
 			for j, other := range den {
 				skip := 0
@@ -140,21 +150,21 @@ next:
 				q := taylorAt(x.k, other.p, at, skip, n)
 				product = mulBalls(product, powBalls(q, other.e, n, x.prec), n, x.prec)
 			}
-			all = append(all, divBalls([]algebra.ComplexBall{one}, product, n, x.prec))
+			all[r] = divBalls([]algebra.ComplexBall{one}, product, n, x.prec)
+			return x.ctx.Err()
+		})
+		if err != nil {
+			return nil, err
 		}
 		d.series = append(d.series, all)
 	}
 	x.dens = append(x.dens, d)
-	return &x.dens[len(x.dens)-1], nil
+	return d, nil
 }
 
-// image returns the terms of an image, prime by prime in the order of its
-// denominator.
-func (x *expander[E]) image(f Image[E]) ([]series, error) {
-	d, err := x.denominator(f.den)
-	if err != nil {
-		return nil, err
-	}
+// image returns the terms of an image with the denominator d, prime by prime in
+// the order of d.
+func (x *expander[E]) image(f Image[E], d *expandedDenominator[E]) ([]series, error) {
 	var out []series
 	for i, pp := range f.den {
 		n := pp.e
@@ -185,24 +195,26 @@ func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, err
 	// The parts of e^(Lt), and of twice its conjugate for a pair: the sum is a dot
 	// product of real numbers.
 	re, im := make([]algebra.Ball, len(x.rates)), make([]algebra.Ball, len(x.rates))
-	for i, r := range x.rates {
-		if err := ctx.Err(); err != nil {
-			return nil, err
-		}
+	err := inParallel(len(x.rates), func(i int) error {
+		r := x.rates[i]
 		e := r.at.Re.Mul(t, prec).Exp(prec)
-		if !r.paired {
+		if r.paired {
+			e = e.MulPow2(1)
+			sin, cos := r.at.Im.Mul(t, prec).SinCos(prec)
+			re[i], im[i] = e.Mul(cos, prec), e.Mul(sin, prec).Neg()
+		} else {
 			re[i] = e
-			continue
 		}
-		e = e.MulPow2(1)
-		sin, cos := r.at.Im.Mul(t, prec).SinCos(prec)
-		re[i], im[i] = e.Mul(cos, prec), e.Mul(sin, prec).Neg()
+		return ctx.Err()
+	})
+	if err != nil {
+		return nil, err
 	}
 	out := make([]algebra.Ball, len(x.terms))
-	var coefs, exps []algebra.Ball
-	for i, terms := range x.terms {
-		coefs, exps = coefs[:0], exps[:0]
-		for _, s := range terms {
+	err = inParallel(len(out), func(i int) error {
+		coefs := make([]algebra.Ball, 0, 2*len(x.terms[i]))
+		exps := make([]algebra.Ball, 0, 2*len(x.terms[i]))
+		for _, s := range x.terms[i] {
 			c := s.c[len(s.c)-1]
 			for k := len(s.c) - 2; k >= 0; k-- {
 				c = algebra.ComplexBall{Re: c.Re.Mul(t, prec), Im: c.Im.Mul(t, prec)}.Add(s.c[k], prec)
@@ -213,8 +225,9 @@ func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, err
 			}
 		}
 		out[i] = algebra.Dot(coefs, exps, prec)
-	}
-	return out, nil
+		return ctx.Err()
+	})
+	return out, err
 }
 
 func divInt(x algebra.ComplexBall, n *big.Int, prec uint) algebra.ComplexBall {
