@@ -58,6 +58,36 @@ func ExampleResponse_Steady() {
 	// steady:    2*t*sin(2*t)
 }
 
+// Values of all states at one time, every digit proven.
+func ExampleResponse_At() {
+	model, _ := linsys.Read(`
+		a' = -a/2            # a chain of two tanks
+		b' = a/2 - b/3
+		a(0) = 1;  b(0) = 0
+	`)
+	response, _ := model.ClosedForm(context.Background())
+	for _, t := range []int64{0, 1, 1000} {
+		values, err := response.At(context.Background(), big.NewRat(t, 1), 20)
+		fmt.Println(response.States(), values, err)
+	}
+	// Output:
+	// [a b] [1.0000000000000000000 0] <nil>
+	// [a b] [0.60653065971263342360 0.33000195258346748047] <nil>
+	// [a b] [7.1245764067412855315e-218 5.1557749681686946211e-145] <nil>
+}
+
+// Free constants of a general solution get values one by one or together.
+func ExampleResponse_With() {
+	model, _ := linsys.Read("x'' = -4*x")
+	general, _ := model.ClosedForm(context.Background())
+	fmt.Println(general.State("x"), general.Constants())
+	special, _ := general.With(map[string]*big.Rat{"C1": big.NewRat(3, 1), "C2": big.NewRat(0, 1)})
+	fmt.Println(special.State("x"))
+	// Output:
+	// C1*cos(2*t) + 1/2*C2*sin(2*t) [C1 C2]
+	// 3*cos(2*t)
+}
+
 // Second-order models come from their stiffness, damping and mass matrices.
 func ExampleFromMatrices() {
 	rats := func(x ...int64) []*big.Rat {
