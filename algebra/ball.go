@@ -1,210 +1,9 @@
 package algebra
 
 import (
-	"cmp"
 	"math"
 	"math/big"
-	"math/bits"
 )
-
-// magnitude is a non-negative bound m 2^e with a 32-bit mantissa: zero when m
-// is zero, else m lies in [2^31, 2^32). Every operation says in its name which
-// way it rounds. An exponent of magnitudeInf or more stands for infinity.
-type magnitude struct {
-	m uint32
-	e int64
-}
-
-const magnitudeInf = int64(1) << 61
-
-var infinite = magnitude{1 << 31, magnitudeInf}
-
-// magUp returns v 2^e rounded up.
-func magUp(v uint64, e int64) magnitude {
-	r := magDown(v, e)
-	if s := bits.Len64(v) - 32; s > 0 && uint64(r.m)<<s != v {
-		return r.next()
-	}
-	return r
-}
-
-// magDown returns v 2^e rounded down.
-func magDown(v uint64, e int64) magnitude {
-	if v == 0 {
-		return magnitude{}
-	}
-	s := bits.Len64(v) - 32
-	if s <= 0 {
-		return magnitude{uint32(v << -s), e + int64(s)}
-	}
-	return magnitude{uint32(v >> s), e + int64(s)}
-}
-
-// magPow2 returns 2^e.
-func magPow2(e int64) magnitude { return magnitude{1 << 31, e - 31} }
-
-// intMagDown returns |n| 2^e rounded down.
-func intMagDown(n *big.Int, e int64) magnitude {
-	w := n.Bits()
-	if len(w) == 0 {
-		return magnitude{}
-	}
-	l := n.BitLen()
-	hi := w[len(w)-1]
-	k := bits.Len(uint(hi))
-	var m uint64
-	switch {
-	case k >= 32:
-		m = uint64(hi >> (k - 32))
-	case len(w) == 1:
-		m = uint64(hi) << (32 - k)
-	default:
-		m = uint64(hi)<<(32-k) | uint64(w[len(w)-2]>>(bits.UintSize-32+k))
-	}
-	return magnitude{uint32(m), e + int64(l) - 32}
-}
-
-// intMagUp returns |n| 2^e rounded up, at most one unit above the best bound.
-func intMagUp(n *big.Int, e int64) magnitude {
-	r := intMagDown(n, e)
-	if n.BitLen() > 32 {
-		return r.next()
-	}
-	return r
-}
-
-// next returns the magnitude one unit in the last place above a > 0.
-func (a magnitude) next() magnitude {
-	if a.m == math.MaxUint32 {
-		return magnitude{1 << 31, a.e + 1}
-	}
-	return magnitude{a.m + 1, a.e}
-}
-
-func (a magnitude) isZero() bool { return a.m == 0 }
-func (a magnitude) isInf() bool  { return a.m != 0 && a.e >= magnitudeInf }
-
-// top returns the exponent t with 2^(t-1) <= a < 2^t, for a > 0.
-func (a magnitude) top() int64 { return a.e + 32 }
-
-func (a magnitude) cmp(b magnitude) int {
-	if a.m == 0 || b.m == 0 || a.e == b.e {
-		return cmp.Compare(a.m, b.m)
-	}
-	return cmp.Compare(a.e, b.e)
-}
-
-func (a magnitude) addUp(b magnitude) magnitude {
-	if a.m == 0 || b.m != 0 && a.e < b.e {
-		a, b = b, a
-	}
-	switch d := a.e - b.e; {
-	case b.m == 0 || a.isInf():
-		return a
-	case d >= 32:
-		return a.next() // b is below one unit of a
-	default:
-		return magUp(uint64(a.m)<<d+uint64(b.m), b.e)
-	}
-}
-
-// subDown returns max(0, a-b) rounded down.
-func (a magnitude) subDown(b magnitude) magnitude {
-	switch d := a.e - b.e; {
-	case b.m == 0:
-		return a
-	case b.isInf() || a.cmp(b) <= 0:
-		return magnitude{}
-	case a.isInf():
-		return a
-	case d >= 32:
-		return magDown(uint64(a.m)-1, a.e)
-	default:
-		return magDown(uint64(a.m)<<d-uint64(b.m), b.e)
-	}
-}
-
-func (a magnitude) mulUp(b magnitude) magnitude {
-	if a.isInf() || b.isInf() {
-		return infinite
-	}
-	return magUp(uint64(a.m)*uint64(b.m), a.e+b.e)
-}
-
-func (a magnitude) mulDown(b magnitude) magnitude {
-	if a.m == 0 || b.m == 0 {
-		return magnitude{}
-	}
-	if a.isInf() || b.isInf() {
-		return infinite
-	}
-	return magDown(uint64(a.m)*uint64(b.m), a.e+b.e)
-}
-
-func (a magnitude) mulPow2(k int64) magnitude {
-	if a.m == 0 || a.isInf() {
-		return a
-	}
-	return magnitude{a.m, a.e + k}
-}
-
-// quoUp returns a/b rounded up, infinity for b = 0.
-func (a magnitude) quoUp(b magnitude) magnitude {
-	switch {
-	case a.isInf() || b.m == 0:
-		return infinite
-	case a.m == 0 || b.isInf():
-		return magnitude{}
-	}
-	q, r := bits.Div64(uint64(a.m)>>1, uint64(a.m)<<63, uint64(b.m)<<31)
-	// q = floor(a.m 2^63 / (b.m 2^31)) is below 2^33.
-	if r != 0 {
-		q++
-	}
-	return magUp(q, a.e-b.e-32)
-}
-
-// sqrtFloor returns r 2^e <= sqrt(a) < (r+1) 2^e for a finite a > 0, where r has 31 or 32 bits.
-func (a magnitude) sqrtFloor() (r uint64, e int64) {
-	s := int64(30)
-	if (a.e-s)&1 != 0 {
-		s++
-	}
-	v := uint64(a.m) << s // below 2^63
-	r = uint64(math.Sqrt(float64(v)))
-	for r*r > v {
-		r--
-	}
-	for (r+1)*(r+1) <= v {
-		r++
-	}
-	return r, (a.e - s) / 2
-}
-
-// sqrtDown returns the square root of a rounded down.
-func (a magnitude) sqrtDown() magnitude {
-	if a.m == 0 || a.isInf() {
-		return a
-	}
-	return magDown(a.sqrtFloor())
-}
-
-// sqrtUp returns an upper bound of the square root of a.
-func (a magnitude) sqrtUp() magnitude {
-	if a.m == 0 || a.isInf() {
-		return a
-	}
-	r, e := a.sqrtFloor()
-	return magUp(r+1, e)
-}
-
-// float returns a, rounded up or down if its exponent is beyond those of [big.Float].
-func (a magnitude) float(up bool) *big.Float {
-	if a.isInf() {
-		return new(big.Float).SetInf(false)
-	}
-	return floatToward(new(big.Int).SetUint64(uint64(a.m)), a.e, up)
-}
 
 // floatFrom returns m 2^e, an infinity or 0 if the exponent is beyond those of
 // [big.Float].
@@ -349,7 +148,11 @@ func (x Ball) Neg() Ball {
 	if x.man == nil {
 		return x
 	}
-	return Ball{new(big.Int).Neg(x.man), x.exp, x.rad}
+	m := new(big.Int).SetBits(x.man.Bits()) // balls are immutable and may share words
+	if x.man.Sign() > 0 {
+		m.Neg(m)
+	}
+	return Ball{m, x.exp, x.rad}
 }
 
 // Add returns x + y.
@@ -367,13 +170,17 @@ func (x Ball) Add(y Ball, prec uint) Ball {
 	if x.top()-y.top() > int64(prec)+2 { // y does not reach the result's bits
 		return Ball{x.man, x.exp, r.addUp(y.midUp())}.widen(magnitude{}).Round(prec)
 	}
-	z := new(big.Int)
-	if d := x.exp - y.exp; d >= 0 {
-		z.Add(z.Lsh(x.man, uint(d)), y.man)
-		return ownBall(z, y.exp, r, prec)
+	if x.exp < y.exp {
+		x, y = y, x
 	}
-	z.Add(z.Lsh(y.man, uint(y.exp-x.exp)), x.man)
-	return ownBall(z, x.exp, r, prec)
+	d := x.exp - y.exp
+	if prec <= 128 {
+		if z, ok := addInWords(x.man, y.man, d, y.exp, r, prec); ok {
+			return z
+		}
+	}
+	z := new(big.Int).Lsh(x.man, uint(d))
+	return ownBall(z.Add(z, y.man), y.exp, r, prec)
 }
 
 // Sub returns x - y.
@@ -390,6 +197,11 @@ func (x Ball) Mul(y Ball, prec uint) Ball {
 	}
 	if x.man == nil || y.man == nil {
 		return Ball{rad: r}
+	}
+	if prec <= 128 {
+		if z, ok := mulInWords(x.man, y.man, x.exp+y.exp, r, prec); ok {
+			return z
+		}
 	}
 	return ownBall(new(big.Int).Mul(x.man, y.man), x.exp+y.exp, r, prec)
 }

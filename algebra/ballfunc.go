@@ -184,6 +184,17 @@ func expPoint(x Ball, prec uint) Ball {
 		m := x.midUp()
 		return Ball{man: intOne}.Add(x.point(), prec).widen(m.mulUp(m))
 	}
+	if prec <= wordFuncPrec && top <= 20 {
+		if z, ok := expInWords(x, prec); ok {
+			return z
+		}
+	}
+	return expSeries(x, prec)
+}
+
+// expSeries is expPoint for any precision and a midpoint other than 0.
+func expSeries(x Ball, prec uint) Ball {
+	top := x.top()
 	h := halvings(int64(prec))
 	wp := int64(prec) + h + 12 + int64(bits.Len(prec))
 	// m = k ln 2 + t. In units of 2^-q, t is off by at most 1 + 2 |k| <= 3 + 3 2^top.
@@ -249,6 +260,17 @@ func sinCosPoint(x Ball, prec uint) (sin, cos Ball) {
 		sin = x.point().Round(prec).widen(m2.mulUp(m).mulPow2(-2))
 		return sin, Ball{man: intOne, rad: m2.mulPow2(-1)}
 	}
+	if prec <= wordFuncPrec && top <= 20 {
+		if sin, cos, ok := sinCosInWords(x, prec); ok {
+			return sin, cos
+		}
+	}
+	return sinCosSeries(x, prec)
+}
+
+// sinCosSeries is sinCosPoint for any precision and a midpoint other than 0.
+func sinCosSeries(x Ball, prec uint) (sin, cos Ball) {
+	top := x.top()
 	h := halvings(int64(prec))
 	guard := h + 14 + int64(bits.Len(prec))
 	wp := int64(prec) + guard + max(-top, 0)

@@ -134,20 +134,6 @@ func (z ComplexBall) absDown() magnitude {
 	return a.mulDown(a).addDown(b.mulDown(b)).sqrtDown()
 }
 
-// addDown returns a+b rounded down.
-func (a magnitude) addDown(b magnitude) magnitude {
-	if b.m == 0 || a.m != 0 && a.e >= b.e+32 {
-		return a
-	}
-	if a.m == 0 || b.e >= a.e+32 {
-		return b
-	}
-	if a.e < b.e {
-		a, b = b, a
-	}
-	return magDown(uint64(a.m)<<(a.e-b.e)+uint64(b.m), b.e)
-}
-
 // point returns the midpoint as an exact ball.
 func (z ComplexBall) point() ComplexBall { return ComplexBall{z.Re.point(), z.Im.point()} }
 

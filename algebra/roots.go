@@ -1,6 +1,7 @@
 package algebra
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -24,22 +25,22 @@ var ErrNotSquareFree = errors.New("algebra: polynomial is not square-free")
 // imaginary part first, by real part; pairs whose real parts differ by less
 // than 2^-100 of the larger modulus are ordered by |imaginary part|.
 type RootSet struct {
-	coeffs []*big.Int // without the root 0
-	deriv  []*big.Int // of coeffs
-	roots  []*isolatedRoot
-	conj   []int
+	coeffs []*big.Int      // without the root 0
+	roots  []*isolatedRoot // the real ones, then the upper ones of pairs
 	real   int
 
 	mu    sync.Mutex
-	words []*wordPoly // of coeffs, as they were needed
+	deriv []*big.Int  // of coeffs, once it is needed
+	words []*wordPoly // of coeffs, likewise
 }
 
-// isolatedRoot is a root with its refinements. The lower root of a pair shares
-// that of the upper one and mirrors it.
+// isolatedRoot is a root with its refinements. The lower root of a pair mirrors
+// the upper one.
 type isolatedRoot struct {
-	busy     chan struct{} // a lock that can be waited for under a context
-	gap      magnitude     // the other roots are at least this far from chain[0].at
-	chain    []rootDisc    // each the longest Newton step from the one before
+	first    rootDisc
+	gap      magnitude     // the other roots are at least this far from first.at
+	busy     chan struct{} // a lock of what follows that can be waited for under a context
+	chain    []rootDisc    // each the longest Newton step from the one before, or from first
 	last     rootDisc      // the latest step to a precision that was asked for
 	lastBits int64         // that precision, or -1
 }
@@ -67,13 +68,13 @@ func (d rootDisc) conj() rootDisc { return rootDisc{d.at.Conj(), d.rad} }
 // NewRootSet isolates the roots of sum coeffs[i] s^i; leading zeros are
 // dropped. It returns [ErrNotSquareFree] if the polynomial has a multiple root
 // and an error if its degree is below 1. The cost is O(n^2) operations per
-// sweep of the simultaneous iteration, at a precision that is doubled until
-// the roots separate.
+// sweep of the simultaneous iteration, in float64 if that separates the roots,
+// else at the precision that each root asks for.
 //
-// Method: simultaneous iteration of Ehrlich and Aberth in scaled floating-point
-// numbers, then in ball arithmetic of growing precision; the discs of radius
-// n |W_i| around the approximations z_i, for the Weierstrass corrections
-// W_i = p(z_i) / (a_n prod_{j != i} (z_i - z_j)), contain all roots, and exactly
+// Method: simultaneous iteration of Ehrlich and Aberth in float64, then in
+// fixed-point numbers of more and more words, in the end in ball arithmetic;
+// the discs of radius n |W_i| around the approximations z_i, for the
+// Weierstrass corrections W_i = p(z_i) / (a_n prod_{j != i} (z_i - z_j)), contain all roots, and exactly
 // one each if they are disjoint. Sources: O. Aberth, Iteration methods for
 // finding all zeros of a polynomial simultaneously, Math. Comp. 27, 1973;
 // D. A. Bini, Numerical computation of polynomial zeros by means of Aberth's
@@ -87,92 +88,132 @@ func NewRootSet(ctx context.Context, coeffs []*big.Int) (*RootSet, error) {
 	if len(c) < 2 {
 		return nil, fmt.Errorf("algebra: roots of a polynomial of degree %d", len(c)-1)
 	}
-	for i := range c {
-		c[i] = new(big.Int).Set(c[i])
+	if len(c) == 2 {
+		return linearRootSet(c), nil
 	}
-	r := &RootSet{coeffs: c}
+	r := &RootSet{coeffs: cloneInts(make([]big.Int, len(c)), c)}
 	var reals, uppers []*isolatedRoot
 	if c[0].Sign() == 0 {
 		if c[1].Sign() == 0 {
 			return nil, ErrNotSquareFree
 		}
-		r.coeffs = c[1:]
+		r.coeffs = r.coeffs[1:]
 		reals = append(reals, newIsolatedRoot(rootDisc{}, infinite))
 	}
-	r.deriv = derivative(r.coeffs)
-	if len(r.coeffs) > 1 {
-		discs, gaps, err := isolateRoots(ctx, r.coeffs)
-		if err != nil {
-			return nil, err
-		}
-		for i, d := range discs {
-			if d.at.isReal() {
-				reals = append(reals, newIsolatedRoot(d, gaps[i]))
-			} else if d.at.Im.man.Sign() > 0 {
-				uppers = append(uppers, newIsolatedRoot(d, gaps[i]))
-			}
-		}
-	}
-	slices.SortFunc(reals, func(a, b *isolatedRoot) int { // disjoint intervals
-		return comparePoints(a.chain[0].at.Re, b.chain[0].at.Re)
-	})
-	r.real = len(reals)
-	for i, x := range reals {
-		r.roots = append(r.roots, x)
-		r.conj = append(r.conj, i)
-	}
-	uppers, err := r.sortPairs(ctx, uppers)
+	discs, gaps, err := isolateRoots(ctx, r.coeffs)
 	if err != nil {
 		return nil, err
 	}
-	for _, x := range uppers {
-		i := len(r.roots)
-		r.roots = append(r.roots, x, x)
-		r.conj = append(r.conj, i+1, i)
+	for i, d := range discs {
+		if d.at.isReal() {
+			reals = append(reals, newIsolatedRoot(d, gaps[i]))
+		} else if d.at.Im.man.Sign() > 0 {
+			uppers = append(uppers, newIsolatedRoot(d, gaps[i]))
+		}
 	}
-	return r, nil
+	slices.SortFunc(reals, func(a, b *isolatedRoot) int { // disjoint intervals
+		return comparePoints(a.first.at.Re, b.first.at.Re)
+	})
+	r.real = len(reals)
+	if err := r.sortPairs(ctx, uppers); err != nil {
+		return nil, err
+	}
+	r.roots = append(reals, uppers...)
+	return r, ctx.Err()
+}
+
+// linearRootSet is NewRootSet for degree 1, in one piece of memory.
+func linearRootSet(c []*big.Int) *RootSet {
+	s := new(struct {
+		RootSet
+		root  isolatedRoot
+		roots [1]*isolatedRoot
+		ints  [2]big.Int
+	})
+	s.root = isolatedRoot{gap: infinite, lastBits: -1}
+	if c[0].Sign() != 0 {
+		x := Ball{man: new(big.Int).Neg(c[0])}
+		switch d := c[1]; {
+		case d.CmpAbs(intOne) != 0:
+			x = x.Quo(Ball{man: d}, 96)
+		case d.Sign() < 0:
+			x.man.Neg(x.man)
+		}
+		s.root.first = rootDisc{ComplexBall{Re: x.point()}, x.rad}
+	}
+	s.roots[0] = &s.root
+	s.RootSet.roots = s.roots[:]
+	s.RootSet.coeffs = cloneInts(s.ints[:], c)
+	s.RootSet.real = 1
+	return &s.RootSet
+}
+
+// cloneInts returns copies of c, kept in mem.
+func cloneInts(mem []big.Int, c []*big.Int) []*big.Int {
+	total := 0
+	for _, x := range c {
+		total += len(x.Bits())
+	}
+	words := make([]big.Word, 0, total)
+	for i, x := range c {
+		n := len(words)
+		words = append(words, x.Bits()...)
+		mem[i].SetBits(words[n:len(words):len(words)])
+		if x.Sign() < 0 {
+			mem[i].Neg(&mem[i])
+		}
+		c[i] = &mem[i]
+	}
+	return c
 }
 
 func newIsolatedRoot(d rootDisc, gap magnitude) *isolatedRoot {
-	return &isolatedRoot{busy: make(chan struct{}, 1), gap: gap, chain: []rootDisc{d}, lastBits: -1}
+	return &isolatedRoot{first: d, gap: gap, lastBits: -1}
 }
 
 // comparePoints compares the midpoints of x and y.
 func comparePoints(x, y Ball) int {
+	sx, sy := x.mantissa().Sign(), y.mantissa().Sign()
+	if sx != sy || sx == 0 {
+		return cmp.Compare(sx, sy)
+	}
+	if c := x.midDown().cmp(y.midDown()); c != 0 {
+		return c * sx
+	}
 	sign, _ := x.point().Sub(y.point(), 32).Sign()
 	return sign
 }
 
 // sortPairs orders the upper roots of pairs as [RootSet] says. Only those that
 // their isolating discs do not order are refined.
-func (r *RootSet) sortPairs(ctx context.Context, uppers []*isolatedRoot) ([]*isolatedRoot, error) {
+func (r *RootSet) sortPairs(ctx context.Context, uppers []*isolatedRoot) error {
 	slices.SortStableFunc(uppers, func(a, b *isolatedRoot) int {
-		return comparePoints(a.chain[0].at.Re, b.chain[0].at.Re)
+		return comparePoints(a.first.at.Re, b.first.at.Re)
 	})
 	// Farther apart than this, discs settle the order of their roots, and so they
 	// do for all discs before and after.
 	var rad magnitude
 	size := int64(math.MinInt64)
 	for _, u := range uppers {
-		if d := u.chain[0]; rad.cmp(d.rad) < 0 {
+		if d := u.first; rad.cmp(d.rad) < 0 {
 			rad = d.rad
 		}
-		size = max(size, u.chain[0].at.absUp().top())
+		size = max(size, u.first.at.absUp().top())
 	}
 	far := rad.mulPow2(1).addUp(magPow2(size - 60))
 	for i := 0; i < len(uppers); {
 		j := i + 1
-		for j < len(uppers) && uppers[j].chain[0].at.Re.Sub(uppers[j-1].chain[0].at.Re, 64).absDown().cmp(far) <= 0 {
+		for j < len(uppers) && uppers[j].first.at.Re.Sub(uppers[j-1].first.at.Re, 64).absDown().cmp(far) <= 0 {
 			j++
 		}
 		if j > i+1 {
 			if err := r.sortClosePairs(ctx, uppers[i:j]); err != nil {
-				return nil, err
+				return err
 			}
 		}
 		i = j
 	}
-	return uppers, nil
+	return nil
 }
 
 // sortClosePairs is sortPairs with all roots refined to 128 bits.
@@ -209,13 +250,18 @@ func (r *RootSet) sortClosePairs(ctx context.Context, uppers []*isolatedRoot) er
 }
 
 // Len returns the number of roots, the degree of the polynomial.
-func (r *RootSet) Len() int { return len(r.roots) }
+func (r *RootSet) Len() int { return 2*len(r.roots) - r.real }
 
 // NumReal returns the number of real roots; they come first.
 func (r *RootSet) NumReal() int { return r.real }
 
 // Conjugate returns the index of the conjugate of root i: i itself if it is real.
-func (r *RootSet) Conjugate(i int) int { return r.conj[i] }
+func (r *RootSet) Conjugate(i int) int {
+	if i < r.real {
+		return i
+	}
+	return r.real + ((i - r.real) ^ 1)
+}
 
 // Enclose returns a rectangle around root i and no other root, with radii of
 // at most 2^-prec |root|. The imaginary part of a real root is exactly 0, the
@@ -224,243 +270,19 @@ func (r *RootSet) Conjugate(i int) int { return r.conj[i] }
 // Cost: one evaluation of the polynomial for each doubling of the precision,
 // O(n) products of about prec bits plus the bits the condition of the root takes.
 func (r *RootSet) Enclose(ctx context.Context, i int, prec uint) (ComplexBall, error) {
-	d, err := r.refine(ctx, r.roots[i], prec)
+	k := i
+	if i >= r.real {
+		k = r.real + (i-r.real)/2
+	}
+	d, err := r.refine(ctx, r.roots[k], prec)
 	if err != nil {
 		return ComplexBall{}, err
 	}
 	z := d.at.widen(d.rad)
-	if r.conj[i] < i {
+	if r.Conjugate(i) < i {
 		z = z.Conj()
 	}
 	return z, nil
-}
-
-// refine returns a disc around the root with the given number of proven bits.
-func (r *RootSet) refine(ctx context.Context, x *isolatedRoot, prec uint) (rootDisc, error) {
-	select {
-	case x.busy <- struct{}{}:
-		defer func() { <-x.busy }()
-	case <-ctx.Done():
-		return rootDisc{}, ctx.Err()
-	}
-	want := int64(prec)
-	for i := 0; ; i++ {
-		d := x.chain[i]
-		if d.bits() >= want {
-			return d, ctx.Err()
-		}
-		reach := r.reach(x, d)
-		if reach >= want+2 { // one step to the precision asked for, from the same disc always
-			if x.lastBits == want {
-				return x.last, ctx.Err()
-			}
-			d, err := r.newtonStep(ctx, x, d, want+2)
-			if err == nil {
-				x.last, x.lastBits = d, want
-			}
-			return d, err
-		}
-		if i+1 == len(x.chain) {
-			d, err := r.newtonStep(ctx, x, d, reach)
-			if err != nil {
-				return d, err
-			}
-			x.chain = append(x.chain, d)
-		}
-	}
-}
-
-// others returns a lower bound of the distance from d.at to the other roots.
-func (x *isolatedRoot) others(d rootDisc) magnitude {
-	return x.gap.subDown(d.rad).subDown(x.chain[0].rad)
-}
-
-// newtonError bounds the distance of the Newton iterate of z = d.at to the root
-// w. With e = z - w and S the sum of 1/(z-v) over the other roots v, p'/p at z
-// is 1/e + S, so the iterate is off by e - e/(1+eS) = e eS/(1+eS). The distance
-// of z to the other roots is at least D = others(d) >= (64n-2) d.rad, see
-// isolateRoots, so that |eS| <= (n-1) |e|/D < 1/2 and the error is below
-// 2 (n-1) d.rad^2 / D.
-func (r *RootSet) newtonError(x *isolatedRoot, d rootDisc) magnitude {
-	n := uint64(len(r.coeffs) - 1)
-	return magUp(2*(n-1), 0).mulUp(d.rad.mulUp(d.rad)).quoUp(x.others(d))
-}
-
-// reach returns the largest k for which the error of the Newton iterate is
-// proven to be below 2^-(k+1) |d.at|.
-func (r *RootSet) reach(x *isolatedRoot, d rootDisc) int64 {
-	q := r.newtonError(x, d).quoUp(d.at.absDown())
-	if q.isZero() { // degree 1: the iterate is the root
-		return math.MaxInt64
-	}
-	return -q.top() - 1
-}
-
-// newtonStep returns the disc around the Newton iterate of d.at of radius at
-// most t = 2^-goal |d.at|, for goal at most reach.
-func (r *RootSet) newtonStep(ctx context.Context, x *isolatedRoot, d rootDisc, goal int64) (rootDisc, error) {
-	if d, ok := r.newtonInWords(x, d, goal); ok {
-		return d, ctx.Err()
-	}
-	return r.newtonInBalls(ctx, x, d, goal)
-}
-
-// newtonInWords is newtonStep for a step that gains few enough bits for p/p' to
-// be found in float64, with p and p' from wordPoly; or ok is false.
-func (r *RootSet) newtonInWords(x *isolatedRoot, d rootDisc, goal int64) (to rootDisc, ok bool) {
-	z := d.at
-	t := z.absDown().mulPow2(-goal)
-	unit := t.top() - 6
-	abs := z.absUp()
-	exp, size := abs.top(), math.Ldexp(float64(abs.m), -32)
-	if t.isZero() || goal-d.bits() > 40 {
-		return to, false
-	}
-	left := r.newtonError(x, d).addUp(magUp(3, unit))
-	var mem [2 * maxWords]uint64
-	for w := 2; w <= maxWords; w++ {
-		low := exp + 1 - 64*int64(w)
-		if z.Re.exp < low && z.Re.man != nil || z.Im.exp < low && z.Im.man != nil {
-			continue
-		}
-		at := wordPoint{mem[:w], mem[maxWords : maxWords+w], exp}
-		setFixed(at.re, z.Re.mantissa(), z.Re.exp-low)
-		setFixed(at.im, z.Im.mantissa(), z.Im.exp-low)
-		p := r.wordPoly(newWordScale(exp, size, w))
-		v, dv := p.eval(at, true)
-		ev, ed := p.errors()
-		// With the values v + e and v' + e', of true size, the quotient is off by at most
-		// (|e| + |v e'/v'|) / (|v'| - |e'|), beside roundings to float64.
-		val, slope := floatAbs(v), floatAbs(dv)
-		den := slope*(1-0x1p-40) - ed
-		if den <= 0 {
-			continue
-		}
-		q := v / dv
-		off := (ev+val*ed/slope)/den*(1+0x1p-20) + floatAbs(q)*0x1p-46
-		rad := left.addUp(magFloatUp(off).mulPow2(exp))
-		if rad.cmp(t) > 0 {
-			continue
-		}
-		// Rounding costs q 1/2 and z 1 unit in each part, below 3 in all.
-		part := func(x Ball, q float64) Ball {
-			m := new(big.Int)
-			if s := x.exp - unit; s >= 0 {
-				m.Lsh(x.mantissa(), uint(s))
-			} else {
-				m.Rsh(x.mantissa(), uint(-s))
-			}
-			s := big.NewInt(int64(math.RoundToEven(math.Ldexp(q, int(exp-unit)))))
-			return ownBall(m.Sub(m, s), unit, magnitude{}, math.MaxUint)
-		}
-		to = rootDisc{ComplexBall{Re: part(z.Re, real(q))}, rad}
-		if !z.isReal() {
-			to.at.Im = part(z.Im, imag(q))
-		}
-		return to, true
-	}
-	return to, false
-}
-
-// newtonInBalls is newtonStep for any step.
-func (r *RootSet) newtonInBalls(ctx context.Context, x *isolatedRoot, d rootDisc, goal int64) (rootDisc, error) {
-	z := d.at
-	t := z.absDown().mulPow2(-goal)
-	unit := t.top() - 6
-	// p(z)/p'(z) is about as large as the old radius.
-	gain := max(goal-d.bits(), 0)
-	mid := uint(gain) + 16
-	// The rounding errors of p are about 2^-prec sum |c_i| |z|^i: start with what
-	// that asks for and correct by the bits found missing.
-	sum, abs := magnitude{}, z.absUp()
-	for i := len(r.coeffs) - 1; i >= 0; i-- {
-		sum = sum.mulUp(abs).addUp(intMagUp(r.coeffs[i], 0))
-	}
-	precD := uint(gain) + 64
-	var dp ComplexBall
-	for {
-		var err error
-		if dp, err = hornerBall(ctx, r.deriv, z, precD); err != nil {
-			return rootDisc{}, err
-		}
-		rel := dp.Re.rad.addUp(dp.Im.rad).quoUp(dp.absDown())
-		if rel.isInf() {
-			precD *= 2
-		} else if miss := rel.mulUp(d.rad).top() - t.top() + 6; !rel.isZero() && miss > 0 {
-			precD += uint(miss) + 4
-		} else {
-			break
-		}
-	}
-	prec := uint(max(sum.quoUp(dp.absDown()).top()-t.top()+16, 64))
-	for {
-		p, err := hornerBall(ctx, r.coeffs, z, prec)
-		if err != nil {
-			return rootDisc{}, err
-		}
-		q := p.Quo(dp, mid)
-		to := z.Sub(q, uint(goal+64))
-		rad := r.newtonError(x, d).addUp(to.Re.rad).addUp(to.Im.rad).addUp(magPow2(unit + 1))
-		if rad.cmp(t) <= 0 {
-			return rootDisc{ComplexBall{to.Re.cut(unit), to.Im.cut(unit)}, rad}, nil
-		}
-		prec += 16
-		mid += 16
-	}
-}
-
-// wordPoly returns the polynomial for points of the given scale.
-func (r *RootSet) wordPoly(s wordScale) *wordPoly {
-	r.mu.Lock()
-	defer r.mu.Unlock()
-	for _, p := range r.words {
-		if p.wordScale == s {
-			return p
-		}
-	}
-	p := newWordPoly(r.coeffs, s)
-	r.words = append(r.words, p)
-	return p
-}
-
-// cut returns the midpoint of x rounded down to a multiple of 2^unit.
-func (x Ball) cut(unit int64) Ball {
-	if x.man == nil || x.exp >= unit {
-		return x.point()
-	}
-	return ownBall(new(big.Int).Rsh(x.man, uint(unit-x.exp)), unit, magnitude{}, math.MaxUint)
-}
-
-func derivative(c []*big.Int) []*big.Int {
-	d := make([]*big.Int, len(c)-1)
-	for i := range d {
-		d[i] = new(big.Int).Mul(c[i+1], big.NewInt(int64(i+1)))
-	}
-	return d
-}
-
-// hornerBall returns sum c[i] z^i for an exact z. A rounding error e becomes
-// e |z| in the next step: bounding it so, and not by the rectangles of
-// ComplexBall.Mul, saves up to half a bit per step.
-func hornerBall(ctx context.Context, c []*big.Int, z ComplexBall, prec uint) (ComplexBall, error) {
-	var s ComplexBall
-	var e magnitude
-	abs := z.absUp()
-	for i := len(c) - 1; i >= 0; i-- {
-		if err := ctx.Err(); err != nil {
-			return s, err
-		}
-		s = s.Mul(z, prec)
-		if c[i].Sign() != 0 {
-			s.Re = s.Re.Add(Ball{man: c[i]}, prec)
-		}
-		e = e.mulUp(abs).addUp(s.Re.rad).addUp(s.Im.rad)
-		s = s.point()
-	}
-	if z.isReal() {
-		return ComplexBall{Re: s.Re.widen(e)}, nil
-	}
-	return ComplexBall{s.Re.widen(e), s.Im.widen(e)}, nil
 }
 
 // checkSquareFree returns ErrNotSquareFree if p and p' have a common factor,

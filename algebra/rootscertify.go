@@ -17,7 +17,7 @@ func isolateRoots(ctx context.Context, c []*big.Int) ([]rootDisc, []magnitude, e
 		if err := f.run(ctx, 30+len(c)); err != nil {
 			return nil, nil, err
 		}
-		if discs, gaps, ok := f.certify(); ok {
+		if discs, gaps, ok := f.certify(ctx); ok {
 			return discs, gaps, nil
 		}
 	}
@@ -40,11 +40,12 @@ func isolateInWords(ctx context.Context, r *wordRoots) ([]rootDisc, []magnitude,
 	if err != nil || !settled {
 		return nil, nil, err
 	}
-	discs, gaps, _ := r.certify()
+	discs, gaps, _ := r.certify(ctx)
 	return discs, gaps, nil
 }
 
 // isolateInBalls is isolateRoots for a square-free polynomial, without limits.
+// It returns the discs of roots below the axis as well.
 func isolateInBalls(ctx context.Context, c []*big.Int) ([]rootDisc, []magnitude, error) {
 	n := len(c) - 1
 	it := newAberth(c)
@@ -69,7 +70,7 @@ func isolateInBalls(ctx context.Context, c []*big.Int) ([]rootDisc, []magnitude,
 	}
 }
 
-// certifyRoots returns discs as isolateRoots does, or none if the
+// certifyRoots returns discs as isolateInBalls does, or none if the
 // approximations z do not prove them.
 //
 // All roots lie in the union of the discs D_i of radius n |W_i| around z_i, and
@@ -213,10 +214,11 @@ func matchConjugates(z []complex128, exactly func(i, j int, mirror bool) complex
 }
 
 // certifyPoints returns radii of discs around the reals and the upper points of
-// pairs that hold one root each, and gaps as isolateRoots does, or ok = false.
-// The points are 2^shift t, t in pts: first reals real ones, then pairs of exact
-// conjugates. |p| at a point is at most its value, the leading coefficient of p
-// is at least lead. The values of lower points are not used. A point may be off
+// pairs that hold one root each, and gaps as isolateRoots does, or ok = false,
+// also when ctx is done. The points are 2^shift t, t in pts: first reals real
+// ones, then pairs of exact conjugates. |p| at a point is at most its value, the
+// leading coefficient of p is at least lead in absolute value. The values of
+// lower points are not used. A point may be off
 // by 2^-98 of its modulus as long as its conjugate is off likewise, if exactly,
 // which may be nil, tells the distance of close ones.
 //
@@ -226,9 +228,10 @@ func matchConjugates(z []complex128, exactly func(i, j int, mirror bool) complex
 // lies there as well; a disc around an upper point does not meet the axis, where
 // it would meet its mirror image.
 //
-// The squares of distances are relatively off by less than 2^-33 if those are at least 2^-58
-// of the moduli, and their product by less than 1/200 for any n that can occur.
-func certifyPoints(pts []rootPoint, reals int, values []magnitude, lead magnitude, shift int64, exactly func(i, j int) complex128) (rads, gaps []magnitude, ok bool) {
+// The squares of distances, between 2^-900 and 2^404, are relatively off by less
+// than 2^-33 if the distances are at least 2^-58 of the moduli, and their
+// product by less than 1/200 for n < 2^24.
+func certifyPoints(ctx context.Context, pts []rootPoint, reals int, values []magnitude, lead magnitude, shift int64, exactly func(i, j int) complex128) (rads, gaps []magnitude, ok bool) {
 	n := len(pts)
 	rads = make([]magnitude, 0, reals+(n-reals)/2)
 	gaps = make([]magnitude, 0, cap(rads))
@@ -238,6 +241,9 @@ func certifyPoints(pts []rootPoint, reals int, values []magnitude, lead magnitud
 	for i := range pts {
 		if i > reals && (i-reals)%2 == 1 {
 			continue
+		}
+		if ctx.Err() != nil {
+			return nil, nil, false
 		}
 		p := &pts[i]
 		hx, hy, lx, ly := real(p.hi), imag(p.hi), real(p.lo), imag(p.lo)
@@ -261,12 +267,12 @@ func certifyPoints(pts []rootPoint, reals int, values []magnitude, lead magnitud
 			}
 			least = min(least, d)
 			prod *= d
-			if prod < 0x1p-500 || prod > 0x1p500 {
+			if prod < 0x1p-100 || prod > 0x1p100 {
 				f, k := math.Frexp(prod)
 				prod, e = f, e+k
 			}
 		}
-		if !(least > size*0x1p-1000 && least > 0x1p-900 && size > 0) {
+		if !(least > size*0x1p-1000 && least > 0x1p-900 && size < 0x1p402) {
 			return nil, nil, false
 		}
 		if e%2 != 0 {
@@ -284,10 +290,4 @@ func certifyPoints(pts []rootPoint, reals int, values []magnitude, lead magnitud
 		gaps = append(gaps, gap)
 	}
 	return rads, gaps, true
-}
-
-// magFloatDown returns f > 0 rounded down.
-func magFloatDown(f float64) magnitude {
-	frac, k := math.Frexp(f)
-	return magDown(uint64(frac*0x1p53), int64(k)-53)
 }

@@ -88,12 +88,12 @@ func (f *floatRoots) run(ctx context.Context, sweeps int) error {
 	n := len(f.z)
 	done := make([]bool, n)
 	for left := n; left > 0 && sweeps > 0; sweeps-- {
-		if err := ctx.Err(); err != nil {
-			return err
-		}
 		for i, z := range f.z {
 			if done[i] {
 				continue
+			}
+			if err := ctx.Err(); err != nil {
+				return err
 			}
 			p, dp, bound := f.eval(z)
 			if max(math.Abs(real(p)), math.Abs(imag(p))) <= bound*0x1p-54 {
@@ -120,7 +120,7 @@ func (f *floatRoots) run(ctx context.Context, sweeps int) error {
 	return nil
 }
 
-// floatAbs returns |z| for a z whose square does not overflow.
+// floatAbs returns |z| for a z whose square does not overflow or underflow.
 func floatAbs(z complex128) float64 { return math.Sqrt(real(z)*real(z) + imag(z)*imag(z)) }
 
 // reciprocalSum returns the sum of 1/(z_i - z_j) over the z_j other than z_i.
@@ -139,8 +139,8 @@ func reciprocalSum(z []complex128, i int) complex128 {
 }
 
 // certify returns what isolateRoots does, or ok = false if float64 does not
-// prove it.
-func (f *floatRoots) certify() (discs []rootDisc, gaps []magnitude, ok bool) {
+// prove it or ctx is done.
+func (f *floatRoots) certify(ctx context.Context) (discs []rootDisc, gaps []magnitude, ok bool) {
 	order, reals, ok := matchConjugates(f.z, nil)
 	if !ok {
 		return nil, nil, false
@@ -172,16 +172,19 @@ func (f *floatRoots) certify() (discs []rootDisc, gaps []magnitude, ok bool) {
 		if k > reals && (k-reals)%2 == 1 {
 			continue
 		}
+		if ctx.Err() != nil {
+			return nil, nil, false
+		}
 		p, _, bound := f.eval(pts[k].hi)
 		// The bound was itself rounded, at most 4n+8 times, and what underflows is
 		// below 2^-1074 times n numbers of at most 2^floatCoeffRange.
-		v := (floatAbs(p) + bound*0x1p-53) * (1 + 0x1p-20)
+		v := (cmplx.Abs(p) + bound*0x1p-53) * (1 + 0x1p-20) // p may be far below bound
 		if !(bound > 0x1p-500 && v < 0x1p500) {
 			return nil, nil, false
 		}
 		values[k] = magFloatUp(v).mulPow2(f.scale)
 	}
-	rads, gaps, ok := certifyPoints(pts, reals, values, intMagDown(f.big[len(f.big)-1], 0), f.shift, nil)
+	rads, gaps, ok := certifyPoints(ctx, pts, reals, values, intMagDown(f.big[len(f.big)-1], 0), f.shift, nil)
 	if !ok {
 		return nil, nil, false
 	}
@@ -204,13 +207,4 @@ func ballFromFloat64(f float64, e int64) Ball {
 	}
 	frac, k := math.Frexp(f)
 	return Ball{man: big.NewInt(int64(frac * 0x1p53)), exp: e + int64(k) - 53}
-}
-
-// magFloatUp returns f > 0 rounded up.
-func magFloatUp(f float64) magnitude {
-	if f == 0 {
-		return magnitude{}
-	}
-	frac, k := math.Frexp(f)
-	return magUp(uint64(frac*0x1p53), int64(k)-53)
 }

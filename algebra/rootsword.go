@@ -89,12 +89,12 @@ func (r *wordRoots) step(i int) (w complex128, good, ok bool) {
 		t := r.poly(i)
 		v, d := t.eval(p.top(t.w), true)
 		ev, ed := t.errors()
-		abs, slope := floatAbs(v), floatAbs(d)
+		abs, slope := cmplx.Abs(v), cmplx.Abs(d) // squares would underflow
 		if slope > 64*ed && (abs+ev)*near < slope {
 			return 0, true, true
 		}
 		d -= v * s
-		if abs > 64*ev && floatAbs(d) > 64*(ed+ev*floatAbs(s)) {
+		if abs > 64*ev && cmplx.Abs(d) > 64*(ed+ev*cmplx.Abs(s)) {
 			return complex(unit, 0) * v / d, false, true
 		}
 		if r.words[i] == maxWords {
@@ -180,15 +180,6 @@ func (p *wordPoint) normalize(size float64, shift int64) {
 	p.exp += s
 }
 
-// floatTop returns e with 2^(e-1) <= f < 2^e, a very small number for 0.
-func floatTop(f float64) int {
-	if f == 0 {
-		return -1 << 20
-	}
-	_, e := math.Frexp(f)
-	return e
-}
-
 // reciprocalSum is that of float64, for points that may be close.
 func (r *wordRoots) reciprocalSum(i int) complex128 {
 	p := r.z[i]
@@ -248,11 +239,12 @@ func (r *wordRoots) exactly(i, j int, mirror bool) complex128 {
 }
 
 // certify is that of floatRoots.
-func (r *wordRoots) certify() (discs []rootDisc, gaps []magnitude, ok bool) {
+func (r *wordRoots) certify(ctx context.Context) (discs []rootDisc, gaps []magnitude, ok bool) {
 	n := len(r.z)
 	his := make([]complex128, n)
-	for i, z := range r.z {
-		his[i] = z.hi
+	for i, z := range r.z { // the sign of an imaginary part may be far down
+		p := &r.pts[i]
+		his[i] = complex(real(z.hi), math.Ldexp(fixedFloat(p.im), int(p.exp-r.shift)+1))
 	}
 	order, reals, ok := matchConjugates(his, r.exactly)
 	if !ok {
@@ -271,13 +263,16 @@ func (r *wordRoots) certify() (discs []rootDisc, gaps []magnitude, ok bool) {
 			clear(r.pts[i].im)
 		}
 		pts[k] = z
+		if ctx.Err() != nil {
+			return nil, nil, false
+		}
 		values[k] = r.value(i)
 		p := &r.pts[i]
 		rest := maxWords - r.words[i]
 		clear(p.re[:rest])
 		clear(p.im[:rest])
 	}
-	rads, gaps, ok := certifyPoints(pts, reals, values, intMagDown(r.big[n], 0), r.shift, func(k, l int) complex128 {
+	rads, gaps, ok := certifyPoints(ctx, pts, reals, values, intMagDown(r.big[n], 0), r.shift, func(k, l int) complex128 {
 		mirror := l > reals && (l-reals)%2 == 1
 		if mirror {
 			l--
@@ -308,8 +303,8 @@ func (r *wordRoots) value(i int) magnitude {
 		t := r.poly(i)
 		v, d := t.eval(p.top(t.w), true)
 		ev, _ := t.errors()
-		if floatAbs(d) > ev*0x1p68*float64(len(r.z)) || r.words[i] == maxWords {
-			return magFloatUp((floatAbs(v) + ev) * (1 + 0x1p-20)).mulPow2(t.scale)
+		if cmplx.Abs(d) > ev*0x1p68*float64(len(r.z)) || r.words[i] == maxWords {
+			return magFloatUp((cmplx.Abs(v) + ev) * (1 + 0x1p-20)).mulPow2(t.scale)
 		}
 	}
 }
