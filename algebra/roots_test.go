@@ -571,7 +571,7 @@ func TestRootsCancel(t *testing.T) {
 	if _, err = r.Enclose(soon, 0, 5_000_000); !errors.Is(err, context.DeadlineExceeded) {
 		t.Errorf("Enclose: %v", err)
 	}
-	if d := time.Since(start); d > 500*time.Millisecond {
+	if d := time.Since(start); d > 2*time.Second { // 100 ms, with room for a busy machine and the race detector
 		t.Errorf("cancelled after %v", d)
 	}
 	if z, err := r.Enclose(context.Background(), 0, 200); err != nil || z.Re.RelPrec() < 199 {

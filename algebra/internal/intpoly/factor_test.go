@@ -257,7 +257,7 @@ func TestFactorHonoursCancellation(t *testing.T) {
 		cancel()
 		if err != nil {
 			require.ErrorIs(t, err, context.DeadlineExceeded)
-			require.Less(t, took, wait+500*time.Millisecond) // 100 ms, with room for a busy machine
+			require.Less(t, took, wait+2*time.Second) // 100 ms, with room for a busy machine and the race detector
 		}
 	}
 }
