@@ -84,8 +84,13 @@ func (e Echelon[E]) Kernel() [][]E {
 	return basis
 }
 
-// Kernel returns a basis of {x : a x = 0} in the form of [Echelon.Kernel].
+// Kernel returns a basis of {x : a x = 0} in the form of [Echelon.Kernel]; over
+// Q modulo primes.
 func Kernel[E any](ctx context.Context, f Field[E], a Matrix[E]) ([][]E, error) {
+	if s, ok := any(f).(intMatrices); ok {
+		v, err := s.kernel(ctx, any(a).(Matrix[Rat]))
+		return any(v).([][]E), err
+	}
 	e, err := Reduce(ctx, f, a)
 	if err != nil {
 		return nil, err
@@ -119,6 +124,7 @@ type intMatrices interface {
 	minPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error)
 	solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error)
 	inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error)
+	kernel(ctx context.Context, a Matrix[Rat]) ([][]Rat, error)
 }
 
 // Inverse returns the inverse of a square matrix, or ErrSingular.

@@ -98,6 +98,31 @@ func (Rationals) inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error
 	return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
 }
 
+func (Rationals) kernel(ctx context.Context, a Matrix[Rat]) ([][]Rat, error) {
+	if a.m == 0 { // no equations: every unit vector
+		return Echelon[Rat]{Rows: Matrix[Rat]{ring: Q, n: a.n}}.Kernel(), nil
+	}
+	rows, _ := a.intRows()
+	vectors, err := intmat.Kernel(ctx, rows)
+	if err != nil {
+		return nil, err
+	}
+	var out [][]Rat
+	for _, v := range vectors {
+		// The free column is the last one that is not 0, and gets the entry 1.
+		free := len(v) - 1
+		for v[free].Sign() == 0 {
+			free--
+		}
+		x := make([]Rat, len(v))
+		for i := range x {
+			x[i] = RatFromFrac(v[i], v[free])
+		}
+		out = append(out, x)
+	}
+	return out, nil
+}
+
 // overCommon returns the m x n matrix num*p/(den*q).
 func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matrix[Rat], error) {
 	if errors.Is(err, intmat.ErrSingular) {
