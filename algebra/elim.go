@@ -40,6 +40,9 @@ func Reduce[E any](ctx context.Context, f Field[E], a Matrix[E]) (Echelon[E], er
 			if i == rank || f.IsZero(rows[i][col]) {
 				continue
 			}
+			if err := ctx.Err(); err != nil {
+				return Echelon[E]{}, err
+			}
 			x := rows[i][col]
 			for j := col; j < a.n; j++ {
 				if !f.IsZero(rows[rank][j]) {

@@ -34,6 +34,9 @@ func NewBundle(fs ...Function) *Bundle {
 
 // At returns the values of all functions at t as [Function.At] does.
 func (b *Bundle) At(ctx context.Context, t *big.Rat, digits int) ([]string, error) {
+	if t == nil {
+		return nil, errNoTime
+	}
 	for _, f := range b.fs {
 		if err := f.noFree(); err != nil {
 			return nil, err
@@ -68,6 +71,9 @@ func (c *expansions) get(ctx context.Context, images []Image[algebra.Rat], prec 
 	})
 }
 
+// errNoTime is the error of a time that is nil.
+var errNoTime = Errorf(Syntax, Pos{}, "there is no time to evaluate at")
+
 // mostPrecision is the working precision in bits where the search for digits
 // gives up, and mostDigits the digits it has room for.
 const (
@@ -91,7 +97,7 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 	least := (uint(digits)*10/3 + 127) &^ 63
 	for prec := least; ; prec *= 2 {
 		if prec > mostPrecision {
-			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", tau, mostPrecision)
+			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", Quote(tau.String()), mostPrecision)
 		}
 		if prec > least || tau.IsZero() {
 			// Only a rational value can defy every precision: 0, or a number midway
@@ -119,6 +125,9 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 			if s, ok := b.Decimal(digits); ok {
 				out[i] = s
 			}
+		}
+		if !slices.Contains(out, "") {
+			return out, nil
 		}
 	}
 }

@@ -178,6 +178,9 @@ func (f Function) With(values map[string]*big.Rat) Function {
 // certain; values that are rational are recognised as such, so that it ends.
 // Up to 30,000 digits are given; fewer than one counts as one.
 func (f Function) At(ctx context.Context, t *big.Rat, digits int) (string, error) {
+	if t == nil {
+		return "", errNoTime
+	}
 	if err := f.noFree(); err != nil {
 		return "", err
 	}
@@ -191,6 +194,9 @@ func (f Function) At(ctx context.Context, t *big.Rat, digits int) (string, error
 // Enclose returns a ball around f(t), computed with the working precision prec
 // in bits.
 func (f Function) Enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.Ball, error) {
+	if t == nil {
+		return algebra.Ball{}, errNoTime
+	}
 	if err := f.noFree(); err != nil {
 		return algebra.Ball{}, err
 	}

@@ -331,30 +331,43 @@ func (f Image[E]) TimesExp(a E) Image[E] {
 	return Image[E]{k: f.k, num: f.num.Translate(minus), den: den}
 }
 
-// Split returns the parts of f by the factors of its denominator: keep selects
-// the primes whose part is returned first, rest is the remainder, f = part +
-// rest.
-func (f Image[E]) Split(keep func(p algebra.Poly[E]) bool) (part, rest Image[E]) {
-	var in, out []primePower[E]
-	for _, pp := range f.den {
+// Split returns the parts of the images by the factors of their denominators:
+// those that keep selects make up the parts, the others the rests, image = part
+// + rest.
+func Split[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E], keep func(p algebra.Poly[E]) bool) (parts, rests []Image[E], err error) {
+	all := Denominator[E]{k: k}
+	for _, f := range images {
+		all = all.Join(f.Denominator())
+	}
+	in, out := Denominator[E]{k: k}, Denominator[E]{k: k}
+	for _, pp := range all.pp {
 		if keep(pp.p) {
-			in = append(in, pp)
+			in.pp = append(in.pp, pp)
 		} else {
-			out = append(out, pp)
+			out.pp = append(out.pp, pp)
 		}
 	}
-	switch {
-	case len(out) == 0:
-		return f, ZeroImage(f.k)
-	case len(in) == 0:
-		return ZeroImage(f.k), f
+	parts, rests = make([]Image[E], len(images)), make([]Image[E], len(images))
+	if len(in.pp) == 0 || len(out.pp) == 0 {
+		for i, f := range images {
+			parts[i], rests[i] = ZeroImage(k), f
+			if len(out.pp) == 0 {
+				parts[i], rests[i] = f, ZeroImage(k)
+			}
+		}
+		return parts, rests, nil
 	}
-	// N/(P Q) = A/P + B/Q with A = N Q^-1 mod P.
-	p, q := Denominator[E]{f.k, in}, Denominator[E]{f.k, out}
-	pp, qq := p.Poly(), q.Poly()
-	_, _, v := algebra.ExtendedGCD[E](f.k, pp, qq)
-	a := f.num.Rem(f.k, pp).Mul(v).Rem(f.k, pp)
-	part = p.Image(a)
-	b, _ := f.num.Sub(a.Mul(qq)).DivExact(f.k, pp)
-	return part, q.Image(b)
+	// N/(P Q) = A/P + B/Q with A = N/Q mod P.
+	p, q := in.Poly(), out.Poly()
+	_, _, inv := algebra.ExtendedGCD[E](k, p, q.Rem(k, p))
+	for i, f := range images {
+		if err := ctx.Err(); err != nil {
+			return nil, nil, err
+		}
+		n := all.Numerator(f)
+		a := n.Rem(k, p).Mul(inv).Rem(k, p)
+		b, _ := n.Sub(a.Mul(q)).DivExact(k, p)
+		parts[i], rests[i] = in.Image(a), out.Image(b)
+	}
+	return parts, rests, nil
 }

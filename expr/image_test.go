@@ -1,6 +1,7 @@
 package expr_test
 
 import (
+	"context"
 	"testing"
 
 	"github.com/stretchr/testify/assert"
@@ -91,7 +92,11 @@ func TestImageSplit(t *testing.T) {
 	for range 100 {
 		f := g.image(t)
 		keep := func(p algebra.Poly[algebra.Rat]) bool { return p.Degree() == 1 }
-		part, rest := f.Split(keep)
+		parts, rests, err := expr.Split(context.Background(), algebra.Q, []expr.Image[algebra.Rat]{f}, keep)
+		if err != nil {
+			t.Fatal(err)
+		}
+		part, rest := parts[0], rests[0]
 		checkCanonical(t, part)
 		checkCanonical(t, rest)
 		require.True(t, part.Add(rest).Equal(f))

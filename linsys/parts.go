@@ -15,9 +15,9 @@ import (
 // eigenvectors of L to zeros in as many components.
 func (sv *solver[E]) particular(ctx context.Context, y []expr.Image[E]) ([]expr.Image[E], error) {
 	k := sv.k
-	out := make([]expr.Image[E], len(y))
-	for i := range y {
-		out[i], _ = y[i].Split(func(p algebra.Poly[E]) bool { return sv.inputs.Exponent(p) > 0 })
+	out, _, err := expr.Split(ctx, k, y, func(p algebra.Poly[E]) bool { return sv.inputs.Exponent(p) > 0 })
+	if err != nil {
+		return nil, wrapCancel(err)
 	}
 	excess := zeroVec[E](k, len(y))
 	resonant := false

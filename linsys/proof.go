@@ -159,7 +159,10 @@ func prove[E any](ctx context.Context, k algebra.Scalars[E], eqs, conditions []l
 	for _, eq := range eqs {
 		v, err := verdict(func(s substitution[E], h bool) (string, bool) {
 			r := s.residual(eq, h)
-			return "(" + r.String() + ")/(" + s.d.String() + ")", r.IsZero()
+			if r.IsZero() {
+				return "0", true
+			}
+			return "(" + r.String() + ")/(" + s.d.String() + ")", false
 		})
 		if err != nil {
 			return p, err

@@ -216,7 +216,10 @@ func (r *Response) With(values map[string]*big.Rat) (*Response, error) {
 	for _, c := range r.constants {
 		known[c] = true
 	}
-	for name := range values {
+	for name, v := range values {
+		if v == nil {
+			return nil, expr.Errorf(expr.Syntax, expr.Pos{}, "%s has the value nil", expr.Quote(name))
+		}
 		if !known[name] {
 			return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "%s is not a free constant of the response", expr.Quote(name))
 		}

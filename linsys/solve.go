@@ -186,9 +186,7 @@ func (sv *solver[E]) basis(ctx context.Context) ([][]E, error) {
 	dim := len(sv.states)
 	var out [][]E
 	for _, f := range sv.properModes().Factors() {
-		mult := sv.modes.Exponent(f.P)
-		m := sv.a.EvalPoly(f.P).Pow(mult).Above(sv.constraintMatrix())
-		vectors, err := algebra.Kernel[E](ctx, k, m)
+		vectors, err := sv.generalised(ctx, f.P)
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
@@ -199,28 +197,74 @@ func (sv *solver[E]) basis(ctx context.Context) ([][]E, error) {
 		}
 		h := k.Mul(f.P.Coef(d-1), degree)
 		shifted := sv.a.Sub(algebra.Identity[E](k, dim).Scale(h))
-		steps := d * mult
-		var entries []E
-		for _, v := range vectors {
-			powers := make([][]E, steps)
-			powers[0] = v
-			for j := 1; j < steps; j++ {
-				powers[j] = shifted.MulVec(powers[j-1])
-			}
-			for i := range dim {
-				for j := range steps {
-					entries = append(entries, powers[j][i])
+		steps := d * sv.modes.Exponent(f.P)
+		// duals[v][i*steps+j] is component i of shifted^j v.
+		duals := make([][]E, len(vectors))
+		for r, v := range vectors {
+			duals[r] = make([]E, dim*steps)
+			for j := range steps {
+				if err := ctx.Err(); err != nil {
+					return nil, wrapCancel(err)
 				}
+				for i := range dim {
+					duals[r][i*steps+j] = v[i]
+				}
+				v = shifted.MulVec(v)
 			}
-			entries = append(entries, v...)
 		}
-		ech, err := algebra.Reduce[E](ctx, k, algebra.NewMatrix[E](k, len(vectors), dim*(steps+1), entries...))
+		dual, err := sv.dualBasis(ctx, vectors, duals)
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
-		for i := range vectors {
-			out = append(out, ech.Rows.Row(i)[dim*steps:])
+		out = append(out, dual...)
+	}
+	return out, nil
+}
+
+// generalised returns a basis of the solutions' initial values in the kernel of
+// p(A)^n, for n large enough.
+func (sv *solver[E]) generalised(ctx context.Context, p algebra.Poly[E]) ([][]E, error) {
+	dim := len(sv.states)
+	mult := sv.modes.Exponent(p)
+	if mult*p.Degree() == dim && len(sv.constraints) == 0 { // it is everything
+		out := make([][]E, dim)
+		for i := range out {
+			out[i] = zeroVec[E](sv.k, dim)
+			out[i][i] = sv.k.One()
 		}
+		return out, nil
+	}
+	m := sv.a.EvalPoly(p).Pow(mult).Above(sv.constraintMatrix())
+	return algebra.Kernel[E](ctx, sv.k, m)
+}
+
+// dualBasis returns the combinations of the vectors that are dual to the first
+// independent columns of duals, which holds a row for each of them.
+func (sv *solver[E]) dualBasis(ctx context.Context, vectors, duals [][]E) ([][]E, error) {
+	k, r := sv.k, len(vectors)
+	if r == 0 {
+		return nil, nil
+	}
+	build := func(rows [][]E, columns int) algebra.Matrix[E] {
+		return algebra.MatrixFromFunc[E](k, r, columns, func(i, j int) E { return rows[i][j] })
+	}
+	// Most often the first r columns, the first state and its derivatives, do.
+	all := build(vectors, len(vectors[0]))
+	x, err := algebra.Solve[E](ctx, k, build(duals, r), all)
+	if errors.Is(err, algebra.ErrSingular) {
+		var ech algebra.Echelon[E]
+		if ech, err = algebra.Reduce[E](ctx, k, build(duals, len(duals[0]))); err != nil {
+			return nil, err
+		}
+		chosen := algebra.MatrixFromFunc[E](k, r, r, func(i, j int) E { return duals[i][ech.Pivots[j]] })
+		x, err = algebra.Solve[E](ctx, k, chosen, all)
+	}
+	if err != nil {
+		return nil, err
+	}
+	out := make([][]E, r)
+	for i := range out {
+		out[i] = x.Row(i)
 	}
 	return out, nil
 }
