@@ -51,6 +51,12 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 		panic(fmt.Sprintf("expr: Go source of %d functions with %d names", len(fs), len(names)))
 	}
 	g := goWriter{opt: opt, names: names, constants: constants, time: "t"}
+	for _, f := range fs {
+		for _, t := range f.free {
+			g.images = append(g.images, t.Image)
+		}
+		g.images = append(g.images, f.base)
+	}
 	if len(fs) > 0 && !fs[0].origin.IsZero() {
 		g.time = "tau"
 		if err := finite([]float64{fs[0].origin.Float64()}); err != nil {
@@ -77,6 +83,10 @@ type goWriter struct {
 	constants []string
 	time      string // t, or tau for a local time
 	rates     []goRate
+	images    []Image[algebra.Rat] // of all functions: the free constants', then the base
+	cache     expansions
+	done      int       // images written
+	sizes     []float64 // of each function without free constants: the sum of the coefficients' sizes
 }
 
 // goRate is a pair of conjugate rates, or a real one.
@@ -101,7 +111,7 @@ func (g *goWriter) rate(p algebra.Poly[algebra.Rat], root int, re, im float64) i
 func (g *goWriter) function(ctx context.Context, f Function) (string, error) {
 	var sum goSum
 	for _, t := range f.free {
-		s, err := g.image(ctx, t.Image)
+		s, _, err := g.image(ctx)
 		if err != nil {
 			return "", err
 		}
@@ -111,10 +121,11 @@ func (g *goWriter) function(ctx context.Context, f Function) (string, error) {
 		}
 		sum.add(false, fmt.Sprintf("c[%d]*(%s)", i, s))
 	}
-	s, err := g.image(ctx, f.base)
+	s, size, err := g.image(ctx)
 	if err != nil {
 		return "", err
 	}
+	g.sizes = append(g.sizes, size)
 	if s != "0" {
 		sum.add(false, s)
 	}
@@ -150,14 +161,22 @@ type goTerm struct {
 	cos, sin []float64
 }
 
-// image returns the expression of an image, entering its rates.
-func (g *goWriter) image(ctx context.Context, f Image[algebra.Rat]) (string, error) {
-	terms, err := g.terms(ctx, f)
+// image returns the expression of the next image, entering its rates, and the
+// sum of the sizes of its coefficients.
+func (g *goWriter) image(ctx context.Context) (string, float64, error) {
+	terms, err := g.terms(ctx, g.done)
+	g.done++
 	if err != nil {
-		return "", err
+		return "", 0, err
 	}
 	var sum goSum
+	size := 0.0
 	for _, t := range terms {
+		for _, c := range [][]float64{t.cos, t.sin} {
+			for _, x := range c {
+				size += math.Abs(x)
+			}
+		}
 		r := g.rates[t.rate]
 		exp := ""
 		if r.re != 0 {
@@ -178,7 +197,7 @@ func (g *goWriter) image(ctx context.Context, f Image[algebra.Rat]) (string, err
 		g.addProduct(&inner, t.sin, sin)
 		sum.add(false, exp+"*("+inner.String()+")")
 	}
-	return sum.String(), nil
+	return sum.String(), size, nil
 }
 
 func allZero(c []float64) bool {
@@ -232,16 +251,17 @@ func (g *goWriter) addProduct(sum *goSum, c []float64, factors ...string) {
 
 func goFloat(x float64) string { return strconv.FormatFloat(x, 'g', -1, 64) }
 
-// terms returns the terms of f with correctly rounded constants, in the order
+// terms returns the terms of an image with correctly rounded constants, in the order
 // of the written form.
-func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, error) {
+func (g *goWriter) terms(ctx context.Context, image int) ([]goTerm, error) {
+	f := g.images[image]
 	order := make([]int, len(f.den))
 	for i := range order {
 		order[i] = i
 	}
 	sort.SliceStable(order, func(a, b int) bool { return before(f.den[order[a]].p, f.den[order[b]].p) })
 	for prec := uint(128); prec <= mostPrecision; prec *= 2 {
-		x, err := expand(ctx, f.k, []Image[algebra.Rat]{f}, prec)
+		x, err := g.cache.get(ctx, g.images, prec)
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
@@ -263,7 +283,7 @@ func (g *goWriter) terms(ctx context.Context, f Image[algebra.Rat]) ([]goTerm, e
 				if roots.Conjugate(r) < r {
 					continue
 				}
-				s := x.terms[0][next]
+				s := x.terms[image][next]
 				next++
 				rate := x.rates[s.rate]
 				re, okRe := roundBall(rate.at.Re, 0, prec)
@@ -379,6 +399,7 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 			line("//\t%s", l)
 		}
 	}
+	g.warn(fs, fields, line)
 	arg := ""
 	if n := len(g.constants); n > 0 {
 		line("//\n// c holds the constants %s.", inert(strings.Join(g.constants, ", ")))
@@ -424,6 +445,24 @@ func (g *goWriter) factors(all string) []string {
 		}
 	}
 	return lines
+}
+
+// warn says where the terms of a function are much larger than the values that
+// the functions start from, so that their rounding errors may be as well.
+func (g *goWriter) warn(fs []Function, fields []string, line func(string, ...any)) {
+	start := 0.0
+	for _, f := range fs {
+		start = max(start, math.Abs(f.base.Initial().Float64()))
+	}
+	if start == 0 {
+		start = 1
+	}
+	for i, size := range g.sizes {
+		if size > 1e6*start {
+			line("//\n// Cancellation: the terms of %s add up to %.1e in size; where they cancel, its", fields[i], size)
+			line("// absolute error is up to about %.0e.", size*0x1p-51)
+		}
+	}
 }
 
 // times returns x times the time.

@@ -213,8 +213,8 @@ func (p *parser) sign() int {
 	return 1
 }
 
-// term = factor { ("*" | "/") factor | factor }, the last form after a number
-// or a parenthesis only. A fraction of two numbers counts as a number.
+// term = factor { ("*" | "/") factor | factor }, the last form after a number,
+// a parenthesis or a function only. A fraction of two numbers counts as a number.
 func (p *parser) term() Node {
 	at := p.tok.at
 	first, juxt := p.factor()
@@ -355,12 +355,23 @@ func (p *parser) primary() (n Node, juxt bool) {
 		p.closeParen(t.at)
 		return n, true
 	case t.kind == tokName:
-		return p.name(), false
+		n := p.name()
+		return n, isCall(n)
 	case p.isOp("=") || p.isOp(")"):
 		p.fail(Syntax, t.at, "found %s where an expression should stand", Quote(t.text))
 	}
 	p.unexpected("an expression")
 	return nil, false
+}
+
+// isCall tells whether n ends with the parenthesis of a function, after which a
+// product sign may be left out.
+func isCall(n Node) bool {
+	if pow, ok := n.(Power); ok {
+		n = pow.Base
+	}
+	_, ok := n.(Call)
+	return ok
 }
 
 func (p *parser) closeParen(open Pos) {

@@ -13,7 +13,7 @@ import (
 // roots where a factor of the denominator has degree 3 or more. Slowly decaying
 // terms come first.
 func (f Function) Node() Node {
-	w := presenter{time: timeNode(f.variable, f.origin), root: "z"}
+	w := presenter{time: timeNode(f.variable, f.origin), variable: Sym(f.variable), origin: f.origin, root: "z"}
 	if f.variable == "z" {
 		w.root = "r"
 	}
@@ -43,8 +43,10 @@ func timeNode(variable string, origin algebra.Rat) Node {
 
 // presenter turns the local parts of images into trees.
 type presenter struct {
-	time Node   // t, or t - t0
-	root string // the name of roots
+	time     Node // t, or t - t0
+	variable Node
+	origin   algebra.Rat
+	root     string // the name of roots
 }
 
 func (w presenter) image(f Image[algebra.Rat]) Node {
@@ -118,8 +120,8 @@ func (w presenter) linear(part localPart[algebra.Rat]) Node {
 	}
 	p := algebra.NewPoly[algebra.Rat](algebra.Q, coefs...)
 	rate := part.p.Coef(0).Neg()
-	if rate.IsZero() {
-		return PolyNode(p, w.time)
+	if rate.IsZero() { // in t itself
+		return PolyNode(p.Translate(w.origin.Neg()), w.variable)
 	}
 	return w.scaled(p, w.exp(Num(rate)))
 }
@@ -227,12 +229,24 @@ func (w presenter) quadratic(part localPart[algebra.Rat]) Node {
 	case h.IsZero():
 		return Add(w.scaled(a, cos), w.scaled(b, root, sin))
 	}
+	// A common content in front, unless it makes the parts longer.
 	content := contentOfRats(append(a.Coefs(), b.Coefs()...)...)
 	if minus, _ := writtenSign(a); minus {
 		content = content.Neg()
 	}
 	inv := content.Inv()
-	return Mul(Num(content), exp, Add(w.scaled(a.Scale(inv), cos), w.scaled(b.Scale(inv), root, sin)))
+	return shorter(
+		Mul(Num(content), exp, Add(w.scaled(a.Scale(inv), cos), w.scaled(b.Scale(inv), root, sin))),
+		Mul(exp, Add(w.scaled(a, cos), w.scaled(b, root, sin))),
+	)
+}
+
+// shorter returns the tree with the shorter text, the first if both are equal.
+func shorter(a, b Node) Node {
+	if len(b.String()) < len(a.String()) {
+		return b
+	}
+	return a
 }
 
 // writtenSign tells whether p, not zero, is written with a minus sign in front,
@@ -294,19 +308,12 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
 		num, den := f.residueRatio(i)
-		g := algebra.GCD[algebra.Rat](algebra.Q, num, den)
-		num, _ = num.DivExact(algebra.Q, g)
-		den, _ = den.DivExact(algebra.Q, g)
-		cn, n := contentOf(num, z)
-		cd, d := contentOf(den, z)
-		c := cn.Quo(cd)
-		minus := c.Sign() < 0
-		c = c.Abs()
-		top := Mul(Num(algebra.RatFromBigInt(c.Num())), n, exp)
-		bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), d)
-		var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
-		if minus {
-			sum = Neg{X: sum}
+		sum := w.ratio(poly, num, den, exp)
+		if len(f.den) > 1 && pp.p.Degree() <= mostDegreeAlone {
+			// The part of this factor alone, which does not know of the others.
+			dp := pp.p.Derivative()
+			num = f.local(i).c[0].Mul(dp).Rem(algebra.Q, pp.p)
+			sum = shorter(w.ratio(poly, num, dp, exp), sum)
 		}
 		return sum
 	}
@@ -319,6 +326,28 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 		}
 	}
 	return RootSum{Var: w.root, Poly: poly, Body: Mul(Add(terms...), exp)}
+}
+
+// mostDegreeAlone is the degree up to which the part of a factor alone is tried:
+// beyond, its coefficients are longer than those of a ratio.
+const mostDegreeAlone = 8
+
+// ratio presents the sum over the roots of num/den times an exponential.
+func (w presenter) ratio(poly Node, num, den algebra.Poly[algebra.Rat], exp Node) Node {
+	z := Sym(w.root)
+	g := algebra.GCD[algebra.Rat](algebra.Q, num, den)
+	num, _ = num.DivExact(algebra.Q, g)
+	den, _ = den.DivExact(algebra.Q, g)
+	cn, n := contentOf(num, z)
+	cd, d := contentOf(den, z)
+	c := cn.Quo(cd)
+	top := Mul(Num(algebra.RatFromBigInt(c.Abs().Num())), n, exp)
+	bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), d)
+	var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
+	if c.Sign() < 0 {
+		sum = Neg{X: sum}
+	}
+	return sum
 }
 
 // primitive returns the integer multiple of p with coprime coefficients and a

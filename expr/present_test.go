@@ -27,7 +27,7 @@ func TestPresentation(t *testing.T) {
 		{"(t^2+t+1)*exp(-t)/6", "1/6*(t^2 + t + 1)*exp(-t)"},
 		{"-(t+1)*exp(-t)", "-(t + 1)*exp(-t)"},
 		{"-3*sin(t/2)", "-3*sin(t/2)"},
-		{"exp(-t)*(cos(2*t) - sin(2*t)/2)", "1/2*exp(-t)*(2*cos(2*t) - sin(2*t))"},
+		{"exp(-t)*(cos(2*t) - sin(2*t)/2)", "exp(-t)*(cos(2*t) - 1/2*sin(2*t))"},
 		{"exp(-t)*(sin(2*t)/2 - 3*cos(2*t))", "-1/2*exp(-t)*(6*cos(2*t) - sin(2*t))"},
 		{"exp(-t)*(t*cos(t) + (1-t)*sin(t))", "exp(-t)*(t*cos(t) + (1 - t)*sin(t))"},
 		{"sumroots(z, z^2-2, exp(z*t))", "2*cosh(sqrt(2)*t)"},

@@ -148,7 +148,15 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 		if f != nil {
 			var err error
 			if right, err = expr.Parse(f[i], b.limits); err != nil {
-				return nil, err
+				return nil, inInput(err, i)
+			}
+			each(right, func(n expr.Node) {
+				if name, _, ok := b.functionOf(n); ok && seen[name] && name != "t" && name != "pi" {
+					err = expr.Errorf(expr.OutsideClass, n.Pos(), "the state %s stands in an input, which is a function of t alone", expr.Quote(name))
+				}
+			})
+			if err != nil {
+				return nil, inInput(err, i)
 			}
 		}
 		b.statements = append(b.statements, expr.Equation{Left: expr.Add(terms...), Right: right})
@@ -172,6 +180,17 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 	return b.Model, nil
 }
 
+// inInput says in which input of a matrix model an error lies; its place is
+// that within the input.
+func inInput(err error, i int) error {
+	if e, ok := err.(*Error); ok {
+		in := *e
+		in.Message = fmt.Sprintf("input %d: %s", i+1, e.Message)
+		return &in
+	}
+	return err
+}
+
 // States returns the names of the states, in the order of their first
 // appearance.
 func (m *Model) States() []string { return append([]string{}, m.names...) }
@@ -192,7 +211,8 @@ func (m *Model) SideConditions() []expr.Equation { return append([]expr.Equation
 // Definitions returns the definitions of constants.
 func (m *Model) Definitions() []expr.Equation { return append([]expr.Equation(nil), m.defined...) }
 
-// String writes the model in the text form, one statement to a line.
+// String writes the model in the text form, one statement to a line. It reads
+// back unless a matrix model has names that are no names in a text.
 func (m *Model) String() string {
 	var b strings.Builder
 	if m.variable != "t" {
