@@ -151,6 +151,9 @@ func (c *expansions) balls(ctx context.Context, images []Image[algebra.Rat], tau
 
 // wrapCancel turns the error of a context into an *Error of kind Cancelled.
 func wrapCancel(err error) error {
+	if _, typed := err.(*Error); typed {
+		return err
+	}
 	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
 		return &Error{Kind: Cancelled, Message: err.Error(), Cause: err}
 	}

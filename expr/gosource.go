@@ -76,6 +76,9 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	return format.Source([]byte(g.file(fs, bodies)))
 }
 
+// mostComment is the length up to which a closed form is repeated in a comment.
+const mostComment = 4000
+
 // goWriter collects the rates that the functions share.
 type goWriter struct {
 	opt       GoOptions
@@ -392,7 +395,11 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 	line("// %s returns the states at the time %s:", g.opt.Func, inert(variable))
 	line("//")
 	for i, f := range fs {
-		for j, l := range wrap(inert(g.names[i]+" = "+f.String()), 96) {
+		formula := f.String()
+		if len(formula) > mostComment {
+			formula = fmt.Sprintf("(a formula of %d characters)", len(formula))
+		}
+		for j, l := range wrap(inert(g.names[i]+" = "+formula), 96) {
 			if j > 0 {
 				l = "    " + l
 			}

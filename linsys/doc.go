@@ -15,12 +15,14 @@
 // the transient part (complementary function) and the steady part (particular
 // integral) apart, the modes, and the [Proof]. A response is proven before it
 // is returned: substituted into the equations as they were read, it leaves the
-// residual zero, exactly.
+// residual zero, exactly; so does the particular integral.
 //
 // Outside the class are nonlinear models, coefficients that depend on time,
 // inputs such as 1/t or exp(t^2). They get an [Error] whose kind and place say
 // what is at fault. Symbols, pi, irrational roots, switched inputs and
-// boundary conditions get one as well, of kind [expr.OutsideClass].
+// boundary conditions get one as well, of kind [expr.OutsideClass]; so does what
+// brings in constants such as e^2 or cos(1): a phase angle, or exponential and
+// oscillating inputs with data at a time other than 0.
 //
 // # Method
 //

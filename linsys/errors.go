@@ -12,6 +12,9 @@ type Error = expr.Error
 
 // wrapCancel turns the error of a context into an *Error of kind Cancelled.
 func wrapCancel(err error) error {
+	if _, typed := err.(*Error); typed {
+		return err
+	}
 	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
 		return &Error{Kind: expr.Cancelled, Message: err.Error(), Cause: err}
 	}

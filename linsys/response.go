@@ -40,8 +40,10 @@ func (m *Model) ClosedForm(ctx context.Context) (*Response, error) {
 	if err != nil {
 		return nil, err
 	}
-	if !sol.proof.Holds() {
-		return nil, fmt.Errorf("%w: %s; %s", errUnproven, sol.proof.Residual(), sol.proof.Side())
+	for _, p := range []Proof{sol.proof, sol.partProof} {
+		if !p.Holds() {
+			return nil, fmt.Errorf("%w: %s; %s", errUnproven, p.Residual(), p.Side())
+		}
 	}
 	r := &Response{model: m, proof: sol.proof}
 	for i := range sol.free {
@@ -98,6 +100,7 @@ type solution[E any] struct {
 	particular    []expr.Image[E]
 	modes         expr.Denominator[E]
 	proof         Proof
+	partProof     Proof // of the particular integral, where it is not the base
 }
 
 // solve derives and proves the solution of the equations under the conditions,
@@ -144,7 +147,12 @@ func solve[E any](ctx context.Context, k algebra.Scalars[E], names []string, eqs
 	for u := range names {
 		sol.complementary[u] = sol.base[u].Sub(sol.particular[u])
 	}
-	sol.proof, err = prove(ctx, k, eqs, conditions, sol.base, sol.free)
+	if sol.proof, err = prove(ctx, k, eqs, conditions, sol.base, sol.free); err != nil {
+		return nil, err
+	}
+	if len(conditions) > 0 && sv.inputs.Poly().Degree() > 0 {
+		sol.partProof, err = prove(ctx, k, eqs, nil, sol.particular, nil)
+	}
 	return sol, err
 }
 

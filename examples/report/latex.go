@@ -28,6 +28,8 @@ func (r *report) latex() string {
 	if list := m.SideConditions(); len(list) > 0 {
 		w.line("and the side conditions")
 		w.inline(list)
+	} else if !r.general() {
+		w.line("There are no side conditions, and the equations leave no constant free.")
 	} else {
 		w.line("There are no side conditions: the solution is the general one, with the free constants $%s$. It has no values and no plots.",
 			strings.Join(mapped(r.response.Constants(), expr.LaTeXName), ", "))

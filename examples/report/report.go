@@ -52,6 +52,9 @@ func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error)
 		return nil, err
 	}
 	names := m.States()
+	if len(names) == 0 {
+		return nil, &linsys.Error{Kind: expr.WrongShape, Message: "the model has no states to report on"}
+	}
 	for _, eq := range m.Definitions() {
 		names = append(names, eq.Left.String())
 	}
