@@ -27,6 +27,20 @@ func (Rationals) gcdPoly(p, q Poly[Rat]) Poly[Rat] {
 	return overQ(intpoly.GCD(a, b))
 }
 
+func (Rationals) squareFree(p Poly[Rat]) []Factor[Rat] {
+	a, _ := overZ(p)
+	return factorsOverQ(intpoly.SquareFree(a))
+}
+
+// factorsOverQ returns the monic multiples of integer factors.
+func factorsOverQ(factors []intpoly.Factor) []Factor[Rat] {
+	out := make([]Factor[Rat], len(factors))
+	for i, f := range factors {
+		out[i] = Factor[Rat]{P: overQ(f.P), Mult: f.Mult}
+	}
+	return out
+}
+
 // FactorPoly returns the monic irreducible factors of p over Q with their
 // multiplicities, by degree and then by coefficients: Yun's square-free
 // decomposition, factors modulo a prime, Hensel lifting and recombination.
@@ -37,9 +51,5 @@ func (Rationals) FactorPoly(ctx context.Context, p Poly[Rat]) ([]Factor[Rat], er
 	if err != nil {
 		return nil, err
 	}
-	out := make([]Factor[Rat], len(factors))
-	for i, f := range factors {
-		out[i] = Factor[Rat]{P: overQ(f.P), Mult: f.Mult}
-	}
-	return out, nil
+	return factorsOverQ(factors), nil
 }

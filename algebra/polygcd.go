@@ -44,12 +44,20 @@ func ExtendedGCD[E any](f Field[E], p, q Poly[E]) (g, u, v Poly[E]) {
 	return r0.Scale(c), u0.Scale(c), v0.Scale(c)
 }
 
+// squareFreer is the capability of a better square-free decomposition.
+type squareFreer[E any] interface {
+	squareFree(p Poly[E]) []Factor[E]
+}
+
 // SquareFree returns the square-free decomposition of p: monic, pairwise
 // coprime, square-free factors in the order of their multiplicity (Yun, On
 // square-free decomposition algorithms, 1976; characteristic 0).
 func SquareFree[E any](f Field[E], p Poly[E]) []Factor[E] {
 	if p.Degree() < 1 {
 		return nil
+	}
+	if s, ok := any(f).(squareFreer[E]); ok {
+		return s.squareFree(p)
 	}
 	p = p.Monic(f)
 	dp := p.Derivative()
