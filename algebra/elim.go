@@ -57,7 +57,7 @@ func Reduce[E any](ctx context.Context, f Field[E], a Matrix[E]) (Echelon[E], er
 	for _, row := range rows[:rank] {
 		e = append(e, row...)
 	}
-	return Echelon[E]{Rows: Matrix[E]{ring: f, m: rank, n: a.n, e: e}, Pivots: pivots}, nil
+	return Echelon[E]{Rows: ownMatrix[E](f, rank, a.n, e), Pivots: pivots}, nil
 }
 
 // Kernel returns a basis of {x : a x = 0}, one vector for every column without

@@ -2,7 +2,6 @@ package algebra
 
 import (
 	"context"
-	"math/big"
 	"strings"
 )
 
@@ -11,17 +10,8 @@ type Matrix[E any] struct {
 	ring Ring[E]
 	m, n int
 	e    []E      // row by row
-	q    *qmatrix // over Rationals, where e is nil
+	q    *qmatrix // over Rationals, in place of e
 }
-
-// qmatrix holds rational entries, row by row, as integers over one common
-// denominator, the form in which integer algorithms give them.
-type qmatrix struct {
-	num []*big.Int
-	den *big.Int
-}
-
-func (q *qmatrix) entry(i int) Rat { return RatFromFrac(q.num[i], q.den) }
 
 // NewMatrix returns the m x n matrix with the given entries, row by row. It
 // panics when their number is not m n.
@@ -29,7 +19,7 @@ func NewMatrix[E any](r Ring[E], m, n int, entries ...E) Matrix[E] {
 	if len(entries) != m*n {
 		panic(ShapeError{Op: "construction", R1: m, C1: n, R2: len(entries), C2: 1})
 	}
-	return Matrix[E]{ring: r, m: m, n: n, e: append([]E(nil), entries...)}
+	return ownMatrix(r, m, n, append([]E(nil), entries...))
 }
 
 // MatrixFromFunc returns the m x n matrix with the entry f(i, j) in row i,
@@ -40,6 +30,14 @@ func MatrixFromFunc[E any](r Ring[E], m, n int, f func(i, j int) E) Matrix[E] {
 		for j := range n {
 			e = append(e, f(i, j))
 		}
+	}
+	return ownMatrix(r, m, n, e)
+}
+
+// ownMatrix takes possession of the entries.
+func ownMatrix[E any](r Ring[E], m, n int, e []E) Matrix[E] {
+	if _, ok := any(r).(Rationals); ok {
+		return Matrix[E]{ring: r, m: m, n: n, q: qmatrixFromRats(any(e).([]Rat))}
 	}
 	return Matrix[E]{ring: r, m: m, n: n, e: e}
 }
@@ -62,7 +60,7 @@ func (a Matrix[E]) Dims() (m, n int) { return a.m, a.n }
 
 // At returns the entry in row i, column j, counted from 0.
 func (a Matrix[E]) At(i, j int) E {
-	if a.q != nil && j < a.n {
+	if a.q != nil && uint(j) < uint(a.n) {
 		return any(a.q.entry(i*a.n + j)).(E)
 	}
 	return a.row(i)[j]
@@ -74,11 +72,7 @@ func (a Matrix[E]) Row(i int) []E { return append([]E(nil), a.row(i)...) }
 // row returns row i for reading only.
 func (a Matrix[E]) row(i int) []E {
 	if a.q != nil {
-		row := make([]Rat, a.n)
-		for j := range row {
-			row[j] = a.q.entry(i*a.n + j)
-		}
-		return any(row).([]E)
+		return any(a.q.rats(i*a.n, (i+1)*a.n)).([]E)
 	}
 	return a.e[i*a.n : (i+1)*a.n : (i+1)*a.n]
 }
@@ -88,11 +82,7 @@ func (a Matrix[E]) entries() []E {
 	if a.q == nil {
 		return a.e
 	}
-	e := make([]Rat, len(a.q.num))
-	for i := range e {
-		e[i] = a.q.entry(i)
-	}
-	return any(e).([]E)
+	return any(a.q.rats(0, a.m*a.n)).([]E)
 }
 
 // Equal tells whether a = b; matrices of different shape are not equal.
@@ -145,11 +135,12 @@ func (a Matrix[E]) Mul(b Matrix[E]) Matrix[E] {
 	if a.n != b.m {
 		panic(ShapeError{Op: "product", R1: a.m, C1: a.n, R2: b.m, C2: b.n})
 	}
+	x, y := a.entries(), b.entries()
 	return MatrixFromFunc(a.ring, a.m, b.n, func(i, j int) E {
 		s := a.ring.Zero()
-		for k, x := range a.row(i) {
-			if !a.ring.IsZero(x) {
-				s = a.ring.Add(s, a.ring.Mul(x, b.At(k, j)))
+		for k, c := range x[i*a.n : (i+1)*a.n] {
+			if !a.ring.IsZero(c) {
+				s = a.ring.Add(s, a.ring.Mul(c, y[k*b.n+j]))
 			}
 		}
 		return s
@@ -162,9 +153,10 @@ func (a Matrix[E]) MulVec(v []E) []E {
 		panic(ShapeError{Op: "product", R1: a.m, C1: a.n, R2: len(v), C2: 1})
 	}
 	out := make([]E, a.m)
+	e := a.entries()
 	for i := range out {
 		s := a.ring.Zero()
-		for k, x := range a.row(i) {
+		for k, x := range e[i*a.n : (i+1)*a.n] {
 			if !a.ring.IsZero(x) && !a.ring.IsZero(v[k]) {
 				s = a.ring.Add(s, a.ring.Mul(x, v[k]))
 			}
@@ -224,21 +216,7 @@ func (a Matrix[E]) Above(b Matrix[E]) Matrix[E] {
 	if a.n != b.n {
 		panic(ShapeError{Op: "stacking", R1: a.m, C1: a.n, R2: b.m, C2: b.n})
 	}
-	return Matrix[E]{ring: a.ring, m: a.m + b.m, n: a.n, e: append(append([]E(nil), a.entries()...), b.entries()...)}
-}
-
-// intRows returns the integer matrix d a and the least common denominator d > 0.
-func (a Matrix[E]) intRows() ([][]*big.Int, *big.Int) {
-	entries, ok := any(a.entries()).([]Rat)
-	if !ok {
-		panic("algebra: integer rows of a matrix that is not over Q")
-	}
-	ints, d := clearDenominators(entries)
-	rows := make([][]*big.Int, a.m)
-	for i := range rows {
-		rows[i] = ints[i*a.n : (i+1)*a.n : (i+1)*a.n]
-	}
-	return rows, d
+	return ownMatrix(a.ring, a.m+b.m, a.n, append(append([]E(nil), a.entries()...), b.entries()...))
 }
 
 // CharPoly returns the characteristic polynomial det(s I - a) of a square

@@ -8,8 +8,84 @@ import (
 	"example.org/closedform/algebra/internal/intmat"
 )
 
-// Matrices over Q are handed to integer algorithms as d*a, with d the least
-// common denominator of the entries of a.
+// qmatrix holds rational entries, row by row, in the form that [Matrix] keeps
+// over [Rationals] and that integer algorithms take and give: integers over one
+// common denominator d, flat machine words if all fit.
+type qmatrix struct {
+	w   []int64    // the numerators if every |w[i]| < 2^63; nil otherwise
+	num []*big.Int // the numerators if w is nil
+	den *big.Int   // d > 0
+}
+
+// qmatrixFromRats returns the entries over their least common denominator.
+func qmatrixFromRats(e []Rat) *qmatrix {
+	if w, ok := wordsOf(e); ok {
+		return &qmatrix{w: w, den: big.NewInt(1)}
+	}
+	ints, d := clearDenominators(e)
+	return newQMatrix(ints, d)
+}
+
+// newQMatrix returns the entries num[i]/den.
+func newQMatrix(num []*big.Int, den *big.Int) *qmatrix {
+	for _, x := range num {
+		if !fits63(x) {
+			return &qmatrix{num: num, den: den}
+		}
+	}
+	w := make([]int64, len(num))
+	for i, x := range num {
+		w[i] = x.Int64()
+	}
+	return &qmatrix{w: w, den: den}
+}
+
+// rats returns the entries from index i up to j, without j.
+func (q *qmatrix) rats(i, j int) []Rat {
+	out := make([]Rat, j-i)
+	for k := range out {
+		out[k] = q.entry(i + k)
+	}
+	return out
+}
+
+func (q *qmatrix) entry(i int) Rat {
+	switch {
+	case q.w == nil:
+		return RatFromFrac(q.num[i], q.den)
+	case isOne(q.den):
+		return Rat{num: q.w[i], den: 1}
+	case fits63(q.den):
+		return NewRat(q.w[i], q.den.Int64())
+	}
+	return RatFromFrac(big.NewInt(q.w[i]), q.den)
+}
+
+// overWords returns the numerators of a matrix over Q and their denominator, as
+// words if they fit; for reading only.
+func overWords(a Matrix[Rat]) (w []int64, d *big.Int, ok bool) {
+	if a.q == nil {
+		a.q = qmatrixFromRats(a.e)
+	}
+	return a.q.w, new(big.Int).Set(a.q.den), a.q.w != nil
+}
+
+// intRows returns the rows of the integer matrix d a and the denominator d.
+func (a Matrix[E]) intRows() ([][]*big.Int, *big.Int) {
+	q := a.q
+	if q == nil {
+		q = qmatrixFromRats(any(a.e).([]Rat))
+	}
+	num := q.num
+	if q.w != nil {
+		num = bigWords(q.w)
+	}
+	rows := make([][]*big.Int, a.m)
+	for i := range rows {
+		rows[i] = num[i*a.n : (i+1)*a.n : (i+1)*a.n]
+	}
+	return rows, new(big.Int).Set(q.den)
+}
 
 // CharPoly returns det(s I - a): with d the common denominator of the entries,
 // d^n det(s I - a) is the characteristic polynomial of the integer matrix d*a
@@ -44,14 +120,13 @@ func spectral(ctx context.Context, a Matrix[Rat],
 	words func(context.Context, int, []int64) ([]*big.Int, error),
 	ints func(context.Context, [][]*big.Int) ([]*big.Int, error),
 ) (Poly[Rat], error) {
-	d := big.NewInt(1)
 	var c []*big.Int
 	var err error
-	if w, ok := wordsOf(a.entries()); ok {
+	w, d, ok := overWords(a)
+	if ok {
 		c, err = words(ctx, a.n, w)
 	} else {
-		var rows [][]*big.Int
-		rows, d = a.intRows()
+		rows, _ := a.intRows()
 		c, err = ints(ctx, rows)
 	}
 	if err != nil {
@@ -61,15 +136,15 @@ func spectral(ctx context.Context, a Matrix[Rat],
 }
 
 func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
-	if w, ok := wordsOf(a.entries()); ok {
-		x, err := intmat.DetWords(ctx, a.n, w)
-		if err != nil {
-			return Rat{}, err
-		}
-		return RatFromBigInt(x), nil
+	var x *big.Int
+	var err error
+	w, d, ok := overWords(a)
+	if ok {
+		x, err = intmat.DetWords(ctx, a.n, w)
+	} else {
+		rows, _ := a.intRows()
+		x, err = intmat.Det(ctx, rows)
 	}
-	ints, d := a.intRows()
-	x, err := intmat.Det(ctx, ints)
 	if err != nil {
 		return Rat{}, err
 	}
@@ -79,28 +154,30 @@ func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
 func (Rationals) solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error) {
 	// (da a) X' = (db b) gives X = X' da / db.
 	bi, db := b.intRows()
-	if w, ok := wordsOf(a.entries()); ok {
+	w, da, ok := overWords(a)
+	if ok {
 		num, den, err := intmat.SolveWords(ctx, a.n, w, bi)
-		return overCommon(num, den, big.NewInt(1), db, a.n, b.n, err)
+		return overCommon(num, den, da, db, a.n, b.n, err)
 	}
-	ai, da := a.intRows()
+	ai, _ := a.intRows()
 	num, den, err := intmat.Solve(ctx, ai, bi)
 	return overCommon(num, den, da, db, a.n, b.n, err)
 }
 
 func (Rationals) inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error) {
-	if w, ok := wordsOf(a.entries()); ok {
+	w, d, ok := overWords(a)
+	if ok {
 		num, den, err := intmat.InverseWords(ctx, a.n, w)
-		return overCommon(num, den, big.NewInt(1), big.NewInt(1), a.n, a.n, err)
+		return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
 	}
-	ints, d := a.intRows()
+	ints, _ := a.intRows()
 	num, den, err := intmat.Inverse(ctx, ints)
 	return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
 }
 
 func (Rationals) kernel(ctx context.Context, a Matrix[Rat]) ([][]Rat, error) {
 	if a.m == 0 { // no equations: every unit vector
-		return Echelon[Rat]{Rows: Matrix[Rat]{ring: Q, n: a.n}}.Kernel(), nil
+		return Echelon[Rat]{Rows: ownMatrix[Rat](Q, 0, a.n, nil)}.Kernel(), nil
 	}
 	rows, _ := a.intRows()
 	vectors, err := intmat.Kernel(ctx, rows)
@@ -140,5 +217,5 @@ func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matr
 			entries = append(entries, x)
 		}
 	}
-	return Matrix[Rat]{ring: Q, m: m, n: n, q: &qmatrix{num: entries, den: new(big.Int).Mul(den, q)}}, nil
+	return Matrix[Rat]{ring: Q, m: m, n: n, q: newQMatrix(entries, new(big.Int).Mul(den, q))}, nil
 }
