@@ -91,32 +91,3 @@ func crossWords(v []big.Word, a, sa, b, sb []uint) {
 		v[2] = big.Word(s2)
 	}
 }
-
-// MulWords returns p q, lowest coefficients first, when all coefficients of the
-// result are known beforehand to fit an int64, from the sizes of those of the
-// factors; ok is false otherwise. Cost: len(p) len(q) word products.
-func MulWords(p, q []int64) (r []int64, ok bool) {
-	if len(p) == 0 || len(q) == 0 {
-		return nil, true
-	}
-	if wordBits(p)+wordBits(q)+bits.Len(uint(min(len(p), len(q)))) > 63 {
-		return nil, false
-	}
-	r = make([]int64, len(p)+len(q)-1)
-	for i, x := range p {
-		row := r[i : i+len(q)]
-		for j, y := range q {
-			row[j] += x * y
-		}
-	}
-	return r, true
-}
-
-// wordBits returns the bit length of the largest number.
-func wordBits(p []int64) int {
-	var all uint64
-	for _, x := range p {
-		all |= uint64(max(x, -x))
-	}
-	return bits.Len64(all)
-}

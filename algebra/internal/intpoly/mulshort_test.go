@@ -1,7 +1,6 @@
 package intpoly
 
 import (
-	"math"
 	"math/big"
 	"math/bits"
 	"testing"
@@ -40,32 +39,6 @@ func TestMulShortIsSchoolbook(t *testing.T) {
 		}
 	}
 	require.Greater(t, words, 1000)
-}
-
-func TestMulWords(t *testing.T) {
-	_, ok := MulWords(nil, []int64{1})
-	require.True(t, ok)
-	s := rng(12)
-	fit := 0
-	for range 500 {
-		p, q := make([]int64, s.next()%6+1), make([]int64, s.next()%6+1)
-		for _, c := range [][]int64{p, q} {
-			shift := s.next() % 64
-			for i := range c {
-				c[i] = int64(s.next()) >> shift
-			}
-		}
-		r, ok := MulWords(p, q)
-		if ok {
-			fit++
-			requireSame(t, Mul(ints(p...), ints(q...)), ints(r...))
-		}
-	}
-	require.Greater(t, fit, 100)
-	for _, x := range []int64{math.MinInt64, math.MinInt64 + 1, math.MaxInt64} {
-		_, ok := MulWords([]int64{x}, []int64{1, 1})
-		require.False(t, ok, "no room for the sum that a longer factor may bring")
-	}
 }
 
 // TestCoefficientsDoNotShareRoom grows a coefficient of a result in place: its
