@@ -118,7 +118,7 @@ func (x Algebraic) String() string {
 	if d.Sign() < 0 {
 		minus = x.i == 1
 		radical = "i"
-		if m.IsInt64() && m.Int64() == 1 {
+		if isOne(m) {
 			m = nil
 		} else {
 			radical = "*i"
@@ -130,7 +130,7 @@ func (x Algebraic) String() string {
 	if num := RatFromBigInt(c.Num()); !num.IsOne() {
 		radical = num.String() + "*" + radical
 	}
-	if den := c.Den(); !den.IsInt64() || den.Int64() != 1 {
+	if den := c.Den(); !isOne(den) {
 		radical += "/" + den.String()
 	}
 	switch {

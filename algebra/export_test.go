@@ -3,6 +3,8 @@ package algebra
 import (
 	"fmt"
 	"math"
+
+	"example.org/closedform/algebra/internal/word"
 )
 
 // Check verifies the normal form of x.
@@ -19,7 +21,7 @@ func (x Rat) Check() error {
 	switch d := x.denom(); {
 	case d < 1 || x.num == math.MinInt64:
 		return fmt.Errorf("%d/%d is out of the inline range", x.num, d)
-	case gcd64(abs64(x.num), uint64(d)) != 1:
+	case word.GCD(word.Abs(x.num), uint64(d)) != 1:
 		return fmt.Errorf("%d/%d is not in lowest terms", x.num, d)
 	}
 	return nil

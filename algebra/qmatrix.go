@@ -98,7 +98,7 @@ func (Rationals) CharPoly(ctx context.Context, a Matrix[Rat]) (Poly[Rat], error)
 // unscaled returns the monic polynomial whose roots are those of the monic c
 // divided by d: the coefficient of s^k of the multiple by d^n is d^k c[k].
 func unscaled(c []*big.Int, d *big.Int) Poly[Rat] {
-	if d.IsInt64() && d.Int64() == 1 {
+	if isOne(d) {
 		return overQ(c)
 	}
 	out := make([]*big.Int, len(c))

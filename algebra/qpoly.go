@@ -6,6 +6,7 @@ import (
 	"math/bits"
 
 	"example.org/closedform/algebra/internal/intpoly"
+	"example.org/closedform/algebra/internal/word"
 )
 
 // qpoly is a non-zero polynomial over Q in the form that [Poly] keeps over
@@ -68,7 +69,7 @@ func bigWords(w []int64) []*big.Int {
 	words := make([]big.Word, len(w))
 	out := make([]*big.Int, len(w))
 	for i, x := range w {
-		words[i] = big.Word(abs64(x))
+		words[i] = big.Word(word.Abs(x))
 		vals[i].SetBits(words[i : i+1 : i+1])
 		if x < 0 {
 			vals[i].Neg(&vals[i])
@@ -89,19 +90,19 @@ func newQ(w []int64, den *big.Int) *qpoly {
 		return nil
 	}
 	w = w[:n:n]
-	if den == nil || (den.IsInt64() && den.Int64() == 1) {
+	if den == nil || isOne(den) {
 		return &qpoly{w: w}
 	}
 	var g uint64
 	for _, x := range w {
-		g = gcd64(g, abs64(x))
+		g = word.GCD(g, word.Abs(x))
 		if g == 1 {
 			return &qpoly{w: w, den: den}
 		}
 	}
 	var c, r big.Int
 	c.GCD(nil, nil, c.SetUint64(g), den)
-	if c.IsInt64() && c.Int64() == 1 {
+	if isOne(&c) {
 		return &qpoly{w: w, den: den}
 	}
 	d := c.Int64()
@@ -121,20 +122,20 @@ func newQBig(b intpoly.Poly, den *big.Int) *qpoly {
 	if n == 0 {
 		return nil
 	}
-	if den != nil && den.IsInt64() && den.Int64() == 1 {
+	if den != nil && isOne(den) {
 		den = nil
 	}
 	if den != nil {
 		g := new(big.Int).Set(den)
 		for _, x := range b {
-			if g.IsInt64() && g.Int64() == 1 {
+			if isOne(g) {
 				break
 			}
 			if x.Sign() != 0 {
 				g.GCD(nil, nil, g, new(big.Int).Abs(x))
 			}
 		}
-		if !g.IsInt64() || g.Int64() != 1 {
+		if !isOne(g) {
 			out := make(intpoly.Poly, n)
 			for i, x := range b {
 				out[i] = new(big.Int).Quo(x, g)
@@ -167,7 +168,7 @@ func qFromRats(c []Rat) *qpoly {
 func maxBits(w []int64) int {
 	var m uint64
 	for _, x := range w {
-		m |= abs64(x)
+		m |= word.Abs(x)
 	}
 	return bits.Len64(m)
 }

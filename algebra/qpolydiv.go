@@ -5,6 +5,7 @@ import (
 	"math/big"
 
 	"example.org/closedform/algebra/internal/intpoly"
+	"example.org/closedform/algebra/internal/word"
 )
 
 // quoRem returns the quotient and the remainder, d not zero. The remainder is
@@ -15,7 +16,7 @@ func (p *qpoly) quoRem(d *qpoly) (quo, rem *qpoly) {
 	if n < 0 {
 		return nil, p
 	}
-	if p.w != nil && d.w != nil && abs64(d.w[len(d.w)-1]) == 1 {
+	if p.w != nil && d.w != nil && word.Abs(d.w[len(d.w)-1]) == 1 {
 		if q, r, ok := quoRemWords(p.w, d.w); ok {
 			return newQ(q, p.den).scaleDen(d.den), newQ(r, p.den)
 		}
@@ -30,7 +31,7 @@ func (p *qpoly) quoRem(d *qpoly) (quo, rem *qpoly) {
 	q := make([]*big.Int, n+1)
 	scale := big.NewInt(1)
 	var g, f, t big.Int
-	unit := lead.IsInt64() && abs64(lead.Int64()) == 1
+	unit := lead.IsInt64() && word.Abs(lead.Int64()) == 1
 	for k := n; k >= 0; k-- {
 		top := r[k+m]
 		q[k] = new(big.Int)
@@ -40,7 +41,7 @@ func (p *qpoly) quoRem(d *qpoly) (quo, rem *qpoly) {
 		if !unit {
 			g.GCD(nil, nil, new(big.Int).Abs(top), new(big.Int).Abs(lead))
 			f.Quo(lead, &g)
-			if !f.IsInt64() || f.Int64() != 1 {
+			if !isOne(&f) {
 				for i := range k + m + 1 {
 					r[i].Mul(r[i], &f)
 				}
@@ -109,7 +110,7 @@ func (p *qpoly) divExact(d *qpoly) (*qpoly, bool) {
 	if p.length() < d.length() {
 		return nil, false
 	}
-	if p.w != nil && d.w != nil && abs64(d.w[len(d.w)-1]) == 1 {
+	if p.w != nil && d.w != nil && word.Abs(d.w[len(d.w)-1]) == 1 {
 		if q, r, ok := quoRemWords(p.w, d.w); ok {
 			for _, x := range r {
 				if x != 0 {

@@ -5,6 +5,8 @@ import (
 	"math/big"
 	"math/bits"
 	"strings"
+
+	"example.org/closedform/algebra/internal/word"
 )
 
 // Rat is an immutable rational number in lowest terms. The zero value is 0.
@@ -38,7 +40,7 @@ func NewRat(a, b int64) Rat {
 	if b < 0 {
 		a, b = -a, -b
 	}
-	if g := int64(gcd64(abs64(a), uint64(b))); g > 1 {
+	if g := int64(word.GCD(word.Abs(a), uint64(b))); g > 1 {
 		a, b = a/g, b/g
 	}
 	return Rat{num: a, den: b}
@@ -188,10 +190,10 @@ func (x Rat) Mul(y Rat) Rat {
 		a, b, c, d := x.num, x.denom(), y.num, y.denom()
 		if b != 1 || d != 1 {
 			// Cross-cancelling first keeps the products small and in lowest terms.
-			if g := int64(gcd64(abs64(a), uint64(d))); g > 1 {
+			if g := int64(word.GCD(word.Abs(a), uint64(d))); g > 1 {
 				a, d = a/g, d/g
 			}
-			if g := int64(gcd64(abs64(c), uint64(b))); g > 1 {
+			if g := int64(word.GCD(word.Abs(c), uint64(b))); g > 1 {
 				c, b = c/g, b/g
 			}
 		}
@@ -227,7 +229,7 @@ func (x Rat) Pow(n int) Rat {
 		x = x.Inv()
 	}
 	r := RatFromInt(1)
-	for m := abs64(int64(n)); m > 0; m >>= 1 {
+	for m := word.Abs(int64(n)); m > 0; m >>= 1 {
 		if m&1 == 1 {
 			r = r.Mul(x)
 		}
@@ -307,7 +309,7 @@ func (x Rat) BitLen() int {
 	if x.big != nil {
 		return max(x.big.Num().BitLen(), x.big.Denom().BitLen())
 	}
-	return max(bits.Len64(abs64(x.num)), bits.Len64(uint64(x.denom())))
+	return max(bits.Len64(word.Abs(x.num)), bits.Len64(uint64(x.denom())))
 }
 
 // Sqrt returns the non-negative rational square root of x, if it has one.
@@ -344,16 +346,9 @@ func (x *Rat) UnmarshalText(text []byte) error {
 	return err
 }
 
-func abs64(x int64) uint64 {
-	if x < 0 {
-		return -uint64(x)
-	}
-	return uint64(x)
-}
-
 // mul64 returns x*y if its absolute value is below 2^63.
 func mul64(x, y int64) (int64, bool) {
-	hi, lo := bits.Mul64(abs64(x), abs64(y))
+	hi, lo := bits.Mul64(word.Abs(x), word.Abs(y))
 	if hi != 0 || lo > math.MaxInt64 {
 		return 0, false
 	}
@@ -361,24 +356,4 @@ func mul64(x, y int64) (int64, bool) {
 		return -int64(lo), true
 	}
 	return int64(lo), true
-}
-
-// gcd64 returns the greatest common divisor of x and y (binary algorithm).
-func gcd64(x, y uint64) uint64 {
-	if x == 0 {
-		return y
-	}
-	if y == 0 {
-		return x
-	}
-	shift := bits.TrailingZeros64(x | y)
-	x >>= bits.TrailingZeros64(x)
-	for y != 0 {
-		y >>= bits.TrailingZeros64(y)
-		if x > y {
-			x, y = y, x
-		}
-		y -= x
-	}
-	return x << shift
 }

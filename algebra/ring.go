@@ -110,7 +110,7 @@ func clearDenominators(c []Rat) ([]*big.Int, *big.Int) {
 		out[i] = x.Num()
 		if !x.IsInt() {
 			out[i].Mul(out[i], new(big.Int).Quo(d, x.Den()))
-		} else if !d.IsInt64() || d.Int64() != 1 {
+		} else if !isOne(d) {
 			out[i].Mul(out[i], d)
 		}
 	}

@@ -3,6 +3,8 @@ package intmat
 import (
 	"context"
 	"math/big"
+
+	"example.org/closedform/algebra/internal/word"
 )
 
 // wordSteps returns the function giving the next digit of x for |b| < 2^62,
@@ -23,26 +25,10 @@ func (l *lifter) wordSteps(b []*big.Int) func(context.Context) ([]uint64, error)
 		}
 		x := l.inverse.MulVec(residue)
 		for i := range r {
-			r[i] = int64((uint64(r[i]) - dotWords(l.a.e[i*n:(i+1)*n], x)) * l.pinv)
+			r[i] = int64((uint64(r[i]) - word.Dot(l.a.e[i*n:(i+1)*n], x)) * l.pinv)
 		}
 		return x, nil
 	}
-}
-
-// dotWords returns the sum of x_i y_i modulo 2^64, where y is at least as
-// long as x.
-func dotWords(x, y []uint64) uint64 {
-	var s, t uint64
-	y = y[:len(x)]
-	for len(x) >= 4 && len(y) >= 4 {
-		s += x[0]*y[0] + x[1]*y[1]
-		t += x[2]*y[2] + x[3]*y[3]
-		x, y = x[4:], y[4:]
-	}
-	for i, v := range x {
-		s += v * y[i]
-	}
-	return s + t
 }
 
 // limbSteps is [lifter.wordSteps] with residuals modulo 2^(64 w), in two's

@@ -4,6 +4,7 @@ import (
 	"context"
 	"math/big"
 
+	"example.org/closedform/algebra/internal/word"
 	"example.org/closedform/algebra/internal/zp"
 )
 
@@ -33,7 +34,7 @@ func (s *square) wordSolve(ctx context.Context, b []uint64, k int) (x []uint64, 
 		for j := 0; j < n*k; j += n {
 			col := x[j : j+n]
 			for r, v := range b[j : j+n] {
-				y[j+r] = dotWords(s.e[r*n:(r+1)*n], col) + c[i]*v
+				y[j+r] = word.Dot(s.e[r*n:(r+1)*n], col) + c[i]*v
 			}
 		}
 		x, y = y, x
@@ -50,7 +51,7 @@ func lowestWords(x []uint64, d uint64) ([]uint64, uint64) {
 		if g == 1 {
 			break
 		}
-		g = gcdWords(g, absWord(v))
+		g = word.GCD(g, absWord(v))
 	}
 	if g != 1 {
 		for i, v := range x {
@@ -70,13 +71,6 @@ func lowestWords(x []uint64, d uint64) ([]uint64, uint64) {
 func absWord(x uint64) uint64 {
 	if int64(x) < 0 {
 		return -x
-	}
-	return x
-}
-
-func gcdWords(x, y uint64) uint64 {
-	for y != 0 {
-		x, y = y, x%y
 	}
 	return x
 }

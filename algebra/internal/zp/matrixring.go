@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math/bits"
 	"slices"
+
+	"example.org/closedform/algebra/internal/word"
 )
 
 // localRing is what the left-looking eliminations ask of the entries: a local
@@ -156,19 +158,7 @@ func (dyadic) neg(x uint64) uint64    { return -x }
 func (dyadic) add(x, y uint64) uint64 { return x + y }
 func (dyadic) mul(x, y uint64) uint64 { return x * y }
 
-func (dyadic) dot(x, y []uint64) uint64 {
-	var s, t uint64
-	y = y[:len(x)]
-	for len(x) >= 4 && len(y) >= 4 {
-		s += x[0]*y[0] + x[1]*y[1]
-		t += x[2]*y[2] + x[3]*y[3]
-		x, y = x[4:], y[4:]
-	}
-	for i, v := range x {
-		s += v * y[i]
-	}
-	return s + t
-}
+func (dyadic) dot(x, y []uint64) uint64 { return word.Dot(x, y) }
 
 // pivot returns the first entry with the fewest trailing zeros.
 func (dyadic) pivot(v []uint64) int {
