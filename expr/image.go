@@ -191,9 +191,6 @@ func newImage[E any](k algebra.Scalars[E], num algebra.Poly[E], den []primePower
 // Numerator returns N.
 func (f Image[E]) Numerator() algebra.Poly[E] { return f.num }
 
-// Field returns the field of the coefficients.
-func (f Image[E]) Field() algebra.Scalars[E] { return f.k }
-
 // IsZero tells whether f is the zero function.
 func (f Image[E]) IsZero() bool { return f.num.IsZero() }
 

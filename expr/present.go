@@ -308,14 +308,13 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
 		num, den := f.residueRatio(i)
-		sum := w.ratio(poly, num, den, exp)
 		if len(f.den) > 1 && pp.p.Degree() <= mostDegreeAlone {
-			// The part of this factor alone, which does not know of the others.
-			dp := pp.p.Derivative()
-			num = f.local(i).c[0].Mul(dp).Rem(algebra.Q, pp.p)
-			sum = shorter(w.ratio(poly, num, dp, exp), sum)
+			// The part of this factor alone, which does not know of the others: it
+			// reads the same in a response and in its transient part.
+			den = pp.p.Derivative()
+			num = f.local(i).c[0].Mul(den).Rem(algebra.Q, pp.p)
 		}
-		return sum
+		return w.ratio(poly, num, den, exp)
 	}
 	part := f.local(i)
 	var terms []Node
@@ -328,8 +327,8 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 	return RootSum{Var: w.root, Poly: poly, Body: Mul(Add(terms...), exp)}
 }
 
-// mostDegreeAlone is the degree up to which the part of a factor alone is tried:
-// beyond, its coefficients are longer than those of a ratio.
+// mostDegreeAlone is the degree up to which the part of a factor alone is
+// written: beyond, its coefficients are much longer than those of a ratio.
 const mostDegreeAlone = 8
 
 // ratio presents the sum over the roots of num/den times an exponential.

@@ -64,7 +64,7 @@ func (r *report) proofText() string {
 	if len(p.Sides) > 0 {
 		s += fmt.Sprintf(", and the %s exactly", count(len(p.Sides), "side condition is met", "side conditions are met"))
 	}
-	return s + ". The check shares nothing with the derivation but the arithmetic, which is exact."
+	return s + ". The check shares with the derivation the exact arithmetic, the reading of the equations and the transform of the inputs, and nothing of how the response was found."
 }
 
 func count(n int, one, more string) string {
