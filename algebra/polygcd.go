@@ -7,6 +7,10 @@ func GCD[E any](f Field[E], p, q Poly[E]) Poly[E] {
 	if g, ok := any(f).(polyGCDer[E]); ok {
 		return g.gcdPoly(p, q)
 	}
+	return euclid(f, p, q)
+}
+
+func euclid[E any](f Field[E], p, q Poly[E]) Poly[E] {
 	for !q.IsZero() {
 		p, q = q, p.Rem(f, q).Monic(f)
 	}

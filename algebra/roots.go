@@ -18,14 +18,16 @@ import (
 var ErrNotSquareFree = errors.New("algebra: polynomial is not square-free")
 
 // RootSet isolates the complex roots of a square-free polynomial with integer
-// coefficients. It is safe for concurrent use; refinements are cached, and what
-// a call returns does not depend on the calls before it.
+// coefficients, or with real ones known by balls. It is safe for concurrent use;
+// refinements are cached, and what a call returns does not depend on the calls
+// before it.
 //
 // Order: real roots ascending, then pairs of conjugates, the one with positive
 // imaginary part first, by real part; pairs whose real parts differ by less
 // than 2^-100 of the larger modulus are ordered by |imaginary part|.
 type RootSet struct {
-	coeffs []*big.Int      // without the root 0
+	coeffs []*big.Int      // without the root 0; only about the true ones if there is a source
+	source *ballSource     // of a polynomial known by balls
 	roots  []*isolatedRoot // the real ones, then the upper ones of pairs
 	real   int
 
@@ -92,7 +94,7 @@ func NewRootSet(ctx context.Context, coeffs []*big.Int) (*RootSet, error) {
 		return linearRootSet(c), nil
 	}
 	r := &RootSet{coeffs: cloneInts(make([]big.Int, len(c)), c)}
-	var reals, uppers []*isolatedRoot
+	var reals []*isolatedRoot
 	if c[0].Sign() == 0 {
 		if c[1].Sign() == 0 {
 			return nil, ErrNotSquareFree
@@ -104,6 +106,16 @@ func NewRootSet(ctx context.Context, coeffs []*big.Int) (*RootSet, error) {
 	if err != nil {
 		return nil, err
 	}
+	if err := r.arrange(ctx, reals, discs, gaps); err != nil {
+		return nil, err
+	}
+	return r, ctx.Err()
+}
+
+// arrange puts the roots in order: reals and those in discs around real and
+// upper points.
+func (r *RootSet) arrange(ctx context.Context, reals []*isolatedRoot, discs []rootDisc, gaps []magnitude) error {
+	var uppers []*isolatedRoot
 	for i, d := range discs {
 		if d.at.isReal() {
 			reals = append(reals, newIsolatedRoot(d, gaps[i]))
@@ -116,10 +128,10 @@ func NewRootSet(ctx context.Context, coeffs []*big.Int) (*RootSet, error) {
 	})
 	r.real = len(reals)
 	if err := r.sortPairs(ctx, uppers); err != nil {
-		return nil, err
+		return err
 	}
 	r.roots = append(reals, uppers...)
-	return r, ctx.Err()
+	return nil
 }
 
 // linearRootSet is NewRootSet for degree 1, in one piece of memory.

@@ -88,7 +88,7 @@ func (r *RootSet) reach(x *isolatedRoot, d rootDisc) int64 {
 func (r *RootSet) newtonStep(ctx context.Context, x *isolatedRoot, d rootDisc, goal int64) (rootDisc, error) {
 	// Short steps in words, each of the bits that float64 has for p/p', are cheaper
 	// than one in balls while they are few.
-	for at, steps := d, 0; steps < 4; steps++ {
+	for at, steps := d, 0; steps < 4 && r.source == nil; steps++ {
 		next, ok := r.newtonInWords(x, at, min(goal, at.bits()+38))
 		if !ok || next.bits() <= at.bits() {
 			break
@@ -176,7 +176,7 @@ func (r *RootSet) newtonInBalls(ctx context.Context, x *isolatedRoot, d rootDisc
 	var dp ComplexBall
 	for {
 		var err error
-		if dp, err = hornerBall(ctx, r.derivative(), z, precD); err != nil {
+		if dp, err = r.value(ctx, z, precD, true); err != nil {
 			return rootDisc{}, err
 		}
 		rel := dp.Re.rad.addUp(dp.Im.rad).quoUp(dp.absDown())
@@ -190,7 +190,7 @@ func (r *RootSet) newtonInBalls(ctx context.Context, x *isolatedRoot, d rootDisc
 	}
 	prec := uint(max(sum.quoUp(dp.absDown()).top()-t.top()+16, 64))
 	for {
-		p, err := hornerBall(ctx, r.coeffs, z, prec)
+		p, err := r.value(ctx, z, prec, false)
 		if err != nil {
 			return rootDisc{}, err
 		}
@@ -203,6 +203,17 @@ func (r *RootSet) newtonInBalls(ctx context.Context, x *isolatedRoot, d rootDisc
 		prec += 16
 		mid += 16
 	}
+}
+
+// value returns p(z), or p'(z) if slope is set, for an exact z.
+func (r *RootSet) value(ctx context.Context, z ComplexBall, prec uint, slope bool) (ComplexBall, error) {
+	switch {
+	case r.source != nil:
+		return r.source.value(ctx, z, prec, slope)
+	case slope:
+		return hornerBall(ctx, r.derivative(), z, prec)
+	}
+	return hornerBall(ctx, r.coeffs, z, prec)
 }
 
 // wordPoly returns the polynomial for points of the given scale.

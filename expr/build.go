@@ -85,6 +85,12 @@ func Mul(factors ...Node) Node {
 				gather(v.Num)
 				return
 			}
+			if last := len(rest) - 1; isNumber(v.Num, 1) && last >= 0 {
+				if _, name := rest[last].(Symbol); name {
+					rest[last] = Quotient{Num: rest[last], Den: v.Den}
+					return
+				}
+			}
 			rest = append(rest, f)
 		default:
 			if isConstant(f) {

@@ -14,22 +14,45 @@ import (
 // the exponentials, sines and cosines they share are computed once. Bundles are
 // immutable; methods may be called concurrently.
 type Bundle struct {
-	fs     []Function
-	images []Image[algebra.Rat]
-	cache  expansions
+	fs []Function
+	at func(ctx context.Context, t *big.Rat, digits int) ([]string, error)
 }
 
-// NewBundle returns the bundle of the functions. It panics when their variables
-// or origins differ.
+// NewBundle returns the bundle of the functions. It panics when their variables,
+// origins or fields differ.
 func NewBundle(fs ...Function) *Bundle {
 	b := &Bundle{fs: append([]Function(nil), fs...)}
-	for _, f := range fs {
-		if f.variable != fs[0].variable || !f.origin.Equal(fs[0].origin) {
-			panic("expr: bundle of functions in different times")
-		}
-		b.images = append(b.images, f.base)
+	if len(fs) == 0 {
+		b.at = func(context.Context, *big.Rat, int) ([]string, error) { return nil, nil }
+		return b
+	}
+	if fs[0].over().field() == nil {
+		b.at = bundled[algebra.Rat](fs)
+	} else {
+		b.at = bundled[Constant](fs)
 	}
 	return b
+}
+
+func bundled[E any](fs []Function) func(context.Context, *big.Rat, int) ([]string, error) {
+	var images []Image[E]
+	first := fs[0].over().(*overField[E])
+	for _, f := range fs {
+		x, ok := f.over().(*overField[E])
+		if !ok || f.variable != fs[0].variable || !first.sameOrigin(x) {
+			panic("expr: bundle of functions in different times or over different fields")
+		}
+		images = append(images, x.base)
+	}
+	cache := &expansions[E]{}
+	return func(ctx context.Context, t *big.Rat, digits int) ([]string, error) {
+		return cache.digits(ctx, first.k, images, first.since(t), digits)
+	}
+}
+
+// since returns t - t0.
+func (f *overField[E]) since(t *big.Rat) E {
+	return f.k.Sub(f.k.FromRat(algebra.RatFromBig(t)), f.origin)
 }
 
 // At returns the values of all functions at t as [Function.At] does.
@@ -38,24 +61,21 @@ func (b *Bundle) At(ctx context.Context, t *big.Rat, digits int) ([]string, erro
 		return nil, errNoTime
 	}
 	for _, f := range b.fs {
-		if err := f.noFree(); err != nil {
+		if err := f.closed(); err != nil {
 			return nil, err
 		}
 	}
-	if len(b.fs) == 0 {
-		return nil, nil
-	}
-	return b.cache.digits(ctx, b.images, algebra.RatFromBig(t).Sub(b.fs[0].origin), digits)
+	return b.at(ctx, t, digits)
 }
 
 // expansions keeps the expansions of some images by their precision, of which
 // few occur: each is twice another.
-type expansions struct {
+type expansions[E any] struct {
 	mu     sync.Mutex
 	byPrec map[uint]*shared[*expansion]
 }
 
-func (c *expansions) get(ctx context.Context, images []Image[algebra.Rat], prec uint) (*expansion, error) {
+func (c *expansions[E]) get(ctx context.Context, k algebra.Scalars[E], images []Image[E], prec uint) (*expansion, error) {
 	c.mu.Lock()
 	x, ok := c.byPrec[prec]
 	if !ok {
@@ -67,7 +87,7 @@ func (c *expansions) get(ctx context.Context, images []Image[algebra.Rat], prec 
 	}
 	c.mu.Unlock()
 	return x.get(ctx, func(ctx context.Context) (*expansion, error) {
-		return expand[algebra.Rat](ctx, algebra.Q, images, prec)
+		return expand(ctx, k, images, prec)
 	})
 }
 
@@ -83,7 +103,7 @@ const (
 
 // digits returns the values of the images at tau to so many significant digits,
 // raising the precision until every one is certain.
-func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], tau algebra.Rat, digits int) ([]string, error) {
+func (c *expansions[E]) digits(ctx context.Context, k algebra.Scalars[E], images []Image[E], tau E, digits int) ([]string, error) {
 	digits = max(digits, 1)
 	if digits > mostDigits {
 		return nil, Errorf(LimitExceeded, Pos{}, "%d digits, at most %d are given", digits, mostDigits)
@@ -97,16 +117,16 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 	least := (uint(digits)*10/3 + 127) &^ 63
 	for prec := least; ; prec *= 2 {
 		if prec > mostPrecision {
-			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", Quote(tau.String()), mostPrecision)
+			return nil, Errorf(LimitExceeded, Pos{}, "the values at %s after the origin need more than %d bits of working precision", Quote(k.Text(tau)), mostPrecision)
 		}
-		if prec > least || tau.IsZero() {
+		if prec > least || k.IsZero(tau) {
 			// Only a rational value can defy every precision: 0, or a number midway
 			// between two decimals.
 			for i, f := range images {
 				if out[i] != "" || prec > 2*least {
 					continue
 				}
-				if x, ok := f.rationalAt(tau); ok {
+				if x, ok := rationalAt(ctx, f, tau); ok {
 					out[i] = algebra.RatDecimal(x.Big(), digits)
 				}
 			}
@@ -114,7 +134,7 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 		if !slices.Contains(out, "") {
 			return out, nil
 		}
-		balls, err := c.balls(ctx, images, tau, prec)
+		balls, err := c.balls(ctx, k, images, tau, prec)
 		if err != nil {
 			return nil, err
 		}
@@ -133,19 +153,19 @@ func (c *expansions) digits(ctx context.Context, images []Image[algebra.Rat], ta
 }
 
 // balls returns balls around the values of the images at tau.
-func (c *expansions) balls(ctx context.Context, images []Image[algebra.Rat], tau algebra.Rat, prec uint) ([]algebra.Ball, error) {
-	if tau.IsZero() {
+func (c *expansions[E]) balls(ctx context.Context, k algebra.Scalars[E], images []Image[E], tau E, prec uint) ([]algebra.Ball, error) {
+	if k.IsZero(tau) {
 		out := make([]algebra.Ball, len(images))
 		for i, f := range images {
-			out[i] = algebra.BallFromRat(f.Initial().Big(), prec)
+			out[i] = k.Enclose(f.Initial(), prec)
 		}
 		return out, nil
 	}
-	x, err := c.get(ctx, images, prec)
+	x, err := c.get(ctx, k, images, prec)
 	if err != nil {
 		return nil, wrapCancel(err)
 	}
-	out, err := x.at(ctx, algebra.BallFromRat(tau.Big(), prec))
+	out, err := x.at(ctx, k.Enclose(tau, prec))
 	return out, wrapCancel(err)
 }
 

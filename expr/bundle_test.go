@@ -31,10 +31,10 @@ func TestBundle(t *testing.T) {
 	none, err := expr.NewBundle().At(t.Context(), big.NewRat(1, 2), 5)
 	require.NoError(t, err)
 	assert.Empty(t, none)
-	free := expr.NewFunction("t", algebra.Rat{}, expr.Image[algebra.Rat]{}, expr.FreeTerm{Name: "C1", Image: elementaryOf(t, "1").Image()})
+	free := expr.NewFunction[algebra.Rat](algebra.Q, "t", algebra.Rat{}, expr.Image[algebra.Rat]{}, expr.FreeTerm[algebra.Rat]{Name: "C1", Image: elementaryOf(t, "1").Image()})
 	_, err = expr.NewBundle(function(t, "t"), free).At(t.Context(), big.NewRat(1, 2), 5)
 	assert.Equal(t, expr.SideConditions, faultOf(t, err).kind)
 	assert.Panics(t, func() {
-		expr.NewBundle(function(t, "t"), expr.NewFunction("t", algebra.NewRat(1, 1), elementaryOf(t, "t").Image()))
+		expr.NewBundle(function(t, "t"), expr.NewFunction[algebra.Rat](algebra.Q, "t", algebra.NewRat(1, 1), elementaryOf(t, "t").Image()))
 	})
 }

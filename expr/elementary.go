@@ -71,13 +71,12 @@ func (f Elementary[E]) size() int {
 	return size
 }
 
-// bitLen returns the size of x where it is a rational number, else 0.
-func bitLen[E any](k algebra.Scalars[E], x E) int {
-	r, ok := k.Rational(x)
-	if !ok {
-		return 0
+// bitLen returns the size of x.
+func bitLen[E any](_ algebra.Scalars[E], x E) int {
+	if s, ok := any(x).(interface{ BitLen() int }); ok {
+		return s.BitLen()
 	}
-	return r.BitLen()
+	return 0
 }
 
 // ZeroElementary returns the zero function.
@@ -140,6 +139,16 @@ func (g *gather[E]) sum() Elementary[E] {
 		}
 	}
 	return Elementary[E]{k: g.k, terms: out}
+}
+
+// Elements calls visit for the coefficients and rates of all terms.
+func (f Elementary[E]) Elements(visit func(E)) {
+	for _, t := range f.terms {
+		visit(t.a)
+		visit(t.b)
+		visit(t.c)
+		visit(t.s)
+	}
 }
 
 // Add returns f + g.
@@ -216,22 +225,34 @@ func (f Elementary[E]) Initial() E {
 	return x
 }
 
-// Shift returns f(t + c), the function in the local time of an origin c. It
-// fails when that needs constants e^(ac), cos(bc) outside the field.
+// Shift returns f(t + c), the function in the local time of an origin c. The
+// constants e^(ac), cos(bc), sin(bc) that come in must be in the field.
 func (f Elementary[E]) Shift(c E) (Elementary[E], error) {
-	if f.k.IsZero(c) {
+	k := f.k
+	if k.IsZero(c) {
 		return f, nil
 	}
-	acc := newGather(f.k)
+	acc := newGather(k)
 	for _, t := range f.terms {
-		if !f.k.IsZero(t.a) || !f.k.IsZero(t.b) {
-			return f, Errorf(OutsideClass, Pos{}, "an input with exponentials, sines or cosines and data at the time %s bring in constants such as e^(%s), which are not covered", f.k.Text(c), f.k.Text(c))
+		if !k.IsZero(t.a) {
+			e, err := expIn(k, k.Mul(t.a, c), Pos{})
+			if err != nil {
+				return f, err
+			}
+			t.c, t.s = k.Mul(e, t.c), k.Mul(e, t.s)
+		}
+		if !k.IsZero(t.b) {
+			cos, sin, err := cosSinIn(k, k.Mul(t.b, c), Pos{})
+			if err != nil {
+				return f, err
+			}
+			t.c, t.s = k.Add(k.Mul(t.c, cos), k.Mul(t.s, sin)), k.Sub(k.Mul(t.s, cos), k.Mul(t.c, sin))
 		}
 		// t^n becomes (t + c)^n.
-		p := algebra.NewPoly[E](f.k, c, f.k.One()).Pow(t.n)
+		p := algebra.NewPoly[E](k, c, k.One()).Pow(t.n)
 		for i := 0; i <= t.n; i++ {
 			u := t
-			u.n, u.c = i, f.k.Mul(t.c, p.Coef(i))
+			u.n, u.c, u.s = i, k.Mul(t.c, p.Coef(i)), k.Mul(t.s, p.Coef(i))
 			acc.add(u)
 		}
 	}

@@ -1,6 +1,7 @@
 package expr
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 )
@@ -64,3 +65,6 @@ func Quote(s string) string {
 	}
 	return fmt.Sprintf("%q", s)
 }
+
+// isIrrational tells whether a wider field may do what failed over Q.
+func isIrrational(err error) bool { return errors.Is(err, ErrIrrational) }

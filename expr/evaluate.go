@@ -286,29 +286,40 @@ func divBalls(a, b []algebra.ComplexBall, n int, prec uint) []algebra.ComplexBal
 	return out
 }
 
-// rationalAt returns f(t) if it is a rational number that needs no digits: at 0
-// it is the limit of s F(s); at another rational t, by the theorem of Lindemann
-// and Weierstrass, it is rational exactly when the coefficients of all e^(Lt)
-// with L not 0 vanish at t, and then is the value of the polynomial part.
-func (f Image[E]) rationalAt(t algebra.Rat) (algebra.Rat, bool) {
+// rationalAt returns f(t) if it is a rational number: the limit of s F(s) at 0,
+// and elsewhere what is known of the field.
+func rationalAt[E any](ctx context.Context, f Image[E], t E) (algebra.Rat, bool) {
 	if f.IsZero() {
 		return algebra.Rat{}, true
 	}
-	if t.IsZero() {
+	if f.k.IsZero(t) {
 		return f.k.Rational(f.Initial())
 	}
+	switch f := any(f).(type) {
+	case Image[algebra.Rat]:
+		return rationalOverQ(f, any(t).(algebra.Rat))
+	case Image[Constant]:
+		return any(f.k).(*Constants).rationalValue(ctx, f, any(t).(Constant))
+	}
+	return algebra.Rat{}, false
+}
+
+// rationalOverQ uses that f(t) at a rational t is rational, by the theorem of
+// Lindemann and Weierstrass, exactly when the coefficients of all e^(Lt) with L
+// not 0 vanish at t, and then is the value of the polynomial part.
+func rationalOverQ(f Image[algebra.Rat], t algebra.Rat) (algebra.Rat, bool) {
 	for _, pp := range f.den {
 		// A simple root has the coefficient N/D', which is not zero.
 		if pp.e == 1 && !isS(f.k, pp.p) {
 			return algebra.Rat{}, false
 		}
 	}
-	value := f.k.Zero()
+	value := algebra.Rat{}
 	for i, pp := range f.den {
 		part := f.local(i)
 		sum := part.c[pp.e-1]
 		for j := pp.e - 2; j >= 0; j-- {
-			sum = sum.Scale(f.k.FromRat(t)).Add(part.c[j])
+			sum = sum.Scale(t).Add(part.c[j])
 		}
 		if isS(f.k, pp.p) {
 			if !sum.IsZero() {
@@ -318,7 +329,29 @@ func (f Image[E]) rationalAt(t algebra.Rat) (algebra.Rat, bool) {
 			return algebra.Rat{}, false
 		}
 	}
-	return f.k.Rational(value)
+	return value, true
+}
+
+// rationalValue evaluates the written form at t exactly: e^x, cos x and sin x
+// become constants, which are algebraic at the rational multiples of pi.
+func (c *Constants) rationalValue(ctx context.Context, f Image[Constant], t Constant) (x algebra.Rat, ok bool) {
+	for _, pp := range f.den {
+		if pp.p.Degree() > 2 {
+			return x, false
+		}
+	}
+	tau := c.Node(t)
+	w := presenter[Constant]{k: c, style: c, variable: tau, time: tau, origin: c.Zero()}
+	n := w.image(f)
+	_, err := Grow(c, func(k *Constants) error {
+		env := Env[Constant]{K: k, Lookup: k.Lookup}
+		v, err := env.Scalar(n)
+		if err == nil {
+			x, ok = k.Rational(v)
+		}
+		return err
+	})
+	return x, ok && err == nil
 }
 
 // isS tells whether p is the polynomial s.

@@ -7,28 +7,68 @@ import (
 	"example.org/closedform/algebra"
 )
 
-// Function is an exponential polynomial with rational coefficients, an
-// immutable function of one real variable held in its canonical form. It may be
-// held in the local time t - t0 of an origin t0, and it may contain free
-// constants, in which it is linear. Methods may be called concurrently.
+// Function is an exponential polynomial, an immutable function of one real
+// variable held in its canonical form over a field: of rational numbers, or of
+// numbers and symbols ([Constants]). It may be held in the local time t - t0 of
+// an origin t0, and it may contain free constants, in which it is linear.
+// Methods may be called concurrently.
 type Function struct {
 	variable string
-	origin   algebra.Rat
-	base     Image[algebra.Rat]
-	free     []FreeTerm
-	cache    *expansions
+	x        exact
+}
+
+// exact is what a Function is over some field; implemented by *overField.
+type exact interface {
+	field() *Constants // nil for Q
+	isZero() bool
+	constants() []string
+	originNode() Node
+	initial() Node
+	// add and equal expect the same field and time; sameOrigin the same field.
+	add(exact) exact
+	equal(exact) bool
+	sameOrigin(exact) bool
+	scale(algebra.Rat) exact
+	derivative() exact
+	integral() exact
+	timesT() exact
+	timesExp(algebra.Rat) exact
+	node(variable string) Node
+	parameters() []string
+	exclude(ctx context.Context, l *Conditions) error
+	simplest(ctx context.Context) (exact, error)
+	mapped(ctx context.Context, to *Constants, m *mapping) (exact, error)
+	digits(ctx context.Context, t *big.Rat, digits int) (string, error)
+	enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.Ball, error)
 }
 
 // FreeTerm is the multiple of one free constant in a Function.
-type FreeTerm struct {
+type FreeTerm[E any] struct {
 	Name  string
-	Image Image[algebra.Rat]
+	Image Image[E]
+}
+
+// overField is a function over a field.
+type overField[E any] struct {
+	k      algebra.Scalars[E]
+	origin E
+	base   Image[E]
+	free   []FreeTerm[E]
+	cache  *expansions[E]
 }
 
 // NewFunction returns the function base + sum of the free constants times their
-// images, in the variable minus origin.
-func NewFunction(variable string, origin algebra.Rat, base Image[algebra.Rat], free ...FreeTerm) Function {
-	f := Function{variable: variable, origin: origin, base: base, cache: &expansions{}}
+// images, in the variable minus origin, over the field k, which is
+// [algebra.Q] or of type [*Constants].
+func NewFunction[E any](k algebra.Scalars[E], variable string, origin E, base Image[E], free ...FreeTerm[E]) Function {
+	return Function{variable, newOverField(k, origin, base, free)}
+}
+
+func newOverField[E any](k algebra.Scalars[E], origin E, base Image[E], free []FreeTerm[E]) *overField[E] {
+	if base.k == nil {
+		base = ZeroImage(k)
+	}
+	f := &overField[E]{k: k, origin: origin, base: base, cache: &expansions[E]{}}
 	for _, t := range free {
 		if !t.Image.IsZero() {
 			f.free = append(f.free, t)
@@ -38,8 +78,8 @@ func NewFunction(variable string, origin algebra.Rat, base Image[algebra.Rat], f
 }
 
 // ParseFunction reads a function of t from text, such as "t^2*exp(-3*t)" or
-// "sin(2*t)^2": a sum of products of polynomials, exponentials, sines and
-// cosines with rational coefficients and rates, and sums over named roots.
+// "sin(2*t + phi)": a sum of products of polynomials, exponentials, sines and
+// cosines, and sums over named roots. Names without a meaning are symbols.
 func ParseFunction(src string, limits Limits) (Function, error) {
 	n, err := Parse(src, limits)
 	if err != nil {
@@ -49,39 +89,203 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 }
 
 // FunctionOf converts a tree to a function of the variable.
-func FunctionOf(n Node, variable string, limits Limits) (Function, error) {
+func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
+	defer catchLimit(&err)
 	env := Env[algebra.Rat]{K: algebra.Q, Variable: variable, Limits: limits, Lookup: NoNames}
 	img, err := env.image(n)
-	if err != nil {
+	if err == nil {
+		return NewFunction[algebra.Rat](algebra.Q, variable, algebra.Rat{}, img), nil
+	}
+	if !isIrrational(err) {
 		return Function{}, err
 	}
-	return NewFunction(variable, algebra.Rat{}, img), nil
+	_, err = Grow(NewConstants(namesIn(n, variable)...), func(k *Constants) error {
+		env := Env[Constant]{K: k, Variable: variable, Limits: limits, Lookup: k.Lookup}
+		img, err := env.image(n)
+		if err != nil {
+			return err
+		}
+		x, err := newOverField[Constant](k, k.Zero(), img, nil).simplest(context.Background())
+		f = Function{variable, x}
+		return err
+	})
+	return f, err
 }
 
-// NoNames is the Lookup of an Env in which no name has a rational value.
+// NoNames is the Lookup of an Env over Q: no name has a rational value.
 func NoNames(s Symbol) (algebra.Rat, error) {
-	return algebra.Rat{}, outsideQ(s)
+	return algebra.Rat{}, irrational(s.Pos(), "%s", s.Name)
 }
 
-// outsideQ is the error of a name where a rational number must stand.
-func outsideQ(s Symbol) *Error {
-	switch s.Name {
-	case "pi":
-		return Errorf(OutsideClass, s.Pos(), "pi is not covered: coefficients and data are rational numbers")
-	case "e":
-		return Errorf(OutsideClass, s.Pos(), "the name e has no value; the exponential is written exp(...)")
+// namesIn returns the names in a tree but that of the variable and of the roots
+// of sums, in order of appearance.
+func namesIn(n Node, variable string) []string {
+	var names []string
+	bound := map[string]bool{variable: true}
+	var visit func(n Node)
+	visit = func(n Node) {
+		switch v := n.(type) {
+		case Symbol:
+			if !bound[v.Name] {
+				bound[v.Name] = true
+				names = append(names, v.Name)
+			}
+		case RootSum:
+			if !bound[v.Var] {
+				bound[v.Var] = true
+				defer delete(bound, v.Var)
+			}
+		}
+		Children(n, func(c Node) bool {
+			visit(c)
+			return true
+		})
 	}
-	return Errorf(OutsideClass, s.Pos(), "the name %s has no value: symbols are not covered, coefficients and data are rational numbers", Quote(s.Name))
+	visit(n)
+	return names
 }
+
+// over returns f in its field, the zero function over Q for the zero value.
+func (f Function) over() exact {
+	if f.x == nil {
+		return newOverField[algebra.Rat](algebra.Q, algebra.Rat{}, Image[algebra.Rat]{}, nil)
+	}
+	return f.x
+}
+
+func (f Function) with(x exact) Function { return Function{f.variable, x} }
 
 // Variable returns the name of the independent variable.
 func (f Function) Variable() string { return f.variable }
 
 // Origin returns t0, the origin of the local time.
-func (f Function) Origin() *big.Rat { return f.origin.Big() }
+func (f Function) Origin() Node { return f.over().originNode() }
 
 // Constants returns the names of the free constants in f.
-func (f Function) Constants() []string {
+func (f Function) Constants() []string { return f.over().constants() }
+
+// Parameters returns the names of the symbols in f.
+func (f Function) Parameters() []string { return f.over().parameters() }
+
+// IsZero tells whether f is the zero function.
+func (f Function) IsZero() bool { return f.over().isZero() }
+
+// Initial returns f at its origin, without the free constants.
+func (f Function) Initial() Node { return f.over().initial() }
+
+// Add returns f + g. It panics when the variables or the origins differ.
+// Functions over different fields are taken to one that holds both.
+func (f Function) Add(g Function) Function {
+	x, y := f.together(g)
+	if f.variable != g.variable || !x.sameOrigin(y) {
+		panic("expr: sum of functions in different times")
+	}
+	return f.with(x.add(y))
+}
+
+// Scale returns x f.
+func (f Function) Scale(x *big.Rat) Function { return f.with(f.over().scale(algebra.RatFromBig(x))) }
+
+// Sub returns f - g. It panics when the variables or the origins differ.
+func (f Function) Sub(g Function) Function { return f.Add(g.Scale(big.NewRat(-1, 1))) }
+
+// Equal tells whether f and g are the same function, in the same variable and
+// with the same origin.
+func (f Function) Equal(g Function) bool {
+	x, y := f.together(g)
+	return f.variable == g.variable && x.sameOrigin(y) && x.equal(y)
+}
+
+// together returns f and g over one field.
+func (f Function) together(g Function) (x, y exact) {
+	x, y = f.over(), g.over()
+	a, b := x.field(), y.field()
+	if a == b || a != nil && b != nil && a.FunctionField == b.FunctionField {
+		return x, y
+	}
+	k, err := joined(a, b)
+	if err == nil {
+		ctx := context.Background()
+		if x, err = embed(ctx, x, k); err == nil {
+			y, err = embed(ctx, y, k)
+		}
+	}
+	if err != nil {
+		panic(err) // the algebraic numbers of both together are beyond the limit
+	}
+	return x, y
+}
+
+// embed returns x over a field that holds its own.
+func embed(ctx context.Context, x exact, k *Constants) (exact, error) {
+	m, err := newMapping(x.field(), k, nil)
+	if err != nil {
+		return nil, err
+	}
+	return x.mapped(ctx, k, m)
+}
+
+// Derivative returns df/dt.
+func (f Function) Derivative() Function { return f.with(f.over().derivative()) }
+
+// Integral returns the integral of f from the origin to t.
+func (f Function) Integral() Function { return f.with(f.over().integral()) }
+
+// TimesT returns t f(t).
+func (f Function) TimesT() Function { return f.with(f.over().timesT()) }
+
+// TimesExp returns e^(a (t - t0)) f(t), t0 the origin.
+func (f Function) TimesExp(a *big.Rat) Function {
+	return f.with(f.over().timesExp(algebra.RatFromBig(a)))
+}
+
+// At returns f(t) to the given number of significant digits, every one proven
+// and the last one rounded to nearest: "0.36787944", "12.069840", "5.0759e-435".
+// The value 0 is "0". The working precision is raised until the digits are
+// certain; values that are rational are recognised as such, so that it ends.
+// Up to 30,000 digits are given; fewer than one counts as one. Free constants
+// and symbols must have values.
+func (f Function) At(ctx context.Context, t *big.Rat, digits int) (string, error) {
+	if t == nil {
+		return "", errNoTime
+	}
+	if err := f.closed(); err != nil {
+		return "", err
+	}
+	return f.over().digits(ctx, t, digits)
+}
+
+// Enclose returns a ball around f(t), computed with the working precision prec
+// in bits.
+func (f Function) Enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.Ball, error) {
+	if t == nil {
+		return algebra.Ball{}, errNoTime
+	}
+	if err := f.closed(); err != nil {
+		return algebra.Ball{}, err
+	}
+	return f.over().enclose(ctx, t, prec)
+}
+
+// closed returns an error if a name in f has no value.
+func (f Function) closed() error {
+	if names := f.Constants(); len(names) > 0 {
+		return Errorf(SideConditions, Pos{}, "the free constant %s has no value", names[0])
+	}
+	if names := f.Parameters(); len(names) > 0 {
+		return Errorf(NeedsAssumption, Pos{}, "the symbol %s has no value", names[0])
+	}
+	return nil
+}
+
+func (f *overField[E]) field() *Constants {
+	c, _ := any(f.k).(*Constants)
+	return c
+}
+
+func (f *overField[E]) isZero() bool { return f.base.IsZero() && len(f.free) == 0 }
+
+func (f *overField[E]) constants() []string {
 	names := make([]string, len(f.free))
 	for i, t := range f.free {
 		names[i] = t.Name
@@ -89,27 +293,51 @@ func (f Function) Constants() []string {
 	return names
 }
 
-// IsZero tells whether f is the zero function.
-func (f Function) IsZero() bool { return f.base.IsZero() && len(f.free) == 0 }
+func (f *overField[E]) originNode() Node { return styleOf(f.k).Node(f.origin) }
 
-// Initial returns f at its origin, without the free constants.
-func (f Function) Initial() *big.Rat { return f.base.Initial().Big() }
+func (f *overField[E]) initial() Node { return styleOf(f.k).Node(f.base.Initial()) }
 
-// apply returns the function with g applied to every image.
-func (f Function) apply(g func(Image[algebra.Rat]) Image[algebra.Rat]) Function {
-	free := make([]FreeTerm, len(f.free))
-	for i, t := range f.free {
-		free[i] = FreeTerm{t.Name, g(t.Image)}
+// images returns all images of f, the base first.
+func (f *overField[E]) images() []Image[E] {
+	out := []Image[E]{f.base}
+	for _, t := range f.free {
+		out = append(out, t.Image)
 	}
-	return NewFunction(f.variable, f.origin, g(f.base), free...)
+	return out
 }
 
-// Add returns f + g. It panics when the variables or the origins differ.
-func (f Function) Add(g Function) Function {
-	if f.variable != g.variable || !f.origin.Equal(g.origin) {
-		panic("expr: sum of functions in different times")
+func (f *overField[E]) parameters() []string {
+	c, ok := any(f.k).(*Constants)
+	if !ok {
+		return nil
 	}
-	free := append([]FreeTerm(nil), f.free...)
+	all := []Constant{any(f.origin).(Constant)}
+	for _, m := range f.images() {
+		m := any(m).(Image[Constant])
+		all = append(all, m.num.Coefs()...)
+		for _, pp := range m.den {
+			all = append(all, pp.p.Coefs()...)
+		}
+	}
+	return c.SymbolsIn(all...)
+}
+
+// apply returns the function with g applied to every image.
+func (f *overField[E]) apply(g func(Image[E]) Image[E]) exact {
+	free := make([]FreeTerm[E], len(f.free))
+	for i, t := range f.free {
+		free[i] = FreeTerm[E]{t.Name, g(t.Image)}
+	}
+	return newOverField(f.k, f.origin, g(f.base), free)
+}
+
+func (f *overField[E]) sameOrigin(other exact) bool {
+	return f.k.Equal(f.origin, other.(*overField[E]).origin)
+}
+
+func (f *overField[E]) add(other exact) exact {
+	g := other.(*overField[E])
+	free := append([]FreeTerm[E](nil), f.free...)
 next:
 	for _, t := range g.free {
 		for i := range free {
@@ -120,99 +348,44 @@ next:
 		}
 		free = append(free, t)
 	}
-	return NewFunction(f.variable, f.origin, f.base.Add(g.base), free...)
+	return newOverField(f.k, f.origin, f.base.Add(g.base), free)
 }
 
-// Scale returns x f.
-func (f Function) Scale(x *big.Rat) Function {
-	r := algebra.RatFromBig(x)
-	return f.apply(func(m Image[algebra.Rat]) Image[algebra.Rat] { return m.Scale(r) })
+func (f *overField[E]) equal(other exact) bool {
+	return f.add(other.scale(algebra.RatFromInt(-1))).isZero()
 }
 
-// Sub returns f - g. It panics when the variables or the origins differ.
-func (f Function) Sub(g Function) Function { return f.Add(g.Scale(big.NewRat(-1, 1))) }
-
-// Equal tells whether f and g are the same function, in the same variable and
-// with the same origin.
-func (f Function) Equal(g Function) bool {
-	return f.variable == g.variable && f.origin.Equal(g.origin) && f.Sub(g).IsZero()
+func (f *overField[E]) scale(x algebra.Rat) exact {
+	return f.apply(func(m Image[E]) Image[E] { return m.Scale(f.k.FromRat(x)) })
 }
 
-// Derivative returns df/dt.
-func (f Function) Derivative() Function { return f.apply(Image[algebra.Rat].Derivative) }
+func (f *overField[E]) derivative() exact { return f.apply(Image[E].Derivative) }
 
-// Integral returns the integral of f from the origin to t.
-func (f Function) Integral() Function { return f.apply(Image[algebra.Rat].Integral) }
+func (f *overField[E]) integral() exact { return f.apply(Image[E].Integral) }
 
-// TimesT returns t f(t).
-func (f Function) TimesT() Function {
-	return f.apply(func(m Image[algebra.Rat]) Image[algebra.Rat] {
-		return m.TimesT().Add(m.Scale(f.origin))
-	})
+func (f *overField[E]) timesT() exact {
+	return f.apply(func(m Image[E]) Image[E] { return m.TimesT().Add(m.Scale(f.origin)) })
 }
 
-// TimesExp returns e^(a (t - t0)) f(t), t0 the origin.
-func (f Function) TimesExp(a *big.Rat) Function {
-	r := algebra.RatFromBig(a)
-	return f.apply(func(m Image[algebra.Rat]) Image[algebra.Rat] { return m.TimesExp(r) })
+func (f *overField[E]) timesExp(a algebra.Rat) exact {
+	return f.apply(func(m Image[E]) Image[E] { return m.TimesExp(f.k.FromRat(a)) })
 }
 
-// With returns f with values for free constants; names that f does not contain
-// are ignored.
-func (f Function) With(values map[string]*big.Rat) Function {
-	base := f.base
-	var free []FreeTerm
-	for _, t := range f.free {
-		if v, ok := values[t.Name]; ok {
-			base = base.Add(t.Image.Scale(algebra.RatFromBig(v)))
-		} else {
-			free = append(free, t)
-		}
-	}
-	return NewFunction(f.variable, f.origin, base, free...)
-}
-
-// At returns f(t) to the given number of significant digits, every one proven
-// and the last one rounded to nearest: "0.36787944", "12.069840", "5.0759e-435".
-// The value 0 is "0". The working precision is raised until the digits are
-// certain; values that are rational are recognised as such, so that it ends.
-// Up to 30,000 digits are given; fewer than one counts as one.
-func (f Function) At(ctx context.Context, t *big.Rat, digits int) (string, error) {
-	if t == nil {
-		return "", errNoTime
-	}
-	if err := f.noFree(); err != nil {
-		return "", err
-	}
-	values, err := f.cache.digits(ctx, []Image[algebra.Rat]{f.base}, algebra.RatFromBig(t).Sub(f.origin), digits)
+func (f *overField[E]) digits(ctx context.Context, t *big.Rat, digits int) (string, error) {
+	values, err := f.cache.digits(ctx, f.k, []Image[E]{f.base}, f.k.Sub(f.k.FromRat(algebra.RatFromBig(t)), f.origin), digits)
 	if err != nil {
 		return "", err
 	}
 	return values[0], nil
 }
 
-// Enclose returns a ball around f(t), computed with the working precision prec
-// in bits.
-func (f Function) Enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.Ball, error) {
-	if t == nil {
-		return algebra.Ball{}, errNoTime
-	}
-	if err := f.noFree(); err != nil {
-		return algebra.Ball{}, err
-	}
+func (f *overField[E]) enclose(ctx context.Context, t *big.Rat, prec uint) (algebra.Ball, error) {
 	if f.base.IsZero() {
 		return algebra.Ball{}, nil
 	}
-	balls, err := f.cache.balls(ctx, []Image[algebra.Rat]{f.base}, algebra.RatFromBig(t).Sub(f.origin), prec)
+	balls, err := f.cache.balls(ctx, f.k, []Image[E]{f.base}, f.k.Sub(f.k.FromRat(algebra.RatFromBig(t)), f.origin), prec)
 	if err != nil {
 		return algebra.Ball{}, err
 	}
 	return balls[0], nil
-}
-
-func (f Function) noFree() error {
-	if len(f.free) > 0 {
-		return Errorf(SideConditions, Pos{}, "the free constant %s has no value", f.free[0].Name)
-	}
-	return nil
 }

@@ -84,6 +84,16 @@ func FuzzFunction(f *testing.F) {
 		if !g.Integral().Derivative().Equal(g) {
 			t.Fatalf("%q: the derivative of the integral is another function", src)
 		}
+		values := map[string]*big.Rat{}
+		for i, name := range g.Parameters() {
+			values[name] = big.NewRat(int64(2*i+1), 3)
+		}
+		if g, err = g.With(values); err != nil {
+			if !errors.As(err, &e) {
+				t.Fatalf("untyped error %v", err)
+			}
+			return
+		}
 		ctx, cancel := context.WithTimeout(context.Background(), 20*time.Second)
 		defer cancel()
 		for _, x := range []*big.Rat{new(big.Rat), big.NewRat(1, 2), big.NewRat(-3, 1)} {

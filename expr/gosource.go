@@ -50,24 +50,38 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	if len(names) != len(fs) {
 		panic(fmt.Sprintf("expr: Go source of %d functions with %d names", len(fs), len(names)))
 	}
-	g := goWriter{opt: opt, names: names, constants: constants, time: "t"}
+	if len(fs) == 0 || fs[0].over().field() == nil {
+		return goSource[algebra.Rat](ctx, names, fs, constants, opt)
+	}
+	return goSource[Constant](ctx, names, fs, constants, opt)
+}
+
+func goSource[E any](ctx context.Context, names []string, fs []Function, constants []string, opt GoOptions) ([]byte, error) {
+	g := goWriter[E]{opt: opt, names: names, constants: constants, time: "t"}
 	for _, f := range fs {
-		for _, t := range f.free {
+		x, ok := f.over().(*overField[E])
+		if !ok || f.variable != fs[0].variable || len(g.fs) > 0 && !x.sameOrigin(g.fs[0]) {
+			panic("expr: Go source of functions in different times or over different fields")
+		}
+		if names := f.Parameters(); len(names) > 0 {
+			return nil, Errorf(NeedsAssumption, Pos{}, "the symbol %s has no value", names[0])
+		}
+		g.k = x.k
+		g.fs = append(g.fs, x)
+		for _, t := range x.free {
 			g.images = append(g.images, t.Image)
 		}
-		g.images = append(g.images, f.base)
+		g.images = append(g.images, x.base)
 	}
-	if len(fs) > 0 && !fs[0].origin.IsZero() {
+	if len(fs) > 0 && !g.k.IsZero(g.fs[0].origin) {
 		g.time = "tau"
-		if err := finite([]float64{fs[0].origin.Float64()}); err != nil {
+		var err error
+		if g.origin, err = g.float(g.fs[0].origin); err != nil {
 			return nil, err
 		}
 	}
 	bodies := make([]string, len(fs))
-	for i, f := range fs {
-		if f.variable != fs[0].variable || !f.origin.Equal(fs[0].origin) {
-			panic("expr: Go source of functions in different times")
-		}
+	for i, f := range g.fs {
 		var err error
 		if bodies[i], err = g.function(ctx, f); err != nil {
 			return nil, err
@@ -76,42 +90,55 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	return format.Source([]byte(g.file(fs, bodies)))
 }
 
+// float returns the float64 nearest to an element of the field.
+func (g *goWriter[E]) float(x E) (float64, error) {
+	for prec := uint(128); prec <= mostPrecision; prec *= 2 {
+		if y, ok := roundBall(g.k.Enclose(x, prec), 0, prec); ok {
+			return y, finite([]float64{y})
+		}
+	}
+	return 0, errRounding
+}
+
 // mostComment is the length up to which a closed form is repeated in a comment.
 const mostComment = 4000
 
 // goWriter collects the rates that the functions share.
-type goWriter struct {
+type goWriter[E any] struct {
+	k         algebra.Scalars[E]
 	opt       GoOptions
+	fs        []*overField[E]
 	names     []string
+	origin    float64
 	constants []string
 	time      string // t, or tau for a local time
-	rates     []goRate
-	images    []Image[algebra.Rat] // of all functions: the free constants', then the base
-	cache     expansions
+	rates     []goRate[E]
+	images    []Image[E] // of all functions: the free constants', then the base
+	cache     expansions[E]
 	done      int       // images written
 	sizes     []float64 // of each function without free constants: the sum of the coefficients' sizes
 }
 
 // goRate is a pair of conjugate rates, or a real one.
-type goRate struct {
-	p      algebra.Poly[algebra.Rat]
+type goRate[E any] struct {
+	p      algebra.Poly[E]
 	root   int
 	re, im float64
 }
 
 // rate returns the index of a rate in the list, entering it if it is new.
-func (g *goWriter) rate(p algebra.Poly[algebra.Rat], root int, re, im float64) int {
+func (g *goWriter[E]) rate(p algebra.Poly[E], root int, re, im float64) int {
 	for i, r := range g.rates {
 		if r.root == root && r.p.Equal(p) {
 			return i
 		}
 	}
-	g.rates = append(g.rates, goRate{p, root, re, im})
+	g.rates = append(g.rates, goRate[E]{p, root, re, im})
 	return len(g.rates) - 1
 }
 
 // function returns the expression of f.
-func (g *goWriter) function(ctx context.Context, f Function) (string, error) {
+func (g *goWriter[E]) function(ctx context.Context, f *overField[E]) (string, error) {
 	var sum goSum
 	for _, t := range f.free {
 		s, _, err := g.image(ctx)
@@ -166,7 +193,7 @@ type goTerm struct {
 
 // image returns the expression of the next image, entering its rates, and the
 // sum of the sizes of its coefficients.
-func (g *goWriter) image(ctx context.Context) (string, float64, error) {
+func (g *goWriter[E]) image(ctx context.Context) (string, float64, error) {
 	terms, err := g.terms(ctx, g.done)
 	g.done++
 	if err != nil {
@@ -214,7 +241,7 @@ func allZero(c []float64) bool {
 
 // addProduct adds a polynomial in time, in Horner's form, times the factors
 // that are not empty.
-func (g *goWriter) addProduct(sum *goSum, c []float64, factors ...string) {
+func (g *goWriter[E]) addProduct(sum *goSum, c []float64, factors ...string) {
 	if allZero(c) {
 		return
 	}
@@ -256,15 +283,16 @@ func goFloat(x float64) string { return strconv.FormatFloat(x, 'g', -1, 64) }
 
 // terms returns the terms of an image with correctly rounded constants, in the order
 // of the written form.
-func (g *goWriter) terms(ctx context.Context, image int) ([]goTerm, error) {
+func (g *goWriter[E]) terms(ctx context.Context, image int) ([]goTerm, error) {
 	f := g.images[image]
 	order := make([]int, len(f.den))
 	for i := range order {
 		order[i] = i
 	}
-	sort.SliceStable(order, func(a, b int) bool { return before(f.den[order[a]].p, f.den[order[b]].p) })
+	w := presenter[E]{k: g.k, style: styleOf(g.k)}
+	sort.SliceStable(order, func(a, b int) bool { return w.before(f.den[order[a]].p, f.den[order[b]].p) })
 	for prec := uint(128); prec <= mostPrecision; prec *= 2 {
-		x, err := g.cache.get(ctx, g.images, prec)
+		x, err := g.cache.get(ctx, g.k, g.images, prec)
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
@@ -279,7 +307,11 @@ func (g *goWriter) terms(ctx context.Context, image int) ([]goTerm, error) {
 			var exact []float64
 			if pp.p.Degree() == 1 {
 				for _, c := range f.local(i).c {
-					exact = append(exact, constantTerm(c).Float64())
+					y, err := g.float(coef[E](g.k, c, 0))
+					if err != nil {
+						return nil, err
+					}
+					exact = append(exact, y)
 				}
 			}
 			for r := range roots.Len() {
@@ -323,16 +355,10 @@ func (g *goWriter) terms(ctx context.Context, image int) ([]goTerm, error) {
 			return out, nil
 		}
 	}
-	return nil, Errorf(LimitExceeded, Pos{}, "a constant of the formula needs more than %d bits to be rounded", mostPrecision)
+	return nil, errRounding
 }
 
-// constantTerm returns the coefficient of s^0.
-func constantTerm(p algebra.Poly[algebra.Rat]) algebra.Rat {
-	if p.IsZero() {
-		return algebra.Rat{}
-	}
-	return p.Coef(0)
-}
+var errRounding = Errorf(LimitExceeded, Pos{}, "a constant of the formula needs more than %d bits to be rounded", mostPrecision)
 
 // finite returns an error if a constant of the formula is beyond float64.
 func finite(constants []float64) error {
@@ -364,13 +390,13 @@ func roundBall(b algebra.Ball, shift int64, prec uint) (float64, bool) {
 }
 
 // file assembles the source.
-func (g *goWriter) file(fs []Function, bodies []string) string {
+func (g *goWriter[E]) file(fs []Function, bodies []string) string {
 	var b strings.Builder
 	line := func(format string, args ...any) { fmt.Fprintf(&b, format+"\n", args...) }
 	state := g.opt.Func + "State"
-	variable, origin := "t", algebra.Rat{}
+	variable := "t"
 	if len(fs) > 0 {
-		variable, origin = fs[0].variable, fs[0].origin
+		variable = fs[0].variable
 	}
 	line("// Package %s evaluates a closed-form response.", g.opt.Package)
 	for i, d := range g.opt.Doc {
@@ -406,7 +432,7 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 			line("//\t%s", l)
 		}
 	}
-	g.warn(fs, fields, line)
+	g.warn(fields, line)
 	arg := ""
 	if n := len(g.constants); n > 0 {
 		line("//\n// c holds the constants %s.", inert(strings.Join(g.constants, ", ")))
@@ -419,7 +445,7 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
 	default:
 		line("func %s(t float64%s) %s {", g.opt.Func, arg, state)
-		line("tau := t - %s", goFloat(origin.Float64()))
+		line("tau := t - %s", goFloat(g.origin))
 	}
 	for _, u := range used {
 		line("%s", u)
@@ -434,7 +460,7 @@ func (g *goWriter) file(fs []Function, bodies []string) string {
 
 // factors returns the definitions of the exponentials, sines and cosines that
 // occur in the expressions.
-func (g *goWriter) factors(all string) []string {
+func (g *goWriter[E]) factors(all string) []string {
 	var lines []string
 	for i, r := range g.rates {
 		e, s, c := fmt.Sprintf("e%d", i+1), fmt.Sprintf("s%d", i+1), fmt.Sprintf("c%d", i+1)
@@ -456,10 +482,12 @@ func (g *goWriter) factors(all string) []string {
 
 // warn says where the terms of a function are much larger than the values that
 // the functions start from, so that their rounding errors may be as well.
-func (g *goWriter) warn(fs []Function, fields []string, line func(string, ...any)) {
+func (g *goWriter[E]) warn(fields []string, line func(string, ...any)) {
 	start := 0.0
-	for _, f := range fs {
-		start = max(start, math.Abs(f.base.Initial().Float64()))
+	for _, f := range g.fs {
+		if x, err := g.float(f.base.Initial()); err == nil {
+			start = max(start, math.Abs(x))
+		}
 	}
 	if start == 0 {
 		start = 1
@@ -473,7 +501,7 @@ func (g *goWriter) warn(fs []Function, fields []string, line func(string, ...any
 }
 
 // times returns x times the time.
-func (g *goWriter) times(x float64) string {
+func (g *goWriter[E]) times(x float64) string {
 	switch x {
 	case 1:
 		return g.time

@@ -124,7 +124,7 @@ func TestGoSourceValues(t *testing.T) {
 		fs := []expr.Function{f, h}
 		if round%3 == 0 { // the same in a local time
 			origin := algebra.NewRat(1, 2)
-			fs = []expr.Function{expr.NewFunction("t", origin, g.image(t)), expr.NewFunction("t", origin, g.image(t))}
+			fs = []expr.Function{expr.NewFunction[algebra.Rat](algebra.Q, "t", origin, g.image(t)), expr.NewFunction[algebra.Rat](algebra.Q, "t", origin, g.image(t))}
 		}
 		file := checkGo(t, goSource(t, []string{"x", "y"}, fs, nil, expr.GoOptions{}))
 		for _, x := range []*big.Rat{new(big.Rat), big.NewRat(1, 2), big.NewRat(-3, 4), big.NewRat(2, 1)} {
@@ -184,20 +184,20 @@ func TestGoSourceCompiles(t *testing.T) {
 			image = elementaryOf(t, src).Image()
 		}
 		for _, origin := range []algebra.Rat{algebra.NewRat(2, 1), algebra.NewRat(-1, 3)} {
-			f := expr.NewFunction("tau", origin, image, expr.FreeTerm{Name: "C1", Image: image}, expr.FreeTerm{Name: "C2", Image: elementaryOf(t, "exp(-2*t)").Image()})
+			f := expr.NewFunction[algebra.Rat](algebra.Q, "tau", origin, image, expr.FreeTerm[algebra.Rat]{Name: "C1", Image: image}, expr.FreeTerm[algebra.Rat]{Name: "C2", Image: elementaryOf(t, "exp(-2*t)").Image()})
 			file := checkGo(t, goSource(t, []string{"x"}, []expr.Function{f}, []string{"C1", "C2"}, expr.GoOptions{}))
-			with := f.With(map[string]*big.Rat{"C1": big.NewRat(3, 1), "C2": big.NewRat(-1, 2)})
+			with := valued(t, f, map[string]*big.Rat{"C1": big.NewRat(3, 1), "C2": big.NewRat(-1, 2)})
 			want := floatAt(t, with, big.NewRat(1, 4))
 			require.InDelta(t, want, goValues(t, file, 0.25, 3, -0.5)["X"], 1e-12*(1+math.Abs(want)), src)
 		}
 	}
 	checkGo(t, goSource(t, nil, nil, nil, expr.GoOptions{}))
 
-	f := expr.NewFunction("t", algebra.Rat{}, expr.Image[algebra.Rat]{}, expr.FreeTerm{Name: "C1", Image: elementaryOf(t, "exp(t)").Image()})
+	f := expr.NewFunction[algebra.Rat](algebra.Q, "t", algebra.Rat{}, expr.Image[algebra.Rat]{}, expr.FreeTerm[algebra.Rat]{Name: "C1", Image: elementaryOf(t, "exp(t)").Image()})
 	_, err := expr.GoSource(t.Context(), []string{"x"}, []expr.Function{f}, []string{"C2"}, expr.GoOptions{})
 	assert.Equal(t, expr.SideConditions, faultOf(t, err).kind)
 	assert.Panics(t, func() {
-		local := expr.NewFunction("t", algebra.NewRat(1, 1), elementaryOf(t, "t").Image())
+		local := expr.NewFunction[algebra.Rat](algebra.Q, "t", algebra.NewRat(1, 1), elementaryOf(t, "t").Image())
 		_, _ = expr.GoSource(t.Context(), []string{"x", "y"}, []expr.Function{function(t, "t"), local}, nil, expr.GoOptions{})
 	})
 }

@@ -1,8 +1,10 @@
 package expr
 
 import (
+	"fmt"
 	"math"
 	"math/big"
+	"slices"
 	"sort"
 
 	"example.org/closedform/algebra"
@@ -12,10 +14,16 @@ import (
 // sines and cosines with their coefficients in radicals, and sums over named
 // roots where a factor of the denominator has degree 3 or more. Slowly decaying
 // terms come first.
-func (f Function) Node() Node {
-	w := presenter{time: timeNode(f.variable, f.origin), variable: Sym(f.variable), origin: f.origin, root: "z"}
-	if f.variable == "z" {
+func (f Function) Node() Node { return f.over().node(f.variable) }
+
+func (f *overField[E]) node(variable string) Node {
+	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin, root: "z"}
+	w.time = w.timeNode()
+	for n := 1; variable == w.root || slices.Contains(f.parameters(), w.root); n++ {
 		w.root = "r"
+		if n > 1 {
+			w.root = fmt.Sprintf("r%d", n)
+		}
 	}
 	var terms []Node
 	for _, t := range f.free {
@@ -31,30 +39,29 @@ func (f Function) String() string { return f.Node().String() }
 func (f Function) LaTeX() string { return LaTeX(f.Node()) }
 
 // timeNode returns the variable minus the origin.
-func timeNode(variable string, origin algebra.Rat) Node {
-	switch origin.Sign() {
-	case 0:
-		return Sym(variable)
-	case 1:
-		return Sum{Terms: []Node{Sym(variable), Neg{X: Num(origin)}}}
+func (w presenter[E]) timeNode() Node {
+	if w.k.IsZero(w.origin) {
+		return w.variable
 	}
-	return Sum{Terms: []Node{Sym(variable), Num(origin.Neg())}}
+	return Add(w.variable, signed(Negate(w.Node(w.origin))))
 }
 
 // presenter turns the local parts of images into trees.
-type presenter struct {
+type presenter[E any] struct {
+	k algebra.Scalars[E]
+	style[E]
 	time     Node // t, or t - t0
 	variable Node
-	origin   algebra.Rat
+	origin   E
 	root     string // the name of roots
 }
 
-func (w presenter) image(f Image[algebra.Rat]) Node {
+func (w presenter[E]) image(f Image[E]) Node {
 	order := make([]int, len(f.den))
 	for i := range order {
 		order[i] = i
 	}
-	sort.SliceStable(order, func(a, b int) bool { return before(f.den[order[a]].p, f.den[order[b]].p) })
+	sort.SliceStable(order, func(a, b int) bool { return w.before(f.den[order[a]].p, f.den[order[b]].p) })
 	var terms []Node
 	for _, i := range order {
 		switch f.den[i].p.Degree() {
@@ -71,13 +78,13 @@ func (w presenter) image(f Image[algebra.Rat]) Node {
 
 // before orders factors for reading: degree 1 and 2 before the others, then by
 // falling real part of the leading root, rising frequency, and the text.
-func before(p, q algebra.Poly[algebra.Rat]) bool {
+func (w presenter[E]) before(p, q algebra.Poly[E]) bool {
 	if (p.Degree() > 2) != (q.Degree() > 2) {
 		return q.Degree() > 2
 	}
 	if p.Degree() <= 2 {
-		pr, pi := leadingRoot(p)
-		qr, qi := leadingRoot(q)
+		pr, pi := w.leadingRoot(p)
+		qr, qi := w.leadingRoot(q)
 		if pr != qr {
 			return pr > qr
 		}
@@ -88,7 +95,7 @@ func before(p, q algebra.Poly[algebra.Rat]) bool {
 		return p.Degree() < q.Degree()
 	}
 	for i := max(p.Degree(), q.Degree()); i >= 0; i-- {
-		if c := p.Coef(i).Compare(q.Coef(i)); c != 0 {
+		if c := w.Compare(p.Coef(i), q.Coef(i)); c != 0 {
 			return c < 0
 		}
 	}
@@ -97,37 +104,53 @@ func before(p, q algebra.Poly[algebra.Rat]) bool {
 
 // leadingRoot approximates the root of largest real part of a polynomial of
 // degree 1 or 2, for ordering only.
-func leadingRoot(p algebra.Poly[algebra.Rat]) (re, im float64) {
+func (w presenter[E]) leadingRoot(p algebra.Poly[E]) (re, im float64) {
 	if p.Degree() == 1 {
-		return p.Coef(0).Neg().Float64(), 0
+		return w.approximate(w.k.Neg(p.Coef(0))), 0
 	}
-	h, d := algebra.Quadratic(p)
-	if d.Sign() < 0 {
-		return h.Float64(), math.Sqrt(-d.Float64())
+	h, d := quadraticRoots(w.k, p)
+	a, b := w.approximate(h), w.approximate(d)
+	if b < 0 {
+		return a, math.Sqrt(-b)
 	}
-	re = h.Float64() + math.Sqrt(d.Float64())
+	re = a + math.Sqrt(b)
 	if math.IsNaN(re) { // beyond float64 on both sides
 		re = math.Inf(-1)
 	}
 	return re, 0
 }
 
-// linear presents P(t) e^(at) with rational a.
-func (w presenter) linear(part localPart[algebra.Rat]) Node {
-	coefs := make([]algebra.Rat, len(part.c))
-	for k, c := range part.c {
-		coefs[k] = c.Add(algebra.Constant[algebra.Rat](algebra.Q, algebra.Rat{})).Coef(0)
+// quadraticRoots returns h and d with h +- sqrt(d) the roots of the monic
+// polynomial p of degree 2.
+func quadraticRoots[E any](k algebra.Scalars[E], p algebra.Poly[E]) (h, d E) {
+	h = k.Mul(p.Coef(1), k.FromRat(algebra.NewRat(-1, 2)))
+	return h, k.Sub(k.Mul(h, h), p.Coef(0))
+}
+
+// coef returns the coefficient of s^i in p, which may be the zero value.
+func coef[E any](k algebra.Ring[E], p algebra.Poly[E], i int) E {
+	if i > p.Degree() {
+		return k.Zero()
 	}
-	p := algebra.NewPoly[algebra.Rat](algebra.Q, coefs...)
-	rate := part.p.Coef(0).Neg()
-	if rate.IsZero() { // in t itself
-		return PolyNode(p.Translate(w.origin.Neg()), w.variable)
+	return p.Coef(i)
+}
+
+// linear presents P(t) e^(at) with a in the field.
+func (w presenter[E]) linear(part localPart[E]) Node {
+	coefs := make([]E, len(part.c))
+	for i, c := range part.c {
+		coefs[i] = coef(w.k, c, 0)
 	}
-	return w.scaled(p, w.exp(Num(rate)))
+	p := algebra.NewPoly[E](w.k, coefs...)
+	rate := w.k.Neg(part.p.Coef(0))
+	if w.k.IsZero(rate) { // in t itself
+		return w.poly(p.Translate(w.k.Neg(w.origin)), w.variable)
+	}
+	return w.scaled(p, w.exp(w.Node(rate)))
 }
 
 // exp returns e^(rate t), nothing for the rate 0.
-func (w presenter) exp(rate Node) Node {
+func (w presenter[E]) exp(rate Node) Node {
 	if isNumber(rate, 0) {
 		return Int(1)
 	}
@@ -136,109 +159,162 @@ func (w presenter) exp(rate Node) Node {
 
 // scaled returns P(t) times the factors, with the rational content of P in
 // front.
-func (w presenter) scaled(p algebra.Poly[algebra.Rat], factors ...Node) Node {
-	content, prim := contentOf(p, w.time)
-	return Mul(append([]Node{Num(content), prim}, factors...)...)
+func (w presenter[E]) scaled(p algebra.Poly[E], factors ...Node) Node {
+	content, prim := w.contentOf(p, w.time)
+	return Mul(append([]Node{w.Node(content), prim}, factors...)...)
 }
 
-func (w presenter) power(i int) Node {
+func (w presenter[E]) power(i int) Node {
 	if i == 0 {
 		return Int(1)
 	}
 	return Pow(w.time, i)
 }
 
-// contentOf writes p, not zero, as a rational content times a primitive integer
-// polynomial in v. Its leading coefficient is positive, unless its lowest one is
-// and it reads better in ascending order: 1 - t.
-func contentOf(p algebra.Poly[algebra.Rat], v Node) (content algebra.Rat, prim Node) {
-	content = contentOfRats(p.Coefs()...)
-	minus, ascending := writtenSign(p)
-	if minus {
-		content = content.Neg()
+// poly writes a polynomial in v, highest power first.
+func (w presenter[E]) poly(p algebra.Poly[E], v Node) Node {
+	var terms []Node
+	for i := p.Degree(); i >= 0; i-- {
+		if c := p.Coef(i); !w.k.IsZero(c) {
+			terms = append(terms, w.term(c, v, i))
+		}
 	}
-	q := p.Scale(content.Inv())
+	return Add(terms...)
+}
+
+func (w presenter[E]) term(c E, v Node, i int) Node {
+	if i == 0 {
+		return signed(w.Node(c))
+	}
+	return Mul(w.Node(c), Pow(v, i))
+}
+
+// contentOf writes p, not zero, as a content times a primitive polynomial in v.
+// Its leading coefficient is positive, unless its lowest one is and it reads
+// better in ascending order: 1 - t.
+func (w presenter[E]) contentOf(p algebra.Poly[E], v Node) (content E, prim Node) {
+	content = w.Content(p.Coefs()...)
+	minus, ascending := w.writtenSign(p)
+	if minus {
+		content = w.k.Neg(content)
+	}
+	q := p.Scale(w.inverse(content))
 	if !ascending {
-		return content, PolyNode(q, v)
+		return content, w.poly(q, v)
 	}
 	var terms []Node
 	for i := range q.Degree() + 1 {
-		switch c := q.Coef(i); {
-		case c.IsZero():
-		case i == 0:
-			terms = append(terms, Num(c))
-		default:
-			terms = append(terms, Mul(Num(c), Pow(v, i)))
+		if c := q.Coef(i); !w.k.IsZero(c) {
+			terms = append(terms, w.term(c, v, i))
 		}
 	}
 	return content, Add(terms...)
 }
 
-// contentOfRats returns the positive rational c such that the x/c are coprime
-// integers, 1 when all are 0.
-func contentOfRats(x ...algebra.Rat) algebra.Rat {
-	num, den := new(big.Int), big.NewInt(1)
-	var g big.Int
-	for _, c := range x {
-		num.GCD(nil, nil, num, c.Abs().Num())
-		d := c.Den()
-		g.GCD(nil, nil, den, d)
-		den.Mul(den, d.Quo(d, &g))
+func (w presenter[E]) inverse(x E) E {
+	inv, err := w.k.Inv(x)
+	if err != nil {
+		panic(err) // contents and leading coefficients are not zero
 	}
-	if num.Sign() == 0 {
-		return algebra.RatFromInt(1)
-	}
-	return algebra.RatFromFrac(num, den)
+	return inv
 }
 
 // quadratic presents the part of an irreducible p with the roots h +- sqrt(d):
 // a damped oscillation for d < 0; two exponentials for d > 0, or a hyperbolic
-// cosine or sine where one is enough.
-func (w presenter) quadratic(part localPart[algebra.Rat]) Node {
-	h, d := algebra.Quadratic(part.p)
-	c, m := algebra.SqrtParts(d.Abs())
-	// On the class of s, h + r with r^2 = d, c[k] is u[k] + v[k] r.
-	u := make([]algebra.Rat, len(part.c))
-	v := make([]algebra.Rat, len(part.c))
-	for k, x := range part.c {
-		x = x.Add(algebra.Constant[algebra.Rat](algebra.Q, algebra.Rat{}))
-		u[k], v[k] = x.Coef(0).Add(x.Coef(1).Mul(h)), x.Coef(1)
-	}
-	// For d < 0, twice the real part of (u + v i w)(cos wt + i sin wt), and for
-	// d > 0 the sum of (u +- v w) e^(+-wt), w = c sqrt(m).
-	two := algebra.RatFromInt(2)
-	a := algebra.NewPoly[algebra.Rat](algebra.Q, u...).Scale(two)
-	b := algebra.NewPoly[algebra.Rat](algebra.Q, v...).Scale(two.Mul(c))
-	root := sqrtNode(m)
-	angle := Mul(Num(c), root, w.time)
-	exp := w.exp(Num(h))
+// cosine or sine where one is enough. Where the sign of d is open, hyperbolic
+// functions of sqrt(d) t are right for either: cosh and sinh(sqrt(d) t)/sqrt(d)
+// are entire functions of d.
+func (w presenter[E]) quadratic(part localPart[E]) Node {
+	q := w.quadraticPart(part)
+	angle := Mul(w.times(q.c, q.root), w.time)
+	exp := w.exp(w.Node(q.h))
 	cos, sin := Apply("cos", angle), Apply("sin", angle)
-	if d.Sign() > 0 {
-		if !a.IsZero() && !b.IsZero() {
-			return Add(w.branch(h, u, v, c, m), w.branch(h, u, v, c.Neg(), m))
+	root := q.root
+	switch {
+	case !q.decided:
+		cos, sin = Apply("cosh", angle), Div(Apply("sinh", angle), root)
+		root = Int(1)
+	case q.sign > 0:
+		if !q.a.IsZero() && !q.b.IsZero() {
+			return Add(w.branch(q, q.c), w.branch(q, w.k.Neg(q.c)))
 		}
 		cos, sin = Apply("cosh", angle), Apply("sinh", angle)
-	} else {
-		b = b.Neg()
 	}
 	switch {
-	case b.IsZero():
-		return w.scaled(a, exp, cos)
-	case a.IsZero():
-		return w.scaled(b, root, exp, sin)
-	case h.IsZero():
-		return Add(w.scaled(a, cos), w.scaled(b, root, sin))
+	case q.b.IsZero():
+		return w.scaled(q.a, exp, cos)
+	case q.a.IsZero():
+		return w.scaled(q.b, root, exp, sin)
+	case w.k.IsZero(q.h):
+		return Add(w.scaled(q.a, cos), w.scaled(q.b, root, sin))
 	}
 	// A common content in front, unless it makes the parts longer.
-	content := contentOfRats(append(a.Coefs(), b.Coefs()...)...)
-	if minus, _ := writtenSign(a); minus {
-		content = content.Neg()
+	content := w.Content(append(q.a.Coefs(), q.b.Coefs()...)...)
+	if minus, _ := w.writtenSign(q.a); minus {
+		content = w.k.Neg(content)
 	}
-	inv := content.Inv()
+	inv := w.inverse(content)
 	return shorter(
-		Mul(Num(content), exp, Add(w.scaled(a.Scale(inv), cos), w.scaled(b.Scale(inv), root, sin))),
-		Mul(exp, Add(w.scaled(a, cos), w.scaled(b, root, sin))),
+		Mul(w.Node(content), exp, Add(w.scaled(q.a.Scale(inv), cos), w.scaled(q.b.Scale(inv), root, sin))),
+		Mul(exp, Add(w.scaled(q.a, cos), w.scaled(q.b, root, sin))),
 	)
+}
+
+// quadraticPart is the part of a prime with the roots h +- sqrt(d) in the
+// coefficients in which it is written, d = +-(c root)^2: with w = c root,
+//
+//	e^(ht) (a(t) cos wt + b(t) root sin wt)          for d < 0
+//	e^(ht) (a(t) cosh wt + b(t) root sinh wt)        for d > 0
+//	e^(ht) (a(t) cosh wt + b(t) sinh(wt)/root)       where the sign is open
+//
+// or for d > 0 the sum of (u + v r) e^((h + r) t) over r = +-w.
+type quadraticPart[E any] struct {
+	h, c    E
+	root    Node
+	sign    int
+	decided bool
+	u, v    []E
+	a, b    algebra.Poly[E]
+}
+
+func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
+	k := w.k
+	h, d := quadraticRoots(k, part.p)
+	q := quadraticPart[E]{h: h}
+	q.sign, q.decided = w.weakSign(d)
+	size := d
+	if q.sign < 0 {
+		size = k.Neg(d)
+	}
+	q.c, q.root = w.sqrt(size)
+	// On the class of s, h + r with r^2 = d, c[k] is u[k] + v[k] r.
+	q.u, q.v = make([]E, len(part.c)), make([]E, len(part.c))
+	for i, x := range part.c {
+		q.v[i] = coef(k, x, 1)
+		q.u[i] = k.Add(coef(k, x, 0), k.Mul(q.v[i], h))
+	}
+	// For d < 0, twice the real part of (u + v i w)(cos wt + i sin wt), and for
+	// d > 0 the sum of (u +- v w) e^(+-wt).
+	two := k.FromInt(2)
+	q.a = algebra.NewPoly[E](k, q.u...).Scale(two)
+	q.b = algebra.NewPoly[E](k, q.v...).Scale(k.Mul(two, q.c))
+	switch {
+	case !q.decided:
+		// v w sinh wt = v c root^2 (sinh(wt)/root)
+		q.b = q.b.Scale(k.Mul(d, w.inverse(k.Mul(q.c, q.c))))
+	case q.sign < 0:
+		q.b = q.b.Neg()
+	}
+	return q
+}
+
+// times returns x root as one quotient.
+func (w presenter[E]) times(x E, root Node) Node {
+	n := w.Node(x)
+	if q, ok := n.(Quotient); ok {
+		return Div(Mul(q.Num, root), q.Den)
+	}
+	return Mul(n, root)
 }
 
 // shorter returns the tree with the shorter text, the first if both are equal.
@@ -251,27 +327,27 @@ func shorter(a, b Node) Node {
 
 // writtenSign tells whether p, not zero, is written with a minus sign in front,
 // or in ascending order to avoid it.
-func writtenSign(p algebra.Poly[algebra.Rat]) (minus, ascending bool) {
-	if p.Lead().Sign() > 0 {
+func (w presenter[E]) writtenSign(p algebra.Poly[E]) (minus, ascending bool) {
+	if !w.k.Negative(p.Lead()) {
 		return false, false
 	}
 	low := 0
-	for p.Coef(low).IsZero() {
+	for w.k.IsZero(p.Coef(low)) {
 		low++
 	}
-	ascending = p.Coef(low).Sign() > 0
+	ascending = !w.k.Negative(p.Coef(low))
 	return !ascending, ascending
 }
 
-// branch presents (sum of (u[k] + v[k] r) t^k) e^((h + r) t) with r = c sqrt(m).
-func (w presenter) branch(h algebra.Rat, u, v []algebra.Rat, c algebra.Rat, m *big.Int) Node {
-	exp := w.exp(surdNode(h, c, m))
-	if len(u) == 1 {
-		return Mul(surdNode(u[0], v[0].Mul(c), m), exp)
+// branch presents (sum of (u[k] + v[k] r) t^k) e^((h + r) t) with r = c root.
+func (w presenter[E]) branch(q quadraticPart[E], c E) Node {
+	exp := w.exp(w.surd(q.h, c, q.root))
+	if len(q.u) == 1 {
+		return Mul(w.surd(q.u[0], w.k.Mul(q.v[0], c), q.root), exp)
 	}
 	var terms []Node
-	for k := len(u) - 1; k >= 0; k-- {
-		terms = append(terms, Mul(surdNode(u[k], v[k].Mul(c), m), w.power(k)))
+	for i := len(q.u) - 1; i >= 0; i-- {
+		terms = append(terms, Mul(w.surd(q.u[i], w.k.Mul(q.v[i], c), q.root), w.power(i)))
 	}
 	return Mul(Add(terms...), exp)
 }
@@ -283,28 +359,28 @@ func sqrtNode(m *big.Int) Node {
 	return Apply("sqrt", Num(algebra.RatFromBigInt(m)))
 }
 
-// surdNode returns a + b sqrt(m) over a common denominator.
-func surdNode(a, b algebra.Rat, m *big.Int) Node {
+// surd returns a + b root over a common denominator.
+func (w presenter[E]) surd(a, b E, root Node) Node {
 	switch {
-	case b.IsZero():
-		return Num(a)
-	case a.IsZero():
-		return Mul(Num(b), sqrtNode(m))
+	case w.k.IsZero(b):
+		return w.Node(a)
+	case w.k.IsZero(a):
+		return Mul(w.Node(b), root)
 	}
-	content := contentOfRats(a, b)
-	if a.Sign() < 0 && b.Sign() < 0 {
-		content = content.Neg()
+	content := w.Content(a, b)
+	if w.k.Negative(a) && w.k.Negative(b) {
+		content = w.k.Neg(content)
 	}
-	a, b = a.Quo(content), b.Quo(content)
-	return Mul(Num(content), Sum{Terms: []Node{Num(a), Mul(Num(b), sqrtNode(m))}})
+	inv := w.inverse(content)
+	return Mul(w.Node(content), Sum{Terms: []Node{w.Node(w.k.Mul(a, inv)), Mul(w.Node(w.k.Mul(b, inv)), root)}})
 }
 
 // named presents the part of a prime of degree 3 or more as a sum over its
 // roots.
-func (w presenter) named(f Image[algebra.Rat], i int) Node {
+func (w presenter[E]) named(f Image[E], i int) Node {
 	pp := f.den[i]
 	z := Sym(w.root)
-	poly := PolyNode(primitive(pp.p), z)
+	poly := w.poly(pp.p.Scale(w.inverse(w.Content(pp.p.Coefs()...))), z)
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
 		num, den := f.residueRatio(i)
@@ -312,7 +388,7 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 			// The part of this factor alone, which does not know of the others: it
 			// reads the same in a response and in its transient part.
 			den = pp.p.Derivative()
-			num = f.local(i).c[0].Mul(den).Rem(algebra.Q, pp.p)
+			num = f.local(i).c[0].Mul(den).Rem(w.k, pp.p)
 		}
 		return w.ratio(poly, num, den, exp)
 	}
@@ -320,8 +396,8 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 	var terms []Node
 	for k := len(part.c) - 1; k >= 0; k-- {
 		if !part.c[k].IsZero() {
-			content, prim := contentOf(part.c[k], z)
-			terms = append(terms, Mul(Num(content), prim, w.power(k)))
+			content, prim := w.contentOf(part.c[k], z)
+			terms = append(terms, Mul(w.Node(content), prim, w.power(k)))
 		}
 	}
 	return RootSum{Var: w.root, Poly: poly, Body: Mul(Add(terms...), exp)}
@@ -332,25 +408,30 @@ func (w presenter) named(f Image[algebra.Rat], i int) Node {
 const mostDegreeAlone = 8
 
 // ratio presents the sum over the roots of num/den times an exponential.
-func (w presenter) ratio(poly Node, num, den algebra.Poly[algebra.Rat], exp Node) Node {
+func (w presenter[E]) ratio(poly Node, num, den algebra.Poly[E], exp Node) Node {
 	z := Sym(w.root)
-	g := algebra.GCD[algebra.Rat](algebra.Q, num, den)
-	num, _ = num.DivExact(algebra.Q, g)
-	den, _ = den.DivExact(algebra.Q, g)
-	cn, n := contentOf(num, z)
-	cd, d := contentOf(den, z)
-	c := cn.Quo(cd)
-	top := Mul(Num(algebra.RatFromBigInt(c.Abs().Num())), n, exp)
-	bottom := Mul(Num(algebra.RatFromBigInt(c.Den())), d)
-	var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(top, bottom)}
-	if c.Sign() < 0 {
+	g := algebra.GCD[E](w.k, num, den)
+	num, _ = num.DivExact(w.k, g)
+	den, _ = den.DivExact(w.k, g)
+	cn, n := w.contentOf(num, z)
+	cd, d := w.contentOf(den, z)
+	c := w.Node(w.k.Mul(cn, w.inverse(cd)))
+	minus := false
+	if neg, ok := c.(Neg); ok {
+		c, minus = neg.X, true
+	} else if x, ok := c.(Number); ok && x.Val.Sign() < 0 {
+		c, minus = Num(x.Val.Neg()), true
+	}
+	top, bottom := c, Node(Int(1))
+	switch v := c.(type) {
+	case Quotient:
+		top, bottom = v.Num, v.Den
+	case Number:
+		top, bottom = Num(algebra.RatFromBigInt(v.Val.Num())), Num(algebra.RatFromBigInt(v.Val.Den()))
+	}
+	var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(Mul(top, n, exp), Mul(bottom, d))}
+	if minus {
 		sum = Neg{X: sum}
 	}
 	return sum
-}
-
-// primitive returns the integer multiple of p with coprime coefficients and a
-// positive leading one.
-func primitive(p algebra.Poly[algebra.Rat]) algebra.Poly[algebra.Rat] {
-	return p.Scale(contentOfRats(p.Coefs()...).Inv())
 }

@@ -138,7 +138,7 @@ func TestPresentationValues(t *testing.T) {
 	}
 	// The same at a distance from the origin.
 	image := elementaryOf(t, "t*exp(-t) + 2").Image()
-	local := expr.NewFunction("t", algebra.NewRat(1, 3), image)
+	local := expr.NewFunction[algebra.Rat](algebra.Q, "t", algebra.NewRat(1, 3), image)
 	s, err := local.At(t.Context(), big.NewRat(2, 1), 17)
 	require.NoError(t, err)
 	want, err := strconv.ParseFloat(s, 64)

@@ -1,6 +1,11 @@
 package expr
 
-import "example.org/closedform/algebra"
+import (
+	"errors"
+	"fmt"
+
+	"example.org/closedform/algebra"
+)
 
 // Env is what a tree is read against: the field its numbers live in, the
 // independent variable, and the values of the names.
@@ -199,6 +204,11 @@ func (r elementaryReader[E]) invert(x Elementary[E], n Node) (Elementary[E], err
 func (r elementaryReader[E]) power(v Power) (Elementary[E], error) {
 	k := r.env.K
 	zero := Elementary[E]{k: k}
+	if s, ok := v.Base.(Symbol); ok && s.Name == "e" {
+		if _, number := v.Exp.(Number); !number {
+			return zero, Errorf(OutsideClass, s.Pos(), "the exponential is written exp(...), e is a name like any other")
+		}
+	}
 	exponent, err := r.read(v.Exp)
 	if err != nil {
 		return zero, err
@@ -263,40 +273,109 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 	if err != nil {
 		return zero, err
 	}
-	// The argument must be b t + a with a = 0: e^a and cos(a) are not in K.
-	slope := k.Zero()
+	// The argument must be b t + a.
+	slope, rest := k.Zero(), k.Zero()
 	for _, t := range arg.terms {
 		switch {
 		case t.n == 1 && k.IsZero(t.a) && k.IsZero(t.b):
 			slope = t.c
 		case arg.isConstant(t):
-			return zero, Errorf(OutsideClass, v.Pos(), "%s brings in a constant such as %s(%s), which is not covered: coefficients and data are rational", Quote(v.String()), v.Func, k.Text(t.c))
+			rest = t.c
 		default:
-			return zero, Errorf(OutsideClass, v.Pos(), "the argument of %s is not of the form b*%s: inputs are sums of products of polynomials, exponentials, sines and cosines", v.Func, r.env.Variable)
+			return zero, Errorf(OutsideClass, v.Pos(), "the argument of %s is not of the form b*%s + a: inputs are sums of products of polynomials, exponentials, sines and cosines", v.Func, r.env.Variable)
 		}
 	}
 	acc := newGather(k)
-	o, l := k.Zero(), k.One()
-	half, err := k.Inv(k.FromInt(2))
-	if err != nil {
-		return zero, err
-	}
-	neg := k.Neg(slope)
+	o := k.Zero()
 	switch v.Func {
 	case "exp":
-		acc.add(elementaryTerm[E]{0, slope, o, l, o})
-	case "cos":
-		acc.add(elementaryTerm[E]{0, o, slope, l, o})
-	case "sin":
-		acc.add(elementaryTerm[E]{0, o, slope, o, l})
-	case "cosh":
-		acc.add(elementaryTerm[E]{0, slope, o, half, o})
-		acc.add(elementaryTerm[E]{0, neg, o, half, o})
-	case "sinh":
-		acc.add(elementaryTerm[E]{0, slope, o, half, o})
-		acc.add(elementaryTerm[E]{0, neg, o, k.Neg(half), o})
+		e, err := expIn(k, rest, v.Pos())
+		if err != nil {
+			return zero, err
+		}
+		acc.add(elementaryTerm[E]{0, slope, o, e, o})
+	case "cos", "sin":
+		cos, sin, err := cosSinIn(k, rest, v.Pos())
+		if err != nil {
+			return zero, err
+		}
+		if v.Func == "cos" {
+			acc.add(elementaryTerm[E]{0, o, slope, cos, k.Neg(sin)})
+		} else {
+			acc.add(elementaryTerm[E]{0, o, slope, sin, cos})
+		}
+	case "cosh", "sinh":
+		e, err := expIn(k, rest, v.Pos())
+		if err != nil {
+			return zero, err
+		}
+		inv, err := k.Inv(e)
+		if err != nil {
+			return zero, err
+		}
+		half, err := k.Inv(k.FromInt(2))
+		if err != nil {
+			return zero, err
+		}
+		if v.Func == "sinh" {
+			inv = k.Neg(inv)
+		}
+		acc.add(elementaryTerm[E]{0, slope, o, k.Mul(half, e), o})
+		acc.add(elementaryTerm[E]{0, k.Neg(slope), o, k.Mul(half, inv), o})
 	default:
 		return zero, Errorf(UnknownFunction, v.Pos(), "%s", Quote(v.Func))
 	}
 	return acc.sum(), nil
+}
+
+// constantMaker is the capability of a field to hold the values of functions at
+// constants.
+type constantMaker[E any] interface {
+	Exp(x E, at Pos) (E, error)
+	CosSin(x E, at Pos) (cos, sin E, err error)
+	NthRoot(x E, q int, at Pos) (E, error)
+}
+
+// ErrIrrational is the cause of errors over Q that a wider field does not have.
+var ErrIrrational = errors.New("expr: not a rational number")
+
+// expIn returns e^x in the field.
+func expIn[E any](k algebra.Scalars[E], x E, at Pos) (E, error) {
+	if k.IsZero(x) {
+		return k.One(), nil
+	}
+	if m, ok := k.(constantMaker[E]); ok {
+		return m.Exp(x, at)
+	}
+	return x, irrational(at, "exp(%s)", k.Text(x))
+}
+
+// cosSinIn returns cos x and sin x in the field.
+func cosSinIn[E any](k algebra.Scalars[E], x E, at Pos) (cos, sin E, err error) {
+	if k.IsZero(x) {
+		return k.One(), k.Zero(), nil
+	}
+	if m, ok := k.(constantMaker[E]); ok {
+		return m.CosSin(x, at)
+	}
+	return x, x, irrational(at, "cos(%s)", k.Text(x))
+}
+
+func irrational(at Pos, format string, args ...any) error {
+	e := Errorf(OutsideClass, at, "%s is not a rational number", fmt.Sprintf(format, args...))
+	e.Cause = ErrIrrational
+	return e
+}
+
+// Scalar reads a tree that does not depend on the variable.
+func (env Env[E]) Scalar(n Node) (E, error) {
+	f, err := env.Elementary(n)
+	if err != nil {
+		return env.K.Zero(), err
+	}
+	x, ok := f.Constant()
+	if !ok {
+		return x, Errorf(OutsideClass, n.Pos(), "%s depends on %s where a constant must stand", Quote(n.String()), env.Variable)
+	}
+	return x, nil
 }

@@ -50,13 +50,22 @@ func (s scalarEval[E]) pow(x E, e algebra.Rat, at Pos) (E, error) {
 	return y, nil
 }
 
-// root returns x^(p/q) where it is rational.
+// root returns x^(p/q), over Q where it is rational.
 func (s scalarEval[E]) root(x E, e algebra.Rat, at Pos) (E, error) {
-	outside := Errorf(OutsideClass, at, "a root that is not a rational number is not covered: coefficients and data are rational")
-	r, ok := s.k.Rational(x)
 	q, small := algebra.RatFromBigInt(e.Den()).Int64()
-	if !ok || !small || q > 64 {
-		return x, outside
+	if !small || q > 64 {
+		return x, Errorf(OutsideClass, at, "a root of the order %s", e.Den())
+	}
+	if m, ok := s.k.(constantMaker[E]); ok {
+		y, err := m.NthRoot(x, int(q), at)
+		if err != nil {
+			return x, err
+		}
+		return s.pow(y, algebra.RatFromBigInt(e.Num()), at)
+	}
+	r, ok := s.k.Rational(x)
+	if !ok {
+		return x, irrational(at, "a root")
 	}
 	if r.Sign() < 0 {
 		return x, Errorf(OutsideClass, at, "a fractional power of the negative number %s", r)
@@ -64,31 +73,16 @@ func (s scalarEval[E]) root(x E, e algebra.Rat, at Pos) (E, error) {
 	num, ok1 := exactRoot(r.Num(), int(q))
 	den, ok2 := exactRoot(r.Den(), int(q))
 	if !ok1 || !ok2 {
-		return x, outside
+		return x, irrational(at, "(%s)^(%s)", r, e)
 	}
 	y := s.k.FromRat(algebra.RatFromFrac(num, den))
 	return s.pow(y, algebra.RatFromBigInt(e.Num()), at)
 }
 
-// exactRoot returns the q-th root of n >= 0 if it is an integer, by Newton's
-// iteration from above.
+// exactRoot returns the q-th root of n >= 0 if it is an integer.
 func exactRoot(n *big.Int, q int) (*big.Int, bool) {
-	if n.Sign() == 0 {
-		return new(big.Int), true
-	}
-	bq, b1 := big.NewInt(int64(q)), big.NewInt(int64(q-1))
-	x := new(big.Int).Lsh(big.NewInt(1), uint(n.BitLen()/q+1))
-	for {
-		y := new(big.Int).Exp(x, b1, nil)
-		y.Quo(n, y)
-		y.Add(y, new(big.Int).Mul(b1, x))
-		y.Quo(y, bq)
-		if y.Cmp(x) >= 0 {
-			break
-		}
-		x = y
-	}
-	return x, new(big.Int).Exp(x, bq, nil).Cmp(n) == 0
+	x := algebra.IntRoot(n, q)
+	return x, new(big.Int).Exp(x, big.NewInt(int64(q)), nil).Cmp(n) == 0
 }
 
 // abs returns |n|, and the largest int64 for the smallest.

@@ -1,6 +1,9 @@
 package linsys
 
 import (
+	"context"
+	"errors"
+	"slices"
 	"sort"
 	"strings"
 
@@ -9,33 +12,71 @@ import (
 )
 
 // builder sorts the statements of a model into definitions, equations and side
-// conditions, and reads them over Q.
+// conditions.
 type builder struct {
 	*Model
 	fixed bool // the unknowns are given, not found
 
 	unknowns    map[string]int
 	definitions map[string]expr.Equation
-	values      map[string]algebra.Rat
-	inProgress  map[string]bool
 	equations   []expr.Equation
 }
 
-func (b *builder) build() error {
+func (b *builder) build() (err error) {
+	defer catchLimit(&err)
 	b.unknowns = map[string]int{}
 	b.definitions = map[string]expr.Equation{}
-	b.values = map[string]algebra.Rat{}
-	b.inProgress = map[string]bool{}
 	if err := b.classify(); err != nil {
 		return err
 	}
 	if len(b.names) > b.limits.States {
 		return expr.Errorf(expr.LimitExceeded, expr.Pos{}, "the model has %d states, at most %d are taken", len(b.names), b.limits.States)
 	}
-	if err := b.readConditions(); err != nil {
-		return err
+	symbols := b.symbols()
+	if len(symbols) == 0 && len(b.assumed) == 0 {
+		p, err := readProblem[algebra.Rat](b, algebra.Q, expr.NoNames)
+		if err == nil {
+			b.Model.problem = p
+			return nil
+		}
+		if !errors.Is(err, expr.ErrIrrational) {
+			return err
+		}
 	}
-	return b.readEquations()
+	k := expr.NewConstants(symbols...)
+	for _, r := range b.assumed {
+		for _, side := range []expr.Node{r.Left, r.Right} {
+			if b.dependsOnState(side) {
+				return expr.Errorf(expr.OutsideClass, r.Pos, "%s is about a state or time; assumptions are on symbols", expr.Quote(r.String()))
+			}
+		}
+		if k, err = k.Assume(r, b.limits); err != nil {
+			return err
+		}
+	}
+	_, err = expr.Grow(k, func(k *expr.Constants) error {
+		p, err := readProblem[expr.Constant](b, k, k.Lookup)
+		if err == nil {
+			b.Model.problem = simplest(p)
+		}
+		return err
+	})
+	return err
+}
+
+// symbols returns the names without a value, pi among them, in order of
+// appearance.
+func (b *builder) symbols() []string {
+	statements := append(append([]expr.Equation(nil), b.defined...), b.equations...)
+	names := b.looseNames(append(statements, b.sideOf...), map[string]bool{b.variable: true})
+	for _, r := range b.assumed {
+		for _, name := range b.looseNames([]expr.Equation{{Left: r.Left, Right: r.Right}}, map[string]bool{b.variable: true}) {
+			if !slices.Contains(names, name) {
+				names = append(names, name)
+			}
+		}
+	}
+	return names
 }
 
 // functionOf returns the derivative that a node denotes: x, x', x” or, with the
@@ -136,7 +177,7 @@ func (b *builder) classify() error {
 	}
 	b.divide(dynamic, candidates)
 	surplus := len(b.equations) - len(b.names)
-	if loose := b.looseNames(dynamic); surplus > 0 && surplus == len(loose) {
+	if loose := b.looseNames(dynamic, map[string]bool{b.variable: true, "pi": true}); surplus > 0 && surplus == len(loose) {
 		// As many equations are left over as there are names without a value: the
 		// names are states given by algebraic equations.
 		for _, name := range loose {
@@ -188,11 +229,10 @@ func (b *builder) divide(statements []expr.Equation, candidates map[string]expr.
 	}
 }
 
-// looseNames returns the names that are neither states nor defined, in order of
-// appearance.
-func (b *builder) looseNames(statements []expr.Equation) []string {
+// looseNames returns the names that are neither states nor defined nor seen, in
+// order of appearance.
+func (b *builder) looseNames(statements []expr.Equation, seen map[string]bool) []string {
 	var loose []string
-	seen := map[string]bool{b.variable: true, "pi": true}
 	for _, eq := range statements {
 		for _, side := range []expr.Node{eq.Left, eq.Right} {
 			each(side, func(n expr.Node) {
@@ -229,26 +269,63 @@ func (b *builder) dependsOnState(n expr.Node) bool {
 	return found
 }
 
-// lookup returns the value of a defined name.
-func (b *builder) lookup(s expr.Symbol) (algebra.Rat, error) {
+// problem is a model over some field; implemented by *problemOver.
+type problem interface {
+	originNode() expr.Node
+	parameters() []string
+	solve(ctx context.Context, m *Model) (answer, error)
+}
+
+// problemOver is a model over the field k: equations in the local time of the
+// origin, and conditions there.
+type problemOver[E any] struct {
+	k          algebra.Scalars[E]
+	origin     E // time of the side conditions
+	equations  []linear[E]
+	conditions []linear[E]
+}
+
+// reading reads the statements of a model over a field.
+type reading[E any] struct {
+	*builder
+	*problemOver[E]
+	free       func(expr.Symbol) (E, error) // names without a definition
+	values     map[string]E
+	inProgress map[string]bool
+}
+
+func readProblem[E any](b *builder, k algebra.Scalars[E], free func(expr.Symbol) (E, error)) (*problemOver[E], error) {
+	r := reading[E]{
+		builder: b, problemOver: &problemOver[E]{k: k, origin: k.Zero()},
+		free: free, values: map[string]E{}, inProgress: map[string]bool{},
+	}
+	if err := r.readConditions(); err != nil {
+		return nil, err
+	}
+	return r.problemOver, r.readEquations()
+}
+
+// lookup returns the value of a name.
+func (b *reading[E]) lookup(s expr.Symbol) (E, error) {
 	if x, ok := b.values[s.Name]; ok {
 		return x, nil
 	}
+	zero := b.k.Zero()
 	def, ok := b.definitions[s.Name]
 	if !ok {
-		return expr.NoNames(s)
+		return b.free(s)
 	}
 	if b.inProgress[s.Name] {
-		return algebra.Rat{}, expr.Errorf(expr.Singular, s.Pos(), "%s is defined by itself", s.Name)
+		return zero, expr.Errorf(expr.Singular, s.Pos(), "%s is defined by itself", s.Name)
 	}
 	if len(b.inProgress) > b.limits.Nesting {
-		return algebra.Rat{}, expr.Errorf(expr.LimitExceeded, s.Pos(), "definitions are nested more than %d deep", b.limits.Nesting)
+		return zero, expr.Errorf(expr.LimitExceeded, s.Pos(), "definitions are nested more than %d deep", b.limits.Nesting)
 	}
 	b.inProgress[s.Name] = true
 	defer delete(b.inProgress, s.Name)
 	f, err := b.env().Elementary(def.Right)
 	if err != nil {
-		return algebra.Rat{}, err
+		return zero, err
 	}
 	x, ok := f.Constant()
 	if !ok {
@@ -258,19 +335,19 @@ func (b *builder) lookup(s expr.Symbol) (algebra.Rat, error) {
 	return x, nil
 }
 
-func (b *builder) env() expr.Env[algebra.Rat] {
-	return expr.Env[algebra.Rat]{K: algebra.Q, Variable: b.variable, Lookup: b.lookup, Limits: b.limits}
+func (b *reading[E]) env() expr.Env[E] {
+	return expr.Env[E]{K: b.k, Variable: b.variable, Lookup: b.lookup, Limits: b.limits}
 }
 
 // readConditions reads the side conditions and finds their time.
-func (b *builder) readConditions() error {
+func (b *reading[E]) readConditions() error {
 	first := true
 	var fault error
-	r := linearReader[algebra.Rat]{env: b.env()}
-	r.env.Lookup = func(s expr.Symbol) (algebra.Rat, error) {
+	r := linearReader[E]{env: b.env()}
+	r.env.Lookup = func(s expr.Symbol) (E, error) {
 		_, isUnknown := b.unknowns[s.Name]
 		if isUnknown || s.Name == b.variable {
-			return algebra.Rat{}, expr.Errorf(expr.SideConditions, s.Pos(), "%s stands without a time in a side condition", s.Name)
+			return b.k.Zero(), expr.Errorf(expr.SideConditions, s.Pos(), "%s stands without a time in a side condition", s.Name)
 		}
 		return b.lookup(s)
 	}
@@ -291,8 +368,8 @@ func (b *builder) readConditions() error {
 			return derivative{}, false
 		}
 		t0, _ := at.Constant()
-		if !first && !t0.Equal(b.origin) {
-			fault = expr.Errorf(expr.OutsideClass, v.Pos(), "conditions at more than one time (%s and %s) make a boundary problem, which is not covered", b.origin, t0)
+		if !first && !b.k.Equal(t0, b.origin) {
+			fault = expr.Errorf(expr.OutsideClass, v.Pos(), "conditions at more than one time (%s and %s) make a boundary problem, which is not covered", b.k.Text(b.origin), b.k.Text(t0))
 			return derivative{}, false
 		}
 		first = false
@@ -316,13 +393,13 @@ func (b *builder) readConditions() error {
 }
 
 // readEquations reads the equations in the local time of the origin.
-func (b *builder) readEquations() error {
-	r := linearReader[algebra.Rat]{env: b.env(), unknown: func(n expr.Node) (derivative, bool) {
+func (b *reading[E]) readEquations() error {
+	r := linearReader[E]{env: b.env(), unknown: func(n expr.Node) (derivative, bool) {
 		name, order, ok := b.functionOf(n)
 		u, isUnknown := b.unknowns[name]
 		return derivative{u, order}, ok && isUnknown
 	}}
-	for _, eq := range b.equations {
+	for _, eq := range b.builder.equations {
 		if err := b.refuseDelays(eq); err != nil {
 			return err
 		}
@@ -336,7 +413,7 @@ func (b *builder) readEquations() error {
 			}
 			return err
 		}
-		b.Model.equations = append(b.Model.equations, l)
+		b.problemOver.equations = append(b.problemOver.equations, l)
 	}
 	// A definition that no equation uses must still have a value.
 	names := make([]string, 0, len(b.definitions))

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 
+	"example.org/closedform/algebra"
 	"example.org/closedform/expr"
 )
 
@@ -19,4 +20,16 @@ func wrapCancel(err error) error {
 		return &Error{Kind: expr.Cancelled, Message: err.Error(), Cause: err}
 	}
 	return err
+}
+
+// catchLimit, deferred, turns the panic of an operation on too large operands
+// into an error of kind LimitExceeded.
+func catchLimit(err *error) {
+	if r := recover(); r != nil {
+		e, ok := r.(*algebra.LimitError)
+		if !ok {
+			panic(r)
+		}
+		*err = &Error{Kind: expr.LimitExceeded, Message: e.What, Cause: e}
+	}
 }

@@ -86,7 +86,9 @@ func TestRandomImplicit(t *testing.T) {
 		assert.Len(t, res.Constants(), det.Degree(), text.String())
 		product := algebra.PolyFromInts(1)
 		for _, mode := range res.Modes() {
-			product = product.Mul(mode.Factor.Pow(mode.Multiplicity))
+			x, ok := mode.Roots[0].Algebraic()
+			require.True(t, ok)
+			product = product.Mul(x.MinPoly().Pow(mode.Multiplicity))
 		}
 		assert.True(t, product.Equal(det.Monic(algebra.Q)), "modes %s, det P = %s for\n%s", product, det, &text)
 	}

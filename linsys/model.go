@@ -3,6 +3,7 @@ package linsys
 import (
 	"fmt"
 	"math/big"
+	"slices"
 	"strings"
 	"unicode/utf8"
 
@@ -17,10 +18,10 @@ type Model struct {
 	names      []string // the unknowns in order of appearance
 	statements []expr.Equation
 	limits     expr.Limits
+	fixed      bool // the states are given, not found in the statements
 
-	origin     algebra.Rat // time of the side conditions
-	equations  []linear[algebra.Rat]
-	conditions []linear[algebra.Rat]
+	assumed    []expr.Relation
+	problem    problem         // the statements over their field
 	equationOf []expr.Equation // the statements behind equations
 	sideOf     []expr.Equation // the statements behind conditions
 	defined    []expr.Equation // the definitions of constants
@@ -128,7 +129,7 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 	if len(names) != n || (f != nil && len(f) != n) || (initial != nil && len(initial) != len(coefs)-1) {
 		return nil, shape("%d states need as many names (%d) and inputs (%d), and values for each order below the highest", n, len(names), len(f))
 	}
-	b := builder{Model: &Model{variable: "t", names: append([]string(nil), names...)}, fixed: true}
+	b := builder{Model: &Model{variable: "t", names: append([]string(nil), names...), fixed: true}, fixed: true}
 	b.limits = b.limits.WithDefaults()
 	seen := map[string]bool{"t": true, "pi": true}
 	for _, name := range names {
@@ -199,7 +200,37 @@ func (m *Model) States() []string { return append([]string{}, m.names...) }
 func (m *Model) Variable() string { return m.variable }
 
 // Origin returns the time of the side conditions, 0 if there are none.
-func (m *Model) Origin() *big.Rat { return m.origin.Big() }
+func (m *Model) Origin() expr.Node { return m.problem.originNode() }
+
+// Parameters returns the names of the symbols that the model's equations and
+// conditions depend on, in order of appearance.
+func (m *Model) Parameters() []string { return m.problem.parameters() }
+
+// Assume returns the model under assumptions on its symbols, relations such as
+// "k > 0", "k1 > k2 > 0" or "a != b". They spare the response conditions that
+// cannot fail and let it choose real forms.
+func (m *Model) Assume(relations ...string) (*Model, error) {
+	out := *m
+	for _, src := range relations {
+		list, err := expr.ParseRelations(src, m.limits)
+		if err != nil {
+			return nil, err
+		}
+		out.assumed = append(slices.Clip(out.assumed), list...)
+	}
+	out.names, out.sideOf, out.equationOf, out.defined = nil, nil, nil, nil
+	if m.fixed {
+		out.names = m.names
+	}
+	b := builder{Model: &out, fixed: m.fixed}
+	if err := b.build(); err != nil {
+		return nil, err
+	}
+	return b.Model, nil
+}
+
+// Assumptions returns what the model assumes.
+func (m *Model) Assumptions() []expr.Relation { return slices.Clone(m.assumed) }
 
 // Equations returns the equations of the model, without definitions and side
 // conditions.

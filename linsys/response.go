@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math/big"
+	"slices"
 	"strings"
 
 	"example.org/closedform/algebra"
@@ -15,20 +16,13 @@ import (
 // immutable.
 type Response struct {
 	model     *Model
+	over      answer
 	states    []expr.Function
 	transient []expr.Function
 	steady    []expr.Function
 	constants []string
 	modes     []Mode
-	proof     Proof
 	bundle    *expr.Bundle
-}
-
-// Mode is an irreducible factor of the characteristic polynomial of a model.
-type Mode struct {
-	Factor       algebra.Poly[algebra.Rat] // monic, irreducible over Q
-	Multiplicity int
-	Roots        []algebra.Algebraic // the eigenvalues: real ones ascending, then conjugate pairs
 }
 
 var errUnproven = errors.New("linsys: internal error: the residual of a derived response is not zero")
@@ -36,42 +30,31 @@ var errUnproven = errors.New("linsys: internal error: the residual of a derived 
 // ClosedForm derives the response and proves it. Bad models and cancellation
 // give an error of type *[Error].
 func (m *Model) ClosedForm(ctx context.Context) (*Response, error) {
-	sol, err := solve[algebra.Rat](ctx, algebra.Q, m.names, m.equations, m.conditions)
+	over, err := m.problem.solve(ctx, m)
 	if err != nil {
 		return nil, err
 	}
-	for _, p := range []Proof{sol.proof, sol.partProof} {
+	names := make([]string, over.constants())
+	for i := range names {
+		names[i] = m.constantName(i)
+	}
+	return m.respond(ctx, over, names)
+}
+
+// respond makes a response of an answer whose free constants have the given
+// names.
+func (m *Model) respond(ctx context.Context, over answer, constants []string) (r *Response, err error) {
+	defer catchLimit(&err)
+	for _, p := range over.proofs() {
 		if !p.Holds() {
 			return nil, fmt.Errorf("%w: %s; %s", errUnproven, p.Residual(), p.Side())
 		}
 	}
-	r := &Response{model: m, proof: sol.proof}
-	for i := range sol.free {
-		r.constants = append(r.constants, m.constantName(i))
-	}
-	function := func(base []expr.Image[algebra.Rat], free [][]expr.Image[algebra.Rat]) []expr.Function {
-		out := make([]expr.Function, len(m.names))
-		for u := range out {
-			var terms []expr.FreeTerm
-			for i, f := range free {
-				terms = append(terms, expr.FreeTerm{Name: r.constants[i], Image: f[u]})
-			}
-			out[u] = expr.NewFunction(m.variable, m.origin, base[u], terms...)
-		}
-		return out
-	}
-	r.states = function(sol.base, sol.free)
+	r = &Response{model: m, over: over, constants: constants}
+	r.states, r.transient, r.steady = over.functions(m.variable, constants)
 	r.bundle = expr.NewBundle(r.states...)
-	r.transient = function(sol.complementary, sol.free)
-	r.steady = function(sol.particular, nil)
-	for i, f := range sol.modes.Factors() {
-		roots, err := sol.modes.Roots(ctx, i)
-		if err != nil {
-			return nil, wrapCancel(err)
-		}
-		r.modes = append(r.modes, Mode{Factor: f.P, Multiplicity: f.Mult, Roots: algebra.RootsIn(f.P, roots)})
-	}
-	return r, nil
+	r.modes, err = over.modes(ctx)
+	return r, err
 }
 
 // constantName returns the name of the i-th free constant: C1, C2, ..., with
@@ -79,7 +62,7 @@ func (m *Model) ClosedForm(ctx context.Context) (*Response, error) {
 func (m *Model) constantName(i int) string {
 	for _, letter := range []string{"C", "K", "c", "const"} {
 		taken := false
-		for _, s := range append(m.States(), m.variable) {
+		for _, s := range append(append(m.States(), m.variable), m.Parameters()...) {
 			if rest, ok := strings.CutPrefix(s, letter); ok && strings.Trim(rest, "0123456789") == "" {
 				taken = true
 			}
@@ -101,6 +84,8 @@ type solution[E any] struct {
 	modes         expr.Denominator[E]
 	proof         Proof
 	partProof     Proof // of the particular integral, where it is not the base
+	divided       []E   // elements whose denominators were divided by
+	nonzero       []E   // elements that were divided by
 }
 
 // solve derives and proves the solution of the equations under the conditions,
@@ -114,7 +99,7 @@ func solve[E any](ctx context.Context, k algebra.Scalars[E], names []string, eqs
 	if err != nil {
 		return nil, err
 	}
-	y0, err := sv.initial(ctx, conditions, names)
+	y0, det, err := sv.initial(ctx, conditions, names)
 	if err != nil {
 		return nil, err
 	}
@@ -126,7 +111,7 @@ func solve[E any](ctx context.Context, k algebra.Scalars[E], names []string, eqs
 	if err != nil {
 		return nil, err
 	}
-	sol := &solution[E]{modes: sv.properModes(), particular: sv.unknowns(particular, false)}
+	sol := &solution[E]{modes: sv.properModes(), particular: sv.unknowns(particular, false), divided: append(sys.divided, y0...), nonzero: det}
 	if len(conditions) > 0 {
 		sol.base = sv.unknowns(y, false)
 	} else {
@@ -215,38 +200,97 @@ func (r *Response) Constants() []string { return append([]string(nil), r.constan
 func (r *Response) Modes() []Mode { return append([]Mode(nil), r.modes...) }
 
 // Proof returns the proof, which holds.
-func (r *Response) Proof() Proof { return r.proof }
+func (r *Response) Proof() Proof { return r.over.proofs()[0] }
 
-// With returns the response with values for free constants. Unknown names give
-// an error.
+// Conditions returns the conditions under which the response holds: those of the
+// model itself, such as a leading coefficient that must not vanish, and those of
+// the formulas as they are written, such as rates that must not be equal. Both
+// are relations such as "k1 != k2", without those that the assumptions of the
+// model guarantee; see [Model.Assume]. In the excluded cases of the formulas
+// [Response.When] has others.
+func (r *Response) Conditions(ctx context.Context) (model, formula []string, err error) {
+	defer catchLimit(&err)
+	m, err := r.over.conditions(ctx)
+	if err != nil {
+		return nil, nil, err
+	}
+	all := m
+	for _, list := range [][]expr.Function{r.states, r.transient, r.steady} {
+		for _, f := range list {
+			c, err := f.Conditions(ctx)
+			if err != nil {
+				return nil, nil, wrapCancel(err)
+			}
+			all = all.Join(c)
+		}
+	}
+	return m.Strings(), all.Without(m).Strings(), nil
+}
+
+// Parameters returns the names of the symbols in the states.
+func (r *Response) Parameters() []string {
+	var out []string
+	for _, f := range r.states {
+		for _, name := range f.Parameters() {
+			if !slices.Contains(out, name) {
+				out = append(out, name)
+			}
+		}
+	}
+	return out
+}
+
+// With returns the response with numbers for symbols and free constants. See
+// [Response.Substitute].
 func (r *Response) With(values map[string]*big.Rat) (*Response, error) {
-	known := map[string]bool{}
-	for _, c := range r.constants {
-		known[c] = true
+	nodes, err := rationals(values)
+	if err != nil {
+		return nil, err
 	}
-	for name, v := range values {
-		if v == nil {
-			return nil, expr.Errorf(expr.Syntax, expr.Pos{}, "%s has the value nil", expr.Quote(name))
-		}
-		if !known[name] {
-			return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "%s is not a free constant of the response", expr.Quote(name))
-		}
-	}
-	out := *r
-	set := func(list []expr.Function) []expr.Function {
-		fs := make([]expr.Function, len(list))
-		for i, f := range list {
-			fs[i] = f.With(values)
-		}
-		return fs
-	}
-	out.states, out.transient = set(r.states), set(r.transient)
-	out.bundle = expr.NewBundle(out.states...)
-	out.constants = nil
-	for _, c := range r.constants {
-		if _, ok := values[c]; !ok {
-			out.constants = append(out.constants, c)
+	return r.Substitute(context.Background(), nodes)
+}
+
+// Substitute returns the response with values for symbols and free constants,
+// numbers or expressions in symbols. The model is solved with them, so that the
+// formulas are right in every case that the model allows, and proven again. A
+// value that violates a condition of the model, and a name that is neither a
+// symbol nor a free constant, are errors.
+func (r *Response) Substitute(ctx context.Context, values map[string]expr.Node) (*Response, error) {
+	known := append(append(slices.Clone(r.constants), r.model.Parameters()...), r.Parameters()...)
+	for name := range values {
+		if !slices.Contains(known, name) {
+			return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "%s is neither a symbol nor a free constant of the response", expr.Quote(name))
 		}
 	}
-	return &out, nil
+	if len(values) == 0 {
+		return r, nil
+	}
+	over, constants, err := r.over.substitute(ctx, r.model, r.constants, values)
+	if err != nil {
+		return nil, wrapCancel(err)
+	}
+	return r.model.respond(ctx, over, constants)
+}
+
+// When returns the response in a special case, equations among the symbols such
+// as "ka = ke" or "w0 = 2*w", several of them separated by commas. Each must be
+// linear in a symbol, which it gives a value.
+func (r *Response) When(ctx context.Context, equations string) (*Response, error) {
+	list, err := expr.ParseRelations(equations, r.model.limits)
+	if err != nil {
+		return nil, err
+	}
+	for _, eq := range list {
+		if eq.Op != "=" {
+			return nil, expr.Errorf(expr.Syntax, eq.Pos, "a case is given by equations, %s is none", expr.Quote(eq.String()))
+		}
+		name, value, err := expr.SolveFor(eq, r.Parameters())
+		if err != nil {
+			return nil, err
+		}
+		if r, err = r.Substitute(ctx, map[string]expr.Node{name: value}); err != nil {
+			return nil, err
+		}
+	}
+	return r, nil
 }

@@ -92,9 +92,10 @@ func (sv *solver[E]) images(ctx context.Context, y0 []E, homogeneous bool) ([]ex
 
 // initial solves the constraints and the side conditions, each of the form
 // row y0 + value = 0, for the value y0 of the state at the origin. Without
-// conditions it returns one solution of the constraints. The error says what is
-// missing or contradictory.
-func (sv *solver[E]) initial(ctx context.Context, conditions []linear[E], names []string) ([]E, error) {
+// conditions it returns one solution of the constraints. The determinant of the
+// conditions, where they are as many as the components, is returned as well. The
+// error says what is missing or contradictory.
+func (sv *solver[E]) initial(ctx context.Context, conditions []linear[E], names []string) (y0, det []E, err error) {
 	k := sv.k
 	dim := len(sv.states)
 	type row struct {
@@ -121,24 +122,24 @@ func (sv *solver[E]) initial(ctx context.Context, conditions []linear[E], names 
 	}
 	ech, err := algebra.Reduce[E](ctx, k, build(len(rows)))
 	if err != nil {
-		return nil, wrapCancel(err)
+		return nil, nil, wrapCancel(err)
 	}
 	if r := len(ech.Pivots); r > 0 && ech.Pivots[r-1] == dim {
 		// Name the first condition that cannot be met with the ones before it.
 		for n := len(sv.constraints); n <= len(rows); n++ {
 			e, err := algebra.Reduce[E](ctx, k, build(n))
 			if err != nil {
-				return nil, wrapCancel(err)
+				return nil, nil, wrapCancel(err)
 			}
 			if r := len(e.Pivots); r > 0 && e.Pivots[r-1] == dim {
 				if n == 0 || !rows[n-1].pos.IsValid() {
-					return nil, expr.Errorf(expr.SideConditions, expr.Pos{}, "the side conditions contradict the equations")
+					return nil, nil, expr.Errorf(expr.SideConditions, expr.Pos{}, "the side conditions contradict the equations")
 				}
-				return nil, expr.Errorf(expr.SideConditions, rows[n-1].pos, "this condition contradicts the equations or the conditions before it")
+				return nil, nil, expr.Errorf(expr.SideConditions, rows[n-1].pos, "this condition contradicts the equations or the conditions before it")
 			}
 		}
 	}
-	y0 := zeroVec[E](k, dim)
+	y0 = zeroVec[E](k, dim)
 	pivot := make([]bool, dim+1)
 	for i, p := range ech.Pivots {
 		y0[p] = ech.Rows.At(i, dim)
@@ -154,9 +155,17 @@ func (sv *solver[E]) initial(ctx context.Context, conditions []linear[E], names 
 				missing += expr.Derivative(names[d.u], d.order).String()
 			}
 		}
-		return nil, expr.Errorf(expr.SideConditions, expr.Pos{}, "the conditions leave open: %s; give as many independent conditions as the order of the model, or none for the general solution", missing)
+		return nil, nil, expr.Errorf(expr.SideConditions, expr.Pos{}, "the conditions leave open: %s; give as many independent conditions as the order of the model, or none for the general solution", missing)
 	}
-	return y0, nil
+	if _, ok := any(k).(*expr.Constants); ok && len(rows) == dim {
+		c := algebra.MatrixFromFunc[E](k, dim, dim, func(i, j int) E { return rows[i].row[j] })
+		d, err := algebra.Det[E](ctx, k, c)
+		if err != nil {
+			return nil, nil, wrapCancel(err)
+		}
+		det = append(det, d)
+	}
+	return y0, det, nil
 }
 
 // constraintMatrix returns the rows of the constraints.

@@ -68,4 +68,10 @@ func fitConstants(ctx context.Context, general, r *linsys.Response) (map[string]
 }
 
 // atOrigin returns the value of f at its origin.
-func atOrigin(f expr.Function) algebra.Rat { return algebra.RatFromBig(f.Initial()) }
+func atOrigin(f expr.Function) algebra.Rat {
+	x, err := algebra.ParseRat(f.Initial().String())
+	if err != nil {
+		panic(err)
+	}
+	return x
+}

@@ -21,6 +21,7 @@ type system[E any] struct {
 	f           []expr.Elementary[E]
 	top         []affine[E] // u^(order) of each unknown
 	constraints []affine[E]
+	divided     []E // elements whose denominators were divided by
 }
 
 // affine is the function row y + rest(t).
@@ -38,6 +39,7 @@ func reduce[E any](ctx context.Context, k algebra.Scalars[E], names []string, eq
 	eqs = append([]linear[E](nil), eqs...)
 	n := len(names)
 	var constraints []linear[E]
+	var divided []E
 	budget := 4
 	for _, o := range highest(n, eqs) {
 		budget += 2 * (o + 1)
@@ -59,6 +61,12 @@ func reduce[E any](ctx context.Context, k algebra.Scalars[E], names []string, eq
 		if err != nil {
 			return nil, wrapCancel(err)
 		}
+		if _, ok := any(k).(*expr.Constants); ok {
+			// The denominators of an inverse have the factors of the determinant.
+			for i := range ech.Pivots {
+				divided = append(divided, ech.Rows.Row(i)...)
+			}
+		}
 		dependent := -1
 		for i, p := range ech.Pivots {
 			if p >= n {
@@ -66,7 +74,11 @@ func reduce[E any](ctx context.Context, k algebra.Scalars[E], names []string, eq
 			}
 		}
 		if dependent < 0 {
-			return firstOrder(ctx, k, order, eqs, ech, constraints)
+			s, err := firstOrder(ctx, k, order, eqs, ech, constraints)
+			if err == nil {
+				s.divided = divided
+			}
+			return s, err
 		}
 		budget--
 		if budget < 0 {

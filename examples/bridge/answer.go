@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 
 	"example.org/closedform/expr"
 	"example.org/closedform/linsys"
@@ -16,11 +17,19 @@ func answer(ctx context.Context, req request) (object, error) {
 	if err != nil {
 		return nil, err
 	}
+	if m, err = m.Assume(req.assume...); err != nil {
+		var e *expr.Error
+		if errors.As(err, &e) {
+			// Its place is in the assumption, not in the model.
+			return nil, expr.Errorf(e.Kind, expr.Pos{}, "in the assumptions: %s", e.Message)
+		}
+		return nil, err
+	}
 	r, err := m.ClosedForm(ctx)
 	if err != nil {
 		return nil, err
 	}
-	valued, err := r.With(req.set)
+	valued, err := r.Substitute(ctx, req.set)
 	if err != nil {
 		return nil, err
 	}
@@ -52,8 +61,11 @@ func answer(ctx context.Context, req request) (object, error) {
 	}
 	p := r.Proof()
 	o.add("proof", object{{"residual", p.Residual()}, {"sides", p.Side()}, {"holds", p.Holds()}})
-	// Formulas in numbers alone hold without conditions.
-	o.add("conditions", []string{})
+	ofModel, ofFormulas, err := r.Conditions(ctx)
+	if err != nil {
+		return nil, err
+	}
+	o.add("conditions", append(append([]string{}, ofModel...), ofFormulas...))
 	return o, nil
 }
 

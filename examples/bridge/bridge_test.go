@@ -172,7 +172,7 @@ func TestErrorKinds(t *testing.T) {
 		{"empty model", fields{"model": ""}, expr.Syntax, 0, 0},
 		{"general solution without constants", fields{"model": "x' = -x", "at": []string{"1"}}, expr.SideConditions, 0, 0},
 		{"set of a name unknown", fields{"model": "x' = -x\nx(0)=1", "set": fields{"C1": "1"}}, expr.OutsideClass, 0, 0},
-		{"set without a number", fields{"model": "x' = -x", "set": fields{"C1": "one"}}, expr.Syntax, 0, 0},
+		{"set without a number", fields{"model": "x' = -x", "set": fields{"C1": "1 +"}}, expr.Syntax, 0, 0},
 		{"set that is a list", fields{"model": "x' = -x", "set": []int{1}}, expr.Syntax, 0, 0},
 		{"no model", fields{"id": 1}, expr.Syntax, 0, 0},
 		{"null model", fields{"model": nil}, expr.Syntax, 0, 0},
@@ -191,7 +191,7 @@ func TestErrorKinds(t *testing.T) {
 		{"want unknown", fields{"model": "x'=x", "want": []string{"text", "html"}}, expr.Syntax, 0, 0},
 		{"want no list", fields{"model": "x'=x", "want": "text"}, expr.Syntax, 0, 0},
 		{"assume without relation", fields{"model": "x'=x", "assume": []string{"k"}}, expr.Syntax, 0, 0},
-		{"assume with two", fields{"model": "x'=x", "assume": []string{"0 < k < 1"}}, expr.Syntax, 0, 0},
+		{"assume on a state", fields{"model": "x'=x", "assume": []string{"x > 0"}}, expr.OutsideClass, 0, 0},
 		{"assume an equation", fields{"model": "x'=x", "assume": []string{"k = 1"}}, expr.Syntax, 0, 0},
 		{"assume half", fields{"model": "x'=x", "assume": []string{"k >"}}, expr.Syntax, 0, 0},
 		{"assume a factorial", fields{"model": "x'=x", "assume": []string{"k! > 0"}}, expr.Syntax, 0, 0},
@@ -219,7 +219,7 @@ func TestErrorKinds(t *testing.T) {
 }
 
 func TestAssumptionsOfGoodForm(t *testing.T) {
-	r, _ := ask(t, fields{"model": "x' = -x\nx(0) = 1", "assume": []string{"k > 0", "k1 - k2 != 0", "a<=b", "2 k ≥ 1", "a ≠ b", "x < 3"}})
+	r, _ := ask(t, fields{"model": "x' = -x\nx(0) = 1", "assume": []string{"k > 0", "k1 - k2 != 0", "a<=b", "2 k ≥ 1", "a ≠ b", "0 < k < 1"}})
 	require.Nil(t, r.Error)
 	require.Equal(t, "exp(-t)", r.Solution["x"].Text)
 }

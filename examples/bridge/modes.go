@@ -13,11 +13,16 @@ func modes(ctx context.Context, list []linsys.Mode, digits int) ([]object, error
 	for _, m := range list {
 		eigenvalues := []object{}
 		for _, x := range m.Roots {
-			re, im, err := roots.Decimals(ctx, x, digits)
-			if err != nil {
-				return nil, err
+			o := object{{"exact", x.String()}}
+			if x.IsNumber() {
+				re, im, err := roots.Decimals(ctx, x, digits)
+				if err != nil {
+					return nil, err
+				}
+				o.add("re", re)
+				o.add("im", im)
 			}
-			eigenvalues = append(eigenvalues, object{{"exact", x.String()}, {"re", re}, {"im", im}})
+			eigenvalues = append(eigenvalues, o)
 		}
 		out = append(out, object{{"factor", m.Factor.String()}, {"multiplicity", m.Multiplicity}, {"roots", eigenvalues}})
 	}

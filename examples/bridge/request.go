@@ -26,7 +26,8 @@ type request struct {
 	model  string
 	at     []moment // nil if values are not asked for
 	digits int
-	set    map[string]*big.Rat
+	set    map[string]expr.Node
+	assume []string
 	want   map[string]bool
 }
 
@@ -120,7 +121,7 @@ func (req *request) read(fields map[string]json.RawMessage) error {
 		case "set":
 			err = req.readSet(raw)
 		case "assume":
-			err = readAssume(raw)
+			err = req.readAssume(raw)
 		case "want":
 			err = req.readWant(raw)
 		default:
@@ -193,21 +194,33 @@ func (req *request) readDigits(raw json.RawMessage) error {
 
 func (req *request) readSet(raw json.RawMessage) error {
 	var values map[string]any
-	if err := unmarshal("set", raw, "an object with a number for each name", &values); err != nil {
+	if err := unmarshal("set", raw, "an object with a number or an expression for each name", &values); err != nil {
 		return err
 	}
-	req.set = map[string]*big.Rat{}
+	req.set = map[string]expr.Node{}
 	names := make([]string, 0, len(values))
 	for name := range values {
 		names = append(names, name)
 	}
 	sort.Strings(names)
 	for _, name := range names {
-		_, x, ok := rational(values[name])
-		if !ok {
-			return badRequest("the value of %s in set is not a number such as \"1/3\"", expr.Quote(name))
+		if _, x, ok := rational(values[name]); ok {
+			req.set[name] = expr.Num(algebra.RatFromBig(x))
+			continue
 		}
-		req.set[name] = x
+		text, ok := values[name].(string)
+		if !ok {
+			return badRequest("the value of %s in set is neither a number such as \"1/3\" nor an expression such as \"pi/4\"", expr.Quote(name))
+		}
+		n, err := expr.Parse(text, expr.Limits{})
+		if err != nil {
+			var e *expr.Error
+			if errors.As(err, &e) {
+				return expr.Errorf(e.Kind, expr.Pos{}, "the value of %s in set is neither a number nor an expression: %s", expr.Quote(name), e.Message)
+			}
+			return err
+		}
+		req.set[name] = n
 	}
 	return nil
 }
@@ -227,43 +240,25 @@ func (req *request) readWant(raw json.RawMessage) error {
 	return nil
 }
 
-// readAssume checks the form of the assumptions. Models with numbers only, all
-// that there are so far, have no use for them.
-func readAssume(raw json.RawMessage) error {
-	var list []string
-	if err := unmarshal("assume", raw, "a list of strings", &list); err != nil {
+// readAssume reads the assumptions, relations among symbols.
+func (req *request) readAssume(raw json.RawMessage) error {
+	if err := unmarshal("assume", raw, "a list of strings", &req.assume); err != nil {
 		return err
 	}
-	for _, s := range list {
-		left, right, ok := cutRelation(s)
-		if !ok {
-			return badRequest("the assumption %s is not a relation such as \"k > 0\", with one of < > <= >= !=", expr.Quote(s))
+	for _, s := range req.assume {
+		list, err := expr.ParseRelations(s, expr.Limits{})
+		if err != nil {
+			var e *expr.Error
+			if errors.As(err, &e) {
+				return expr.Errorf(expr.Syntax, expr.Pos{}, "in the assumption %s: %s", expr.Quote(s), e.Message)
+			}
+			return err
 		}
-		for _, side := range []string{left, right} {
-			if _, err := expr.Parse(side, expr.Limits{}); err != nil {
-				var e *expr.Error
-				if errors.As(err, &e) {
-					return expr.Errorf(expr.Syntax, expr.Pos{}, "in the assumption %s: %s", expr.Quote(s), e.Message)
-				}
-				return err
+		for _, r := range list {
+			if r.Op == "=" {
+				return badRequest("the assumption %s is not an inequality such as \"k > 0\", with one of < > <= >= !=", expr.Quote(s))
 			}
 		}
 	}
 	return nil
-}
-
-// cutRelation splits a relation at its sign, of which there is one.
-func cutRelation(s string) (left, right string, ok bool) {
-	s = strings.NewReplacer("≤", "<=", "≥", ">=", "≠", "!=").Replace(s)
-	i := strings.IndexAny(s, "<>!")
-	if i < 0 {
-		return "", "", false
-	}
-	left, right = s[:i], s[i+1:]
-	if strings.HasPrefix(right, "=") {
-		right = right[1:]
-	} else if s[i] == '!' {
-		return "", "", false
-	}
-	return left, right, !strings.ContainsAny(left+right, "<>!=")
 }

@@ -26,13 +26,8 @@ type modeRow struct {
 func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 	var rows []modeRow
 	for i, m := range list {
-		text := m.Factor.String()
-		node, err := expr.Parse(text, unlimited)
-		if err != nil {
-			return nil, err
-		}
 		for _, x := range m.Roots {
-			row := modeRow{factor: i + 1, factorNode: node, multiplicity: m.Multiplicity}
+			row := modeRow{factor: i + 1, factorNode: m.Factor, multiplicity: m.Multiplicity}
 			var err error
 			if row.re, row.im, err = roots.Decimals(ctx, x, rootDigits); err != nil {
 				return nil, err
@@ -42,7 +37,7 @@ func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 			if row.omega < 0 {
 				continue // the other one of a pair
 			}
-			if m.Factor.Degree() <= 2 {
+			if m.Degree <= 2 {
 				if row.exact, err = newExactRoot(x.String(), row.omega > 0); err != nil {
 					return nil, err
 				}

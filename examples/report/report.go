@@ -37,7 +37,7 @@ type report struct {
 }
 
 // general tells whether constants are free: then there are no values.
-func (r *report) general() bool { return len(r.response.Constants()) > 0 }
+func (r *report) general() bool { return len(r.response.Constants())+len(r.response.Parameters()) > 0 }
 
 // valueRow holds the states at one time.
 type valueRow struct {
@@ -75,7 +75,11 @@ func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error)
 	for _, name := range r.response.States() {
 		steady = append(steady, r.response.Steady(name).Node())
 	}
-	if r.window, err = chooseWindow(r.modes, inputFrequencies(steady, m.Variable()), m.Origin(), from, to); err != nil {
+	origin, err := algebra.ParseRat(m.Origin().String())
+	if err != nil {
+		return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the side conditions hold at the time %s; a report has values and curves from a rational time on", m.Origin())
+	}
+	if r.window, err = chooseWindow(r.modes, inputFrequencies(steady, m.Variable()), origin.Big(), from, to); err != nil {
 		return nil, err
 	}
 	for _, share := range []string{"0", "1/100", "1/20", "1/10", "1/5", "1/2", "3/4", "1"} {

@@ -83,7 +83,7 @@ func (r *report) summary(w io.Writer, dir string, files []written) error {
 	names := r.response.States()
 	order := 0
 	for _, m := range r.response.Modes() {
-		order += m.Multiplicity * m.Factor.Degree()
+		order += m.Multiplicity * m.Degree
 	}
 	line("model", "%s", r.src.name)
 	line("states", "%d (%s), order %d", len(names), some(names, 8), order)

@@ -173,7 +173,7 @@ func prepareSolve(ctx context.Context, data []byte) (operation, error) {
 		return func() string {
 			degrees, real := 0, 0
 			for _, m := range response.Modes() {
-				degrees += m.Multiplicity * m.Factor.Degree()
+				degrees += m.Multiplicity * m.Degree
 				for _, z := range m.Roots {
 					if z.IsReal() {
 						real++

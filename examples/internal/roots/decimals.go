@@ -3,15 +3,39 @@ package roots
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"math/big"
 
 	"example.org/closedform/algebra"
+	"example.org/closedform/linsys"
 )
 
 // Decimals returns the real and imaginary part of x, each to the number of
 // significant digits, rounded to nearest; a part that is zero is "0".
-func Decimals(ctx context.Context, x algebra.Algebraic, digits int) (re, im string, err error) {
+func Decimals(ctx context.Context, z linsys.Eigenvalue, digits int) (re, im string, err error) {
+	if x, ok := z.Algebraic(); ok {
+		return algebraic(ctx, x, digits)
+	}
+	// The parts are 0, or have as many digits as one cares to enclose.
+	for prec := uint(64 + 4*digits); prec <= mostPrecision; prec *= 2 {
+		ball, err := z.Enclose(ctx, prec)
+		if err != nil {
+			return "", "", err
+		}
+		re, okRe := ball.Re.Decimal(digits)
+		im, okIm := ball.Im.Decimal(digits)
+		if okRe && okIm {
+			return re, im, nil
+		}
+	}
+	return "", "", fmt.Errorf("the digits of %s are not found with %d bits", z, mostPrecision)
+}
+
+// mostPrecision is where the search for digits ends.
+const mostPrecision = 1 << 18
+
+func algebraic(ctx context.Context, x algebra.Algebraic, digits int) (re, im string, err error) {
 	exactRe, okRe, err := rationalRealPart(ctx, x)
 	if err != nil {
 		return "", "", err

@@ -43,7 +43,7 @@ func TestDecimals(t *testing.T) {
 			require.NoError(t, err)
 			var got []part
 			for _, x := range roots {
-				re, im, err := Decimals(context.Background(), x, c.digits)
+				re, im, err := algebraic(context.Background(), x, c.digits)
 				require.NoError(t, err)
 				got = append(got, part{re, im})
 			}
@@ -61,7 +61,7 @@ func TestDecimalsOfTies(t *testing.T) {
 	roots, err := algebra.AlgebraicRoots(ctx, shifted)
 	require.NoError(t, err)
 	for _, x := range roots {
-		re, _, err := Decimals(ctx, x, 2)
+		re, _, err := algebraic(ctx, x, 2)
 		require.NoError(t, err)
 		require.Equal(t, "1.3", re)
 	}
@@ -70,7 +70,7 @@ func TestDecimalsOfTies(t *testing.T) {
 	roots, err = algebra.AlgebraicRoots(ctx, m)
 	require.NoError(t, err)
 	for i, x := range roots {
-		re, im, err := Decimals(ctx, x, 2)
+		re, im, err := algebraic(ctx, x, 2)
 		require.NoError(t, err)
 		require.Equal(t, []string{"-1.4", "-1.4", "1.4", "1.4"}[i], re)
 		require.Equal(t, []string{"1.3", "-1.3", "1.3", "-1.3"}[i], im)
@@ -82,6 +82,6 @@ func TestDecimalsStopsWhenCancelled(t *testing.T) {
 	require.NoError(t, err)
 	ctx, cancel := context.WithCancel(context.Background())
 	cancel()
-	_, _, err = Decimals(ctx, roots[1], 100)
+	_, _, err = algebraic(ctx, roots[1], 100)
 	require.ErrorIs(t, err, context.Canceled)
 }

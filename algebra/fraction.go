@@ -1,0 +1,526 @@
+package algebra
+
+import (
+	"context"
+	"fmt"
+	"math/big"
+	"strings"
+
+	"example.org/closedform/algebra/internal/mpoly"
+)
+
+// Fraction is an element of a [FunctionField]: N/D with N a polynomial over Z in
+// the root a and the variables, D one in the variables alone, in lowest terms,
+// the leading coefficient of D positive. The zero value is 0. Like other
+// elements it is bare data; what a and the variables are the domain knows.
+type Fraction struct {
+	num mpoly.Poly
+	den mpoly.Poly // the zero value stands for 1
+}
+
+// FunctionField is the field Q(a)(x1, ..., xn) of rational functions in n
+// variables, where a is a real algebraic number and may be absent. Variables
+// may stand for real numbers that are independent over Q(a), such as pi; where
+// all of them do, its elements can be enclosed and it is a field of [Scalars]
+// in every respect.
+//
+// Operations whose operands are too large panic with a *[LimitError]; see
+// [CatchLimit].
+type FunctionField struct {
+	names  []string
+	values []func(prec uint) Ball
+	root   Algebraic  // a; the zero value if absent
+	mod    mpoly.Poly // minimal polynomial of a, monic over Z; 0 if absent
+	degree int        // of mod, 1 if absent
+}
+
+// NewFunctionField returns Q(names...). values[i], unless nil, encloses the
+// number that the i-th variable stands for with about the given bits; values
+// itself may be nil.
+func NewFunctionField(names []string, values []func(prec uint) Ball) *FunctionField {
+	f := &FunctionField{names: append([]string(nil), names...), degree: 1}
+	f.values = make([]func(uint) Ball, len(names))
+	copy(f.values, values)
+	return f
+}
+
+// WithRoot returns the field with a root of a monic irreducible polynomial over
+// Z adjoined, in place of the one it has. It panics when a is not real or not
+// an algebraic integer.
+func (f *FunctionField) WithRoot(a Algebraic) *FunctionField {
+	p := a.MinPoly()
+	if !a.IsReal() || p.Degree() < 2 {
+		panic("algebra: extension by a number that is not real and irrational")
+	}
+	out := &FunctionField{names: f.names, values: f.values, root: a, degree: p.Degree()}
+	var terms []mpoly.Term
+	for i := range p.Degree() + 1 {
+		c := p.Coef(i)
+		if !c.IsInt() {
+			panic("algebra: extension by a number that is not an algebraic integer")
+		}
+		exp := make([]int, f.size())
+		exp[0] = i
+		terms = append(terms, mpoly.Term{Coef: c.Num(), Exp: exp})
+	}
+	out.mod = mpoly.FromTerms(f.size(), terms)
+	return out
+}
+
+// size is the number of variables of the polynomials: the root comes first.
+func (f *FunctionField) size() int { return len(f.names) + 1 }
+
+// Names returns the names of the variables.
+func (f *FunctionField) Names() []string { return append([]string(nil), f.names...) }
+
+// Root returns a, if there is one.
+func (f *FunctionField) Root() (Algebraic, bool) { return f.root, f.degree > 1 }
+
+// Degree returns the degree of a over Q, 1 if there is none.
+func (f *FunctionField) Degree() int { return f.degree }
+
+// Variable returns the i-th variable, counted from 0.
+func (f *FunctionField) Variable(i int) Fraction {
+	return Fraction{num: mpoly.Variable(f.size(), i+1)}
+}
+
+// RootElement returns a. It panics when there is none.
+func (f *FunctionField) RootElement() Fraction {
+	if f.degree == 1 {
+		panic("algebra: the field has no algebraic root")
+	}
+	return Fraction{num: mpoly.Variable(f.size(), 0)}
+}
+
+// LimitError is the panic value of operations on operands that are too large.
+type LimitError struct{ What string }
+
+func (e *LimitError) Error() string { return "algebra: " + e.What }
+
+// CatchLimit, deferred, turns the panic of a *[LimitError] into an error.
+func CatchLimit(err *error) {
+	if r := recover(); r != nil {
+		e, ok := r.(*LimitError)
+		if !ok {
+			panic(r)
+		}
+		*err = e
+	}
+}
+
+// mostProducts bounds the products of terms in one multiplication: about half a
+// second.
+const mostProducts = 1 << 23
+
+func mul(p, q mpoly.Poly) mpoly.Poly {
+	if n, m := p.Len(), q.Len(); n*m > mostProducts {
+		panic(&LimitError{fmt.Sprintf("the product of two expressions of %d and %d terms", n, m)})
+	}
+	return p.Mul(q)
+}
+
+func gcd(p, q mpoly.Poly) mpoly.Poly {
+	g, err := mpoly.GCD(context.Background(), p, q)
+	if err != nil {
+		panic(&LimitError{err.Error()})
+	}
+	return g
+}
+
+func quo(p, q mpoly.Poly) mpoly.Poly {
+	if q.IsOne() {
+		return p
+	}
+	r, ok := p.DivExact(q)
+	if !ok {
+		panic("algebra: a polynomial that should divide another does not")
+	}
+	return r
+}
+
+// denominator returns D.
+func (f *FunctionField) denominator(x Fraction) mpoly.Poly {
+	if x.den.IsZero() {
+		return mpoly.ConstantWord(f.size(), 1)
+	}
+	return x.den
+}
+
+// over returns num/den with a common factor of which is not known.
+func (f *FunctionField) over(num, den mpoly.Poly) Fraction {
+	if num.IsZero() {
+		return Fraction{}
+	}
+	if den.IsZero() || den.IsOne() {
+		return Fraction{num: num}
+	}
+	if g := f.contentGCD(num, den); !g.IsOne() {
+		num, den = quo(num, g), quo(den, g)
+	}
+	return signed(num, den)
+}
+
+// signed returns num/den in lowest terms with the canonical sign.
+func signed(num, den mpoly.Poly) Fraction {
+	if den.LeadSign() < 0 {
+		num, den = num.Neg(), den.Neg()
+	}
+	if den.IsOne() {
+		return Fraction{num: num}
+	}
+	return Fraction{num: num, den: den}
+}
+
+// contentGCD returns the greatest common divisor free of a of p and q, with q
+// free of a.
+func (f *FunctionField) contentGCD(p, q mpoly.Poly) mpoly.Poly {
+	if !p.Uses(0) {
+		return gcd(p, q)
+	}
+	g := q
+	for _, c := range p.Coefficients(0) {
+		if g.IsOne() {
+			break
+		}
+		if !c.IsZero() {
+			g = gcd(g, c)
+		}
+	}
+	return g
+}
+
+// reduce returns p modulo the minimal polynomial of a.
+func (f *FunctionField) reduce(p mpoly.Poly) mpoly.Poly {
+	if p.Degree(0) < f.degree {
+		return p
+	}
+	c := p.Coefficients(0)
+	m := f.mod.Coefficients(0)
+	for k := len(c) - 1; k >= f.degree; k-- {
+		for j := range f.degree {
+			if !m[j].IsZero() {
+				c[k-f.degree+j] = c[k-f.degree+j].Sub(mul(c[k], m[j]))
+			}
+		}
+	}
+	return mpoly.FromCoefficients(0, c[:f.degree])
+}
+
+func (f *FunctionField) Zero() Fraction { return Fraction{} }
+
+func (f *FunctionField) One() Fraction { return f.FromInt(1) }
+
+func (f *FunctionField) FromInt(n int64) Fraction {
+	return Fraction{num: mpoly.ConstantWord(f.size(), n)}
+}
+
+// FromRat returns the image of a rational number.
+func (f *FunctionField) FromRat(x Rat) Fraction {
+	num := Fraction{num: mpoly.Constant(f.size(), x.Num())}
+	if !x.IsInt() {
+		num.den = mpoly.Constant(f.size(), x.Den())
+	}
+	return num
+}
+
+// Add returns x + y, with gcds of denominators only (P. Henrici, A subroutine
+// for computations with rational numbers, J. ACM 3, 1956).
+func (f *FunctionField) Add(x, y Fraction) Fraction {
+	switch {
+	case x.num.IsZero():
+		return y
+	case y.num.IsZero():
+		return x
+	case x.den.IsZero() && y.den.IsZero():
+		return Fraction{num: x.num.Add(y.num)}
+	case x.den.Equal(y.den):
+		return f.over(x.num.Add(y.num), x.den)
+	}
+	b, d := f.denominator(x), f.denominator(y)
+	g := gcd(b, d)
+	num := mul(x.num, quo(d, g)).Add(mul(y.num, quo(b, g)))
+	if num.IsZero() {
+		return Fraction{}
+	}
+	den := mul(b, quo(d, g))
+	if !g.IsOne() {
+		if h := f.contentGCD(num, g); !h.IsOne() {
+			num, den = quo(num, h), quo(den, h)
+		}
+	}
+	return signed(num, den)
+}
+
+func (f *FunctionField) Sub(x, y Fraction) Fraction { return f.Add(x, f.Neg(y)) }
+
+func (f *FunctionField) Neg(x Fraction) Fraction { return Fraction{num: x.num.Neg(), den: x.den} }
+
+// Mul returns x y.
+func (f *FunctionField) Mul(x, y Fraction) Fraction {
+	if x.num.IsZero() || y.num.IsZero() {
+		return Fraction{}
+	}
+	if x.num.Uses(0) && y.num.Uses(0) {
+		// The reduction modulo the minimal polynomial may bring in new content.
+		num := f.reduce(mul(x.num, y.num))
+		return f.over(num, mul(f.denominator(x), f.denominator(y)))
+	}
+	a, b, c, d := x.num, x.den, y.num, y.den
+	if !d.IsZero() {
+		g := f.contentGCD(a, d)
+		a, d = quo(a, g), quo(d, g)
+	}
+	if !b.IsZero() {
+		g := f.contentGCD(c, b)
+		c, b = quo(c, g), quo(b, g)
+	}
+	num := mul(a, c)
+	switch {
+	case b.IsZero() && d.IsZero():
+		return Fraction{num: num}
+	case b.IsZero():
+		return signed(num, d)
+	case d.IsZero():
+		return signed(num, b)
+	}
+	return signed(num, mul(b, d))
+}
+
+// Inv returns 1/x, or ErrDivisionByZero. Where x holds the root a, the
+// denominator becomes the norm: by the theorem of Cayley and Hamilton for the
+// multiplication by x, with the characteristic polynomial
+// s^d + c1 s^(d-1) + ... + cd, 1/x = -(x^(d-1) + c1 x^(d-2) + ... + c(d-1))/cd.
+func (f *FunctionField) Inv(x Fraction) (Fraction, error) {
+	if x.num.IsZero() {
+		return Fraction{}, ErrDivisionByZero
+	}
+	if !x.num.Uses(0) {
+		return signed(f.denominator(x), x.num), nil
+	}
+	chi := f.multiplication(x.num)
+	d := f.degree
+	sum := mpoly.ConstantWord(f.size(), 1)
+	for i := 1; i < d; i++ {
+		sum = f.reduce(mul(sum, x.num)).Add(chi.Coef(d - i))
+	}
+	return f.over(mul(sum.Neg(), f.denominator(x)), chi.Coef(0)), nil
+}
+
+// multiplication returns the characteristic polynomial of the multiplication by
+// p modulo the minimal polynomial of a, over the polynomials in the variables.
+func (f *FunctionField) multiplication(p mpoly.Poly) Poly[mpoly.Poly] {
+	r := polynomials{f.size()}
+	d := f.degree
+	columns := make([][]mpoly.Poly, d)
+	power := f.reduce(p)
+	for j := range columns {
+		columns[j] = make([]mpoly.Poly, d)
+		copy(columns[j], power.Coefficients(0))
+		if j < d-1 {
+			power = f.reduce(power.Mul(mpoly.Variable(f.size(), 0)))
+		}
+	}
+	m := MatrixFromFunc[mpoly.Poly](r, d, d, func(i, j int) mpoly.Poly { return columns[j][i] })
+	chi, err := CharPoly(context.Background(), m)
+	if err != nil {
+		panic(err) // the context does not end
+	}
+	return chi
+}
+
+// polynomials is the ring of integer polynomials in n variables.
+type polynomials struct{ n int }
+
+func (r polynomials) Zero() mpoly.Poly               { return mpoly.Poly{} }
+func (r polynomials) One() mpoly.Poly                { return r.FromInt(1) }
+func (r polynomials) FromInt(n int64) mpoly.Poly     { return mpoly.ConstantWord(r.n, n) }
+func (r polynomials) Add(x, y mpoly.Poly) mpoly.Poly { return x.Add(y) }
+func (r polynomials) Sub(x, y mpoly.Poly) mpoly.Poly { return x.Sub(y) }
+func (r polynomials) Neg(x mpoly.Poly) mpoly.Poly    { return x.Neg() }
+func (r polynomials) Mul(x, y mpoly.Poly) mpoly.Poly { return mul(x, y) }
+func (r polynomials) Equal(x, y mpoly.Poly) bool     { return x.Equal(y) }
+func (r polynomials) IsZero(x mpoly.Poly) bool       { return x.IsZero() }
+func (r polynomials) Text(x mpoly.Poly) string       { return polyText(x, nil) }
+
+func (f *FunctionField) Equal(x, y Fraction) bool {
+	return x.num.Equal(y.num) && x.den.Equal(y.den)
+}
+
+func (f *FunctionField) IsZero(x Fraction) bool { return x.num.IsZero() }
+
+// Rational returns the rational number that x is, if it is one.
+func (f *FunctionField) Rational(x Fraction) (Rat, bool) {
+	if x.num.IsZero() {
+		return Rat{}, true
+	}
+	if !x.num.IsConstant() || !x.den.IsZero() && !x.den.IsConstant() {
+		return Rat{}, false
+	}
+	if x.den.IsZero() {
+		return RatFromBigInt(x.num.ConstantTerm()), true
+	}
+	return RatFromFrac(x.num.ConstantTerm(), x.den.ConstantTerm()), true
+}
+
+// Negative tells, for one of x and -x, that it is to be written with a minus
+// sign: the sign of the number where it is one, that of the leading coefficient
+// of the numerator otherwise.
+func (f *FunctionField) Negative(x Fraction) bool {
+	if sign, ok := f.Sign(x); ok {
+		return sign < 0
+	}
+	return x.num.LeadSign() < 0
+}
+
+// IsNumber tells whether x is free of variables that have no value.
+func (f *FunctionField) IsNumber(x Fraction) bool {
+	for i, v := range f.values {
+		if v == nil && (x.num.Uses(i+1) || x.den.Uses(i+1)) {
+			return false
+		}
+	}
+	return true
+}
+
+// Sign returns the sign of x, if x is a number.
+func (f *FunctionField) Sign(x Fraction) (int, bool) {
+	if r, ok := f.Rational(x); ok {
+		return r.Sign(), true
+	}
+	if !f.IsNumber(x) {
+		return 0, false
+	}
+	for prec := uint(64); prec <= mostEnclosing; prec *= 2 {
+		if sign, certain := f.enclose(x, prec).Sign(); certain {
+			return sign, true
+		}
+	}
+	return 0, false
+}
+
+// mostEnclosing is the precision in bits where the enclosure of an element ends.
+const mostEnclosing = 1 << 16
+
+// Enclose returns a ball around x with about prec proven bits. Variables without
+// a value make it the whole line.
+func (f *FunctionField) Enclose(x Fraction, prec uint) Ball {
+	if r, ok := f.Rational(x); ok {
+		return BallFromRat(r.Big(), prec)
+	}
+	if !f.IsNumber(x) {
+		return unknown()
+	}
+	var b Ball
+	for work := prec + 32; work <= max(mostEnclosing, 4*prec); work *= 2 {
+		if b = f.enclose(x, work); b.RelPrec() >= int(prec) {
+			break
+		}
+	}
+	return b.Round(prec)
+}
+
+// enclose evaluates x with the working precision prec.
+func (f *FunctionField) enclose(x Fraction, prec uint) Ball {
+	values := make([][]Ball, f.size()) // powers
+	power := func(i, e int) Ball {
+		if values[i] == nil {
+			values[i] = []Ball{BallFromInt(big.NewInt(1))}
+		}
+		for len(values[i]) <= e {
+			if len(values[i]) == 1 {
+				values[i] = append(values[i], f.value(i, prec))
+			} else {
+				values[i] = append(values[i], values[i][len(values[i])-1].Mul(values[i][1], prec))
+			}
+		}
+		return values[i][e]
+	}
+	eval := func(p mpoly.Poly) Ball {
+		var sum Ball
+		for t := range p.Terms() {
+			b := BallFromInt(t.Coef)
+			for i, e := range t.Exp {
+				if e > 0 {
+					b = b.Mul(power(i, e), prec)
+				}
+			}
+			sum = sum.Add(b, prec)
+		}
+		return sum
+	}
+	b := eval(x.num)
+	if !x.den.IsZero() {
+		b = b.Quo(eval(x.den), prec)
+	}
+	return b
+}
+
+// value encloses the i-th variable of the polynomials.
+func (f *FunctionField) value(i int, prec uint) Ball {
+	if i > 0 {
+		return f.values[i-1](prec)
+	}
+	z, err := f.root.Enclose(context.Background(), prec)
+	if err != nil {
+		panic(err) // the context does not end
+	}
+	return z.Re
+}
+
+// Text writes x with the names of the variables and the root as a.
+func (f *FunctionField) Text(x Fraction) string {
+	names := append([]string{"a"}, f.names...)
+	num := polyText(x.num, names)
+	if x.den.IsZero() {
+		return num
+	}
+	if x.num.Len() > 1 {
+		num = "(" + num + ")"
+	}
+	den := polyText(x.den, names)
+	if x.den.Len() > 1 || strings.Contains(den, "*") {
+		den = "(" + den + ")"
+	}
+	return num + "/" + den
+}
+
+// polyText writes a polynomial with names for its variables, x0, x1, ... by
+// default.
+func polyText(p mpoly.Poly, names []string) string {
+	if p.IsZero() {
+		return "0"
+	}
+	var b strings.Builder
+	for t := range p.Terms() {
+		c := t.Coef
+		switch {
+		case b.Len() == 0 && c.Sign() < 0:
+			b.WriteString("-")
+		case c.Sign() < 0:
+			b.WriteString(" - ")
+		case b.Len() > 0:
+			b.WriteString(" + ")
+		}
+		var factors []string
+		if c = new(big.Int).Abs(c); !isOne(c) {
+			factors = append(factors, c.String())
+		}
+		for i, e := range t.Exp {
+			name := fmt.Sprintf("x%d", i)
+			if names != nil {
+				name = names[i]
+			}
+			switch {
+			case e == 1:
+				factors = append(factors, name)
+			case e > 1:
+				factors = append(factors, fmt.Sprintf("%s^%d", name, e))
+			}
+		}
+		if len(factors) == 0 {
+			factors = []string{"1"}
+		}
+		b.WriteString(strings.Join(factors, "*"))
+	}
+	return b.String()
+}

@@ -1,0 +1,290 @@
+package expr
+
+import (
+	"context"
+	"slices"
+
+	"example.org/closedform/algebra"
+)
+
+// Conditions collects what must not vanish: irreducible expressions in the
+// symbols of a field, without duplicates and without those that the assumptions
+// of the field exclude.
+type Conditions struct {
+	k       *Constants
+	factors []Constant
+	simple  []algebra.Poly[Constant] // polynomials whose roots must be distinct
+}
+
+// NewConditions returns an empty list over a field, nil for Q.
+func NewConditions(k *Constants) *Conditions { return &Conditions{k: k} }
+
+// Exclude enters what makes x vanish, if anything does.
+func (l *Conditions) Exclude(ctx context.Context, x Constant) error {
+	if _, number := l.k.Rational(x); number {
+		return nil
+	}
+	num, _ := l.k.Parts(l.k.Norm(x))
+	_, factors, err := l.k.Factors(ctx, num)
+	if err != nil {
+		return err
+	}
+	for _, f := range factors {
+		p := f.Base
+		if l.k.NotZero(p) || slices.ContainsFunc(l.factors, func(q Constant) bool { return l.k.Equal(p, q) }) {
+			continue
+		}
+		l.factors = append(l.factors, p)
+	}
+	return nil
+}
+
+// ExcludeDenominator enters what makes the denominator of x vanish.
+func (l *Conditions) ExcludeDenominator(ctx context.Context, x Constant) error {
+	if x.Denominator() == nil {
+		return nil
+	}
+	_, den := l.k.Parts(x)
+	return l.Exclude(ctx, den)
+}
+
+// excludeRepeated enters the repeated roots of a polynomial.
+func (l *Conditions) excludeRepeated(p algebra.Poly[Constant]) {
+	for i := range p.Degree() + 1 {
+		if !l.k.IsNumber(p.Coef(i)) {
+			if !slices.ContainsFunc(l.simple, p.Equal) {
+				l.simple = append(l.simple, p)
+			}
+			return
+		}
+	}
+}
+
+// Join returns the conditions of both lists.
+func (l *Conditions) Join(m *Conditions) *Conditions {
+	out := l.Without(m)
+	out.factors = append(slices.Clone(m.factors), out.factors...)
+	out.simple = append(slices.Clone(m.simple), out.simple...)
+	return out
+}
+
+// Broken returns a condition that a substitution violates, "" if there is none.
+func (l *Conditions) Broken(s *Substitution) (string, error) {
+	for _, p := range l.factors {
+		x, err := SubstituteScalar(s, p)
+		if err != nil {
+			return "", err
+		}
+		if s.m.to.IsZero(x) {
+			r := l.k.unequal(p)
+			return r.String(), nil
+		}
+	}
+	return "", nil
+}
+
+// SolveFor solves an equation for one of the symbols in which it is linear: the
+// one that stands alone on a side, or else the first of the list whose
+// coefficient is a number, or the first at all.
+func SolveFor(eq Relation, symbols []string) (name string, value Node, err error) {
+	best := ""
+	_, err = Grow(NewConstants(symbols...), func(k *Constants) error {
+		env := Env[Constant]{K: k, Lookup: k.Lookup}
+		left, err := env.Scalar(eq.Left)
+		if err != nil {
+			return err
+		}
+		right, err := env.Scalar(eq.Right)
+		if err != nil {
+			return err
+		}
+		x := k.Sub(left, right)
+		num, _ := k.Parts(x)
+		alone := ""
+		for _, side := range []Node{eq.Right, eq.Left} {
+			if s, ok := side.(Symbol); ok && slices.Contains(symbols, s.Name) {
+				alone = s.Name
+			}
+		}
+		for i, f := range k.formals {
+			if f.kind != symbolFormal || alone != "" && f.name != alone {
+				continue
+			}
+			slope, rest, ok := k.linearIn(num, i)
+			if !ok {
+				continue
+			}
+			_, number := k.Rational(slope)
+			if best != "" && !number {
+				continue
+			}
+			best = f.name
+			value = k.Node(k.quotient(k.Neg(rest), slope))
+			if number {
+				break
+			}
+		}
+		if best == "" {
+			return Errorf(OutsideClass, eq.Pos, "%s is not linear in a symbol of the response", Quote(eq.String()))
+		}
+		return nil
+	})
+	return best, value, err
+}
+
+// linearIn returns slope and rest with p = slope x + rest, x the i-th variable,
+// neither of which holds x.
+func (c *Constants) linearIn(p Constant, i int) (slope, rest Constant, ok bool) {
+	var above, below []algebra.Term
+	for _, t := range p.Numerator() {
+		switch t.Exp[i+1] {
+		case 0:
+			below = append(below, t)
+		case 1:
+			t.Exp = slices.Clone(t.Exp)
+			t.Exp[i+1] = 0
+			above = append(above, t)
+		default:
+			return slope, rest, false
+		}
+	}
+	slope, rest = c.FromTerms(above), c.FromTerms(below)
+	for _, f := range c.formals {
+		if f.arg.Size() > 0 && c.Uses(f.arg, i) {
+			return slope, rest, false
+		}
+	}
+	return slope, rest, len(above) > 0
+}
+
+// Without returns the conditions that the list m does not have.
+func (l *Conditions) Without(m *Conditions) *Conditions {
+	out := &Conditions{k: l.k}
+	for _, p := range l.factors {
+		if !slices.ContainsFunc(m.factors, func(q Constant) bool { return l.k.Equal(p, q) }) {
+			out.factors = append(out.factors, p)
+		}
+	}
+	for _, p := range l.simple {
+		if !slices.ContainsFunc(m.simple, p.Equal) {
+			out.simple = append(out.simple, p)
+		}
+	}
+	return out
+}
+
+// Strings writes the conditions: "k1 != k2", "k != 0".
+func (l *Conditions) Strings() []string {
+	var out []string
+	for _, p := range l.factors {
+		r := l.k.unequal(p)
+		out = append(out, r.String())
+	}
+	for _, p := range l.simple {
+		w := presenter[Constant]{k: l.k, style: l.k}
+		out = append(out, "the roots of "+w.poly(p, Sym("s")).String()+" are distinct")
+	}
+	slices.Sort(out)
+	return out
+}
+
+// unequal writes that p does not vanish: x != y where p is a difference of two
+// terms, p != 0 otherwise.
+func (c *Constants) unequal(p Constant) Relation {
+	n := c.Node(p)
+	if neg, ok := n.(Neg); ok {
+		n = neg.X
+	}
+	if s, ok := n.(Sum); ok && len(s.Terms) == 2 {
+		left, right := s.Terms[0], Negate(s.Terms[1])
+		if neg, ok := left.(Neg); ok {
+			left, right = right, neg.X
+			if neg, ok := left.(Neg); ok {
+				left, right = neg.X, Negate(right)
+			}
+		}
+		return Relation{Left: left, Right: right, Op: "!="}
+	}
+	return Relation{Left: n, Right: Int(0), Op: "!="}
+}
+
+// Conditions returns what the written form of f divides by: the cases in which
+// it does not hold, although the function it stands for may have a value. They
+// are found in the coefficients of the exponentials, in lowest terms.
+func (f Function) Conditions(ctx context.Context) (out *Conditions, err error) {
+	defer catchLimit(&err)
+	out = NewConditions(f.over().field())
+	return out, wrapCancel(f.over().exclude(ctx, out))
+}
+
+func (f *overField[E]) exclude(ctx context.Context, l *Conditions) error {
+	g, ok := any(f).(*overField[Constant])
+	if !ok {
+		return nil
+	}
+	for _, m := range g.images() {
+		if err := m.exclude(ctx, l); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// exclude enters what the written form of an image over constants divides by.
+func (f Image[E]) exclude(ctx context.Context, l *Conditions) error {
+	m := any(f).(Image[Constant])
+	k := l.k
+	for i, pp := range m.den {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		if pp.p.Degree() > 2 {
+			l.excludeRepeated(pp.p)
+			for j, other := range m.den {
+				if j != i {
+					if err := l.Exclude(ctx, resultant(k, pp.p, other.p)); err != nil {
+						return err
+					}
+				}
+			}
+			continue
+		}
+		part := m.local(i)
+		var written []Constant
+		if pp.p.Degree() == 1 {
+			for _, c := range part.c {
+				written = append(written, coef[Constant](k, c, 0))
+			}
+		} else {
+			q := presenter[Constant]{k: k, style: k}.quadraticPart(part)
+			written = append(q.a.Coefs(), q.b.Coefs()...)
+		}
+		for _, x := range written {
+			if err := l.ExcludeDenominator(ctx, x); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// resultant returns the product of q over the roots of the monic polynomial p:
+// the determinant of the multiplication by q modulo p.
+func resultant[E any](k algebra.Scalars[E], p, q algebra.Poly[E]) E {
+	n := p.Degree()
+	columns := make([]algebra.Poly[E], n)
+	columns[0] = q.Rem(k, p)
+	for j := 1; j < n; j++ {
+		columns[j] = columns[j-1].ShiftUp(1).Rem(k, p)
+	}
+	m := algebra.MatrixFromFunc[E](k, n, n, func(i, j int) E { return coef[E](k, columns[j], i) })
+	chi, err := algebra.CharPoly(context.Background(), m)
+	if err != nil {
+		panic(err) // the context does not end
+	}
+	d := chi.Coef(0)
+	if n%2 == 1 {
+		d = k.Neg(d)
+	}
+	return d
+}

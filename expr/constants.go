@@ -1,0 +1,285 @@
+package expr
+
+import (
+	"errors"
+	"fmt"
+	"slices"
+	"strings"
+
+	"example.org/closedform/algebra"
+)
+
+// Constants is a field for the numbers of a model that are not all rational:
+// Q(a)(x1, ..., xn), where a is a real algebraic number that square roots and
+// other roots are written in, and every variable is a symbol, pi, or a formal
+// constant such as e^k. It never changes; a field with more constants is a new
+// one.
+//
+// Formal constants are chosen so that they are independent. The exponents of all
+// e^x are combinations with integer coefficients of those of the variables, so
+// that e^x e^y = e^(x+y) holds by itself. A variable for an angle b is the
+// tangent of b/2, in which cos b and sin b are rational, so that
+// cos^2 b + sin^2 b = 1 does.
+type Constants struct {
+	*algebra.FunctionField
+	formals    []formal
+	generators []generator
+	table      [][]algebra.Rat // the powers of a in products of the generators
+	assumed    Assumptions
+	shown      *sharedDisplay
+}
+
+// Constant is an element of [Constants].
+type Constant = algebra.Fraction
+
+// formal is what a variable stands for.
+type formal struct {
+	kind formalKind
+	name string   // of a symbol
+	arg  Constant // the exponent x of e^x, the angle b of tan(b/2)
+}
+
+type formalKind int
+
+const (
+	symbolFormal formalKind = iota
+	piFormal
+	expFormal         // e^arg
+	halfTangentFormal // tan(arg/2)
+)
+
+// generator is an algebraic number as it is written: a root, or the cosine of a
+// rational multiple of pi. The products of powers g1^e1 ... gr^er with ei below
+// the degrees are a basis of Q(a) over Q.
+type generator struct {
+	q      int         // the q-th root of arg, 0 for a cosine
+	arg    Constant    // free of later generators
+	angle  algebra.Rat // cos(angle pi)
+	value  Constant
+	degree int // over the field of the generators before it
+}
+
+// mostAlgebraic bounds the degree of the algebraic numbers of a model.
+const mostAlgebraic = 32
+
+// NewConstants returns the field Q(names); the name pi stands for the number.
+func NewConstants(names ...string) *Constants {
+	formals := make([]formal, len(names))
+	for i, name := range names {
+		formals[i] = formal{kind: symbolFormal, name: name}
+		if name == "pi" {
+			formals[i].kind = piFormal
+		}
+	}
+	c := &Constants{formals: formals, shown: &sharedDisplay{}}
+	c.FunctionField = c.build()
+	return c
+}
+
+// build returns the function field of the formals, without a root. Formal
+// constants have names that no symbol can have.
+func (c *Constants) build() *algebra.FunctionField {
+	names := make([]string, len(c.formals))
+	values := make([]func(uint) algebra.Ball, len(c.formals))
+	for i, f := range c.formals {
+		switch f.kind {
+		case symbolFormal:
+			names[i] = f.name
+		case piFormal:
+			names[i], values[i] = "pi", algebra.Pi
+		case expFormal:
+			names[i] = fmt.Sprintf("exp#%d", i)
+			if c.IsNumber(f.arg) {
+				values[i] = func(prec uint) algebra.Ball { return c.Enclose(f.arg, prec+16).Exp(prec) }
+			}
+		case halfTangentFormal:
+			names[i] = fmt.Sprintf("tan#%d", i)
+			if c.IsNumber(f.arg) {
+				values[i] = func(prec uint) algebra.Ball {
+					sin, cos := c.Enclose(f.arg, prec+16).MulPow2(-1).SinCos(prec)
+					return sin.Quo(cos, prec)
+				}
+			}
+		}
+	}
+	return algebra.NewFunctionField(names, values)
+}
+
+// growth is the error of a constant that is not in the field: it carries the
+// field that has it.
+type growth struct{ to *Constants }
+
+func (g *growth) Error() string { return "expr: internal error: a constant outside the field" }
+
+// mostGrowth bounds the constants that one text may bring in.
+const mostGrowth = 64
+
+// Grow calls read with the field k and, when read meets a constant that is not
+// in it, again with one that has it. It returns the last field and the error of
+// read.
+func Grow(k *Constants, read func(k *Constants) error) (*Constants, error) {
+	for range mostGrowth {
+		err := read(k)
+		var g *growth
+		if !errors.As(err, &g) {
+			return k, err
+		}
+		k = g.to
+	}
+	return k, Errorf(LimitExceeded, Pos{}, "more than %d constants such as exp(a), cos(b) or sqrt(c)", mostGrowth)
+}
+
+// Lookup returns the value of a name of the field.
+func (c *Constants) Lookup(s Symbol) (Constant, error) {
+	switch strings.ToLower(s.Name) {
+	case "nan", "inf", "infinity":
+		return Constant{}, Errorf(OutsideClass, s.Pos(), "%s is not a number", s.Name)
+	}
+	if i := c.index(s.Name); i >= 0 {
+		return c.Variable(i), nil
+	}
+	if s.Name == "pi" {
+		return Constant{}, &growth{c.with(formal{kind: piFormal})}
+	}
+	return Constant{}, Errorf(OutsideClass, s.Pos(), "the name %s has no value", Quote(s.Name))
+}
+
+func (c *Constants) index(name string) int {
+	return slices.IndexFunc(c.formals, func(f formal) bool {
+		return f.kind == symbolFormal && f.name == name || f.kind == piFormal && name == "pi"
+	})
+}
+
+// Symbols returns the names of the symbols.
+func (c *Constants) Symbols() []string {
+	var out []string
+	for _, f := range c.formals {
+		if f.kind == symbolFormal {
+			out = append(out, f.name)
+		}
+	}
+	return out
+}
+
+// SymbolsIn returns the names of the symbols that occur in the elements, those
+// in the arguments of formal constants included.
+func (c *Constants) SymbolsIn(elements ...Constant) []string {
+	used := make([]bool, len(c.formals))
+	var visit func(x Constant)
+	visit = func(x Constant) {
+		for i, f := range c.formals {
+			if !used[i] && c.Uses(x, i) {
+				used[i] = true
+				if f.kind == expFormal || f.kind == halfTangentFormal {
+					visit(f.arg)
+				}
+			}
+		}
+	}
+	for _, x := range elements {
+		visit(x)
+	}
+	var out []string
+	for i, f := range c.formals {
+		if used[i] && f.kind == symbolFormal {
+			out = append(out, f.name)
+		}
+	}
+	return out
+}
+
+// with returns the field with one more formal, whose argument is in c.
+func (c *Constants) with(f formal) *Constants {
+	formals := append(slices.Clone(c.formals), f)
+	return c.rebuild(formals, func(g *Constants) ([]Constant, error) {
+		values := make([]Constant, len(c.formals))
+		for i := range values {
+			values[i] = g.Variable(i)
+		}
+		return values, nil
+	})
+}
+
+// rebuild returns a field with other formals, whose arguments are in c, under
+// the images of the old variables.
+func (c *Constants) rebuild(formals []formal, images func(g *Constants) ([]Constant, error)) *Constants {
+	g := &Constants{formals: formals, shown: &sharedDisplay{}}
+	g.FunctionField = g.placeholder(c)
+	values, err := images(g)
+	if err != nil {
+		panic(err) // the images of variables are not zero
+	}
+	g.carry(c, values)
+	return g
+}
+
+// placeholder is the field of the formals of g over the root of c, before the
+// arguments are known.
+func (g *Constants) placeholder(c *Constants) *algebra.FunctionField {
+	f := algebra.NewFunctionField(make([]string, len(g.formals)), nil)
+	if root, ok := c.Root(); ok {
+		f = f.WithRoot(root)
+	}
+	return f
+}
+
+// carry maps what c knows into g, given the images of the variables.
+func (g *Constants) carry(c *Constants, values []Constant) {
+	root := Constant{}
+	if _, ok := c.Root(); ok {
+		root = g.RootElement()
+	}
+	place := g.FunctionField
+	to := func(x Constant) Constant {
+		y, err := c.Map(x, place, root, values)
+		if err != nil {
+			panic(err) // an embedding has no zero divisors
+		}
+		return y
+	}
+	for i, f := range g.formals {
+		g.formals[i].arg = to(f.arg)
+	}
+	for _, h := range c.generators {
+		h.arg, h.value = to(h.arg), to(h.value)
+		g.generators = append(g.generators, h)
+	}
+	g.assumed = c.assumed.mapped(to)
+	g.table = c.table
+	g.FunctionField = g.build()
+	if root, ok := c.Root(); ok {
+		g.FunctionField = g.FunctionField.WithRoot(root)
+	}
+}
+
+// adjoin returns the field with one more algebraic number.
+func (c *Constants) adjoin(h generator, adj algebra.Adjunction) *Constants {
+	g := &Constants{formals: slices.Clone(c.formals), shown: &sharedDisplay{}}
+	values := make([]Constant, len(c.formals))
+	for i := range values {
+		values[i] = adj.Field.Variable(i)
+	}
+	to := func(x Constant) Constant {
+		y, err := c.Map(x, adj.Field, adj.Root, values)
+		if err != nil {
+			panic(err) // an embedding has no zero divisors
+		}
+		return y
+	}
+	for i, f := range c.formals {
+		g.formals[i].arg = to(f.arg)
+	}
+	for _, old := range c.generators {
+		old.arg, old.value = to(old.arg), to(old.value)
+		g.generators = append(g.generators, old)
+	}
+	h.arg, h.value = to(h.arg), adj.New
+	h.degree = adj.Field.Degree() / c.Degree()
+	g.generators = append(g.generators, h)
+	g.assumed = c.assumed.mapped(to)
+	g.FunctionField = adj.Field
+	root, _ := adj.Field.Root()
+	g.FunctionField = g.build().WithRoot(root)
+	g.table = g.powersInGenerators()
+	return g
+}

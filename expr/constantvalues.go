@@ -1,0 +1,443 @@
+package expr
+
+import (
+	"context"
+	"math/big"
+
+	"example.org/closedform/algebra"
+)
+
+// Exp returns e^x. The error may be a growth.
+func (c *Constants) Exp(x Constant, at Pos) (Constant, error) {
+	if c.IsZero(x) {
+		return c.One(), nil
+	}
+	coefs, _, err := c.combine(x, expFormal, at)
+	if err != nil {
+		return Constant{}, err
+	}
+	out := c.One()
+	for i, n := range coefs {
+		if n == 0 {
+			continue
+		}
+		y, err := c.power(c.Variable(i), n)
+		if err != nil {
+			return Constant{}, err
+		}
+		out = c.Mul(out, y)
+	}
+	return out, nil
+}
+
+// CosSin returns cos x and sin x. The error may be a growth.
+func (c *Constants) CosSin(x Constant, at Pos) (cos, sin Constant, err error) {
+	if c.IsZero(x) {
+		return c.One(), c.Zero(), nil
+	}
+	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	if err != nil {
+		return cos, sin, err
+	}
+	if cos, sin, err = c.cosSinPi(turns, at); err != nil {
+		return cos, sin, err
+	}
+	for i, n := range coefs {
+		if n == 0 {
+			continue
+		}
+		// cos b = (1 - u^2)/(1 + u^2), sin b = 2u/(1 + u^2)
+		u := c.Variable(i)
+		square := c.Mul(u, u)
+		inv, err := c.Inv(c.Add(c.One(), square))
+		if err != nil {
+			return cos, sin, err
+		}
+		re := c.Mul(c.Sub(c.One(), square), inv)
+		im := c.Mul(c.Mul(c.FromInt(2), u), inv)
+		if n < 0 {
+			n, im = -n, c.Neg(im)
+		}
+		for range n {
+			cos, sin = c.Sub(c.Mul(cos, re), c.Mul(sin, im)), c.Add(c.Mul(cos, im), c.Mul(sin, re))
+		}
+	}
+	return cos, sin, nil
+}
+
+// power returns x^n for an x that is not zero.
+func (c *Constants) power(x Constant, n int64) (Constant, error) {
+	if n < 0 {
+		inv, err := c.Inv(x)
+		if err != nil {
+			return inv, err
+		}
+		x, n = inv, -n
+	}
+	out := c.One()
+	for ; n > 0; n >>= 1 {
+		if n&1 == 1 {
+			out = c.Mul(out, x)
+		}
+		if n > 1 {
+			x = c.Mul(x, x)
+		}
+	}
+	return out, nil
+}
+
+// mostMultiple bounds the multiples of an exponent or an angle.
+const mostMultiple = 200
+
+// combine writes x as a combination with integer coefficients of the arguments
+// of the formals of one kind, and for angles of a rational multiple of pi. Where
+// that needs another formal, or finer ones, the error is a growth.
+func (c *Constants) combine(x Constant, kind formalKind, at Pos) (coefs []int64, turns algebra.Rat, err error) {
+	var places []int
+	var args []Constant
+	for i, f := range c.formals {
+		if f.kind == kind {
+			places, args = append(places, i), append(args, f.arg)
+		}
+	}
+	pi := c.index("pi")
+	if kind == halfTangentFormal && pi >= 0 {
+		places, args = append(places, pi), append(args, c.Variable(pi))
+	}
+	coefs = make([]int64, len(c.formals))
+	r, ok := c.linear(x, args)
+	if !ok {
+		if kind == halfTangentFormal && pi >= 0 {
+			x = c.withoutMultiple(x, pi)
+		}
+		return nil, turns, &growth{c.with(formal{kind: kind, arg: x})}
+	}
+	var finer []formal
+	for j, i := range places {
+		if i == pi {
+			turns = r[j]
+			continue
+		}
+		n, integer := r[j].Int64()
+		if integer {
+			if coefs[i] = n; abs(n) > mostMultiple {
+				return nil, turns, Errorf(LimitExceeded, at, "a multiple of more than %d of another exponent or angle", mostMultiple)
+			}
+			continue
+		}
+		if finer == nil {
+			finer = append(finer, c.formals...)
+		}
+		d := algebra.RatFromBigInt(r[j].Den())
+		if n, small := d.Int64(); !small || n > mostMultiple {
+			return nil, turns, Errorf(LimitExceeded, at, "a fraction with a denominator of more than %d of another exponent or angle", mostMultiple)
+		}
+		finer[i].arg = c.Mul(c.FromRat(d.Inv()), finer[i].arg)
+	}
+	if finer != nil {
+		return nil, turns, &growth{c.refined(finer)}
+	}
+	return coefs, turns, nil
+}
+
+// withoutMultiple returns x without its term in pi alone.
+func (c *Constants) withoutMultiple(x Constant, pi int) Constant {
+	num, den := c.Parts(x)
+	if _, constant := c.Rational(den); !constant {
+		return x
+	}
+	for _, t := range num.Numerator() {
+		degree := 0
+		for _, e := range t.Exp {
+			degree += e
+		}
+		if degree == 1 && t.Exp[pi+1] == 1 {
+			return c.Sub(x, c.quotient(c.FromTerms([]algebra.Term{t}), den))
+		}
+	}
+	return x
+}
+
+func (c *Constants) quotient(x, y Constant) Constant {
+	inv, err := c.Inv(y)
+	if err != nil {
+		panic(err) // a denominator is not zero
+	}
+	return c.Mul(x, inv)
+}
+
+// refined returns the field whose formals have arguments that are fractions of
+// the old ones: e^x is a power of the new e^(x/n), tan(b/2) the tangent of a
+// multiple.
+func (c *Constants) refined(finer []formal) *Constants {
+	return c.rebuild(finer, func(g *Constants) ([]Constant, error) {
+		values := make([]Constant, len(c.formals))
+		for i, old := range c.formals {
+			v := g.Variable(i)
+			values[i] = v
+			if old.kind != expFormal && old.kind != halfTangentFormal {
+				continue
+			}
+			ratio, _ := c.linear(old.arg, []Constant{finer[i].arg})
+			n, _ := ratio[0].Int64()
+			if old.kind == expFormal {
+				y, err := g.power(v, n)
+				if err != nil {
+					return nil, err
+				}
+				values[i] = y
+				continue
+			}
+			// tan((n+1)b/2) from tan(nb/2) and tan(b/2)
+			for range n - 1 {
+				inv, err := g.Inv(g.Sub(g.One(), g.Mul(values[i], v)))
+				if err != nil {
+					return nil, err
+				}
+				values[i] = g.Mul(g.Add(values[i], v), inv)
+			}
+		}
+		return values, nil
+	})
+}
+
+// linear returns rational numbers r with x = r[0] args[0] + r[1] args[1] + ...,
+// for args that are independent over Q.
+func (c *Constants) linear(x Constant, args []Constant) ([]algebra.Rat, bool) {
+	all := append(append([]Constant(nil), args...), x)
+	_, den := c.Parts(c.Content(all...))
+	rows := map[string]int{}
+	columns := make([]map[int]algebra.Rat, len(all))
+	for j, y := range all {
+		columns[j] = map[int]algebra.Rat{}
+		z := c.Mul(y, den)
+		scale := algebra.RatFromInt(1)
+		if d := z.Denominator(); d != nil { // a number, as den is common
+			scale = algebra.RatFromBigInt(d[0].Coef).Inv()
+		}
+		for _, t := range z.Numerator() {
+			key := c.Text(c.FromTerms([]algebra.Term{{Coef: big.NewInt(1), Exp: t.Exp}}))
+			if _, ok := rows[key]; !ok {
+				rows[key] = len(rows)
+			}
+			columns[j][rows[key]] = algebra.RatFromBigInt(t.Coef).Mul(scale)
+		}
+	}
+	m := algebra.MatrixFromFunc[algebra.Rat](algebra.Q, len(rows), len(all), func(i, j int) algebra.Rat { return columns[j][i] })
+	ech, err := algebra.Reduce[algebra.Rat](context.Background(), algebra.Q, m)
+	if err != nil {
+		panic(err) // the context does not end
+	}
+	if k := len(ech.Pivots); k != len(args) || k > 0 && ech.Pivots[k-1] == len(args) {
+		return nil, false
+	}
+	r := make([]algebra.Rat, len(args))
+	for i := range r {
+		r[i] = ech.Rows.At(i, len(args))
+	}
+	return r, true
+}
+
+// cosSinPi returns the cosine and sine of r pi.
+func (c *Constants) cosSinPi(r algebra.Rat, at Pos) (cos, sin Constant, err error) {
+	den, ok := algebra.RatFromBigInt(r.Den()).Int64()
+	if !ok || den > 4*mostAlgebraic {
+		return cos, sin, Errorf(LimitExceeded, at, "the cosine of pi*%s is an algebraic number of too high a degree", r)
+	}
+	num := new(big.Int).Mod(r.Num(), big.NewInt(2*den)).Int64()
+	half := c.FromRat(algebra.NewRat(1, 2))
+	// By quadrants: r = k/2 + rest with 0 <= rest < 1/2.
+	quadrant := 2 * num / den
+	rest := algebra.NewRat(num, den).Sub(algebra.NewRat(quadrant, 2))
+	switch d, _ := algebra.RatFromBigInt(rest.Den()).Int64(); {
+	case rest.IsZero():
+		cos, sin = c.One(), c.Zero()
+	case d == 3: // 1/3
+		cos = half
+		sin, err = c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
+	case d == 6: // 1/6
+		sin = half
+		cos, err = c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
+	case d == 4:
+		cos, err = c.NthRoot(half, 2, at)
+		sin = cos
+	case d == 5:
+		// cos(pi/5) = (1 + sqrt(5))/4, cos(2pi/5) = (sqrt(5) - 1)/4
+		var five Constant
+		if five, err = c.NthRoot(c.FromInt(5), 2, at); err == nil {
+			n, _ := algebra.RatFromBigInt(rest.Num()).Int64()
+			cos = c.Mul(c.FromRat(algebra.NewRat(1, 4)), c.Add(five, c.FromInt(3-2*n)))
+			sin, err = c.NthRoot(c.Sub(c.One(), c.Mul(cos, cos)), 2, at)
+		}
+	case d%4 == 2: // the complement has the odd denominator d/2
+		sin, cos, err = c.cosSinPi(algebra.NewRat(1, 2).Sub(rest), at)
+	case d&(d-1) == 0: // the half of an angle that is known
+		var double Constant
+		if double, _, err = c.cosSinPi(rest.Mul(algebra.RatFromInt(2)), at); err == nil {
+			if cos, err = c.NthRoot(c.Mul(half, c.Add(c.One(), double)), 2, at); err == nil {
+				sin, err = c.NthRoot(c.Mul(half, c.Sub(c.One(), double)), 2, at)
+			}
+		}
+	default:
+		if a, b, composite := splitFraction(rest, d); composite {
+			var ca, sa, cb, sb Constant
+			if ca, sa, err = c.cosSinPi(a, at); err != nil {
+				return cos, sin, err
+			}
+			if cb, sb, err = c.cosSinPi(b, at); err != nil {
+				return cos, sin, err
+			}
+			cos, sin = c.Sub(c.Mul(ca, cb), c.Mul(sa, sb)), c.Add(c.Mul(ca, sb), c.Mul(sa, cb))
+			break
+		}
+		if cos, err = c.cosine(rest, at); err == nil {
+			sin, err = c.cosine(algebra.NewRat(1, 2).Sub(rest), at)
+		}
+	}
+	if err != nil {
+		return cos, sin, err
+	}
+	for range quadrant {
+		cos, sin = c.Neg(sin), cos
+	}
+	return cos, sin, nil
+}
+
+// splitFraction writes r, with the denominator d, as a sum of fractions with
+// smaller coprime denominators, if d is not a power of a prime.
+func splitFraction(r algebra.Rat, d int64) (a, b algebra.Rat, ok bool) {
+	p := int64(2)
+	for d%p != 0 {
+		p++
+	}
+	power := p
+	for d%(power*p) == 0 {
+		power *= p
+	}
+	other := d / power
+	if other == 1 {
+		return a, b, false
+	}
+	// n/(power other) = u/power + v/other with u other + v power = n
+	n := r.Num()
+	u := new(big.Int).ModInverse(big.NewInt(other), big.NewInt(power))
+	u.Mul(u, n)
+	u.Mod(u, big.NewInt(power))
+	a = algebra.RatFromFrac(u, big.NewInt(power))
+	return a, r.Sub(a), true
+}
+
+// cosine returns cos(r pi) for 0 < r < 1/2, which is a root of T_q(y) - (-1)^p,
+// r = p/q, with the Chebyshev polynomial T_q.
+func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
+	for _, g := range c.generators {
+		if g.q == 0 && g.angle.Equal(r) {
+			return g.value, nil
+		}
+	}
+	q, _ := algebra.RatFromBigInt(r.Den()).Int64()
+	before, chebyshev := algebra.PolyFromInts(1), algebra.PolyFromInts(0, 1)
+	for range q - 1 {
+		before, chebyshev = chebyshev, algebra.PolyFromInts(0, 2).Mul(chebyshev).Sub(before)
+	}
+	sign := int64(1)
+	if new(big.Int).And(r.Num(), big.NewInt(1)).Sign() != 0 {
+		sign = -1
+	}
+	p := chebyshev.Sub(algebra.PolyFromInts(sign))
+	near := func(prec uint) algebra.Ball {
+		_, cos := algebra.Pi(prec).Mul(algebra.BallFromRat(r.Big(), prec), prec).SinCos(prec)
+		return cos
+	}
+	return c.algebraic(c.overConstants(p), near, generator{angle: r}, at)
+}
+
+// overConstants returns a polynomial over Q as one over c.
+func (c *Constants) overConstants(p algebra.Poly[algebra.Rat]) algebra.Poly[Constant] {
+	coefs := make([]Constant, p.Degree()+1)
+	for i := range coefs {
+		coefs[i] = c.FromRat(p.Coef(i))
+	}
+	return algebra.NewPoly[Constant](c, coefs...)
+}
+
+// algebraic returns the root of p that near encloses. The error is a growth
+// where it is not in the field.
+func (c *Constants) algebraic(p algebra.Poly[Constant], near func(prec uint) algebra.Ball, g generator, at Pos) (Constant, error) {
+	adj, err := c.Adjoin(context.Background(), p, near, mostAlgebraic)
+	if err != nil {
+		return Constant{}, Errorf(LimitExceeded, at, "%s", err)
+	}
+	if adj.Field == c.FunctionField {
+		return adj.New, nil
+	}
+	return Constant{}, &growth{c.adjoin(g, adj)}
+}
+
+// NthRoot returns the positive q-th root of a number x >= 0.
+// The error may be a growth.
+func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
+	outside := func() error {
+		return Errorf(OutsideClass, at, "the root of %s: roots of numbers are covered; to use the root of an expression with symbols, give it a name and write the expression as its square", Quote(c.Node(x).String()))
+	}
+	for i := range c.formals {
+		if c.Uses(x, i) {
+			return Constant{}, outside()
+		}
+	}
+	sign, _ := c.Sign(x)
+	switch {
+	case sign == 0:
+		return c.Zero(), nil
+	case sign < 0:
+		return Constant{}, Errorf(OutsideClass, at, "a fractional power of the negative number %s", Quote(c.Node(x).String()))
+	}
+	scale := c.One()
+	if r, ok := c.Rational(x); ok {
+		// (a/b)^(1/q) = (a b^(q-1))^(1/q)/b, without the q-th powers in it
+		b := r.Den()
+		n := r.Num()
+		n.Mul(n, new(big.Int).Exp(b, big.NewInt(int64(q-1)), nil))
+		outer, inner := powerParts(n, q)
+		scale = c.FromRat(algebra.RatFromFrac(outer, b))
+		if inner.IsInt64() && inner.Int64() == 1 {
+			return scale, nil
+		}
+		x = c.FromRat(algebra.RatFromBigInt(inner))
+	}
+	coefs := make([]Constant, q+1)
+	coefs[0], coefs[q] = c.Neg(x), c.One()
+	near := func(prec uint) algebra.Ball { return c.Enclose(x, prec+16).Root(q, prec) }
+	y, err := c.algebraic(algebra.NewPoly[Constant](c, coefs...), near, generator{q: q, arg: x}, at)
+	return c.Mul(scale, y), err
+}
+
+// powerParts returns n = outer^q inner with an inner that is not divisible by
+// the q-th power of a prime below 2^12.
+func powerParts(n *big.Int, q int) (outer, inner *big.Int) {
+	if q == 2 {
+		c, m := algebra.SqrtParts(algebra.RatFromBigInt(n))
+		return c.Num(), m
+	}
+	outer, inner = big.NewInt(1), new(big.Int).Set(n)
+	if r, ok := exactRoot(inner, q); ok {
+		return r, big.NewInt(1)
+	}
+	var quo, rem big.Int
+	for p := int64(2); p < 1<<12; p++ {
+		bp := big.NewInt(p)
+		pq := new(big.Int).Exp(bp, big.NewInt(int64(q)), nil)
+		if pq.Cmp(inner) > 0 {
+			break
+		}
+		for {
+			quo.QuoRem(inner, pq, &rem)
+			if rem.Sign() != 0 {
+				break
+			}
+			inner.Set(&quo)
+			outer.Mul(outer, bp)
+		}
+	}
+	return outer, inner
+}

@@ -1,0 +1,156 @@
+package expr
+
+import (
+	"context"
+	"math/big"
+
+	"example.org/closedform/algebra"
+)
+
+// style is how the elements of a field are written.
+type style[E any] interface {
+	// Node writes x.
+	Node(x E) Node
+	// Content returns the common factor that is taken out of a sum, without a
+	// sign, 1 for zeros.
+	Content(x ...E) E
+	// Sign returns the sign of x where it is decided.
+	Sign(x E) (int, bool)
+	// weakSign is Sign for numbers that may be 0 as well: 1 says x >= 0.
+	weakSign(x E) (int, bool)
+	// Compare is a total order of the elements.
+	Compare(x, y E) int
+	// approximate returns a number for the order of terms.
+	approximate(x E) float64
+	// sqrt returns c and a tree with sqrt(x) = c root up to the sign, for an x
+	// that is not known to be negative.
+	sqrt(x E) (c E, root Node)
+}
+
+// styleOf returns the style of a field.
+func styleOf[E any](k algebra.Scalars[E]) style[E] {
+	if s, ok := any(k).(style[E]); ok {
+		return s
+	}
+	return any(rationalStyle{}).(style[E])
+}
+
+// rationalStyle is the style of Q.
+type rationalStyle struct{}
+
+func (rationalStyle) Node(x algebra.Rat) Node              { return Num(x) }
+func (rationalStyle) Content(x ...algebra.Rat) algebra.Rat { return contentOfRats(x...) }
+func (rationalStyle) Sign(x algebra.Rat) (int, bool)       { return x.Sign(), true }
+func (rationalStyle) weakSign(x algebra.Rat) (int, bool)   { return x.Sign(), true }
+func (rationalStyle) Compare(x, y algebra.Rat) int         { return x.Compare(y) }
+func (rationalStyle) approximate(x algebra.Rat) float64    { return x.Float64() }
+func (rationalStyle) sqrt(x algebra.Rat) (algebra.Rat, Node) {
+	c, m := algebra.SqrtParts(x)
+	return c, sqrtNode(m)
+}
+
+// contentOfRats returns the positive rational c such that the x/c are coprime
+// integers, 1 when all are 0.
+func contentOfRats(x ...algebra.Rat) algebra.Rat {
+	num, den := new(big.Int), big.NewInt(1)
+	var g big.Int
+	for _, c := range x {
+		num.GCD(nil, nil, num, c.Abs().Num())
+		d := c.Den()
+		g.GCD(nil, nil, den, d)
+		den.Mul(den, d.Quo(d, &g))
+	}
+	if num.Sign() == 0 {
+		return algebra.RatFromInt(1)
+	}
+	return algebra.RatFromFrac(num, den)
+}
+
+// approximate returns x as a float64 where it is a number; what the assumptions
+// say of it, or -1, where it is not.
+func (c *Constants) approximate(x Constant) float64 {
+	if c.IsNumber(x) {
+		v, _ := c.Enclose(x, 60).Mid().Float64()
+		return v
+	}
+	if sign, ok := c.Sign(x); ok {
+		return float64(sign)
+	}
+	return -1
+}
+
+// sqrt takes the squares out of x.
+func (c *Constants) sqrt(x Constant) (Constant, Node) {
+	if r, ok := c.Rational(x); ok {
+		d, m := algebra.SqrtParts(r)
+		return c.FromRat(d), sqrtNode(m)
+	}
+	if c.hasRoot(x.Numerator()) {
+		p := algebra.NewPoly[Constant](c, c.Neg(x), c.Zero(), c.One())
+		if factors, err := c.FactorPoly(context.Background(), p); err == nil && len(factors) == 2 {
+			y := factors[0].P.Coef(0)
+			if sign, ok := c.Sign(y); ok && sign < 0 {
+				y = c.Neg(y)
+			}
+			return y, Int(1)
+		}
+		return c.One(), Apply("sqrt", c.Node(x))
+	}
+	r, factors, err := c.Factors(context.Background(), x)
+	if err != nil {
+		return c.One(), Apply("sqrt", c.Node(x))
+	}
+	outer, m := algebra.SqrtParts(r.Abs())
+	y := c.FromRat(outer)
+	inner := c.FromRat(algebra.RatFromBigInt(m))
+	if r.Sign() < 0 {
+		inner = c.Neg(inner)
+	}
+	for _, f := range factors {
+		// Denominators leave the root: 1/sqrt(p) = sqrt(p)/p.
+		half := f.Exp >> 1
+		z, err := c.power(f.Base, int64(half))
+		if err != nil {
+			panic(err) // factors are not zero
+		}
+		y = c.Mul(y, z)
+		if f.Exp&1 == 1 {
+			inner = c.Mul(inner, f.Base)
+		}
+	}
+	if c.Equal(inner, c.One()) {
+		return y, Int(1)
+	}
+	return y, Apply("sqrt", c.Node(inner))
+}
+
+// NodeOf writes an element of a field.
+func NodeOf[E any](k algebra.Scalars[E], x E) Node { return styleOf(k).Node(x) }
+
+// PolyNodeOf writes a polynomial over a field in v, highest power first.
+func PolyNodeOf[E any](k algebra.Scalars[E], p algebra.Poly[E], v Node) Node {
+	return presenter[E]{k: k, style: styleOf(k)}.poly(p, v)
+}
+
+// RootNodes writes the roots of a monic irreducible polynomial of degree 1 or 2,
+// nil for others: the lesser real root first, of a pair the upper one.
+func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E]) []Node {
+	w := presenter[E]{k: k, style: styleOf(k)}
+	switch p.Degree() {
+	case 1:
+		return []Node{w.Node(k.Neg(p.Coef(0)))}
+	case 2:
+		h, d := quadraticRoots(k, p)
+		sign, decided := w.weakSign(d)
+		if decided && sign < 0 {
+			d = k.Neg(d)
+		}
+		c, root := w.sqrt(d)
+		if !decided || sign >= 0 {
+			return []Node{w.surd(h, k.Neg(c), root), w.surd(h, c, root)}
+		}
+		root = Mul(root, Sym("i"))
+		return []Node{w.surd(h, c, root), w.surd(h, k.Neg(c), root)}
+	}
+	return nil
+}
