@@ -27,6 +27,9 @@ type Adjunction struct {
 // polynomial and of the factor's. Where b lies in the field, the field is
 // returned as it is. It fails when the degree of the field would exceed most.
 func (f *FunctionField) Adjoin(ctx context.Context, q Poly[Fraction], near func(prec uint) Ball, most int) (Adjunction, error) {
+	if f.surd {
+		return Adjunction{}, fmt.Errorf("algebra: an algebraic number beside the square root of an expression with symbols is not taken")
+	}
 	k := f.numbers()
 	h, err := k.factorAt(ctx, f.narrow(k, q), near)
 	if err != nil {

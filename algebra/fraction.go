@@ -19,7 +19,8 @@ type Fraction struct {
 }
 
 // FunctionField is the field Q(a)(x1, ..., xn) of rational functions in n
-// variables, where a is a real algebraic number and may be absent. Variables
+// variables, where a is a real algebraic number or the square root of a
+// polynomial in the variables, and may be absent. Variables
 // may stand for real numbers that are independent over Q(a), such as pi; where
 // all of them do, its elements can be enclosed and it is a field of [Scalars]
 // in every respect.
@@ -29,7 +30,8 @@ type Fraction struct {
 type FunctionField struct {
 	names  []string
 	values []func(prec uint) Ball
-	root   Algebraic  // a; the zero value if absent
+	root   Algebraic  // a, where it is a number
+	surd   bool       // a is the square root of a polynomial in the variables
 	mod    mpoly.Poly // minimal polynomial of a, monic over Z; 0 if absent
 	degree int        // of mod, 1 if absent
 }
@@ -67,14 +69,37 @@ func (f *FunctionField) WithRoot(a Algebraic) *FunctionField {
 	return out
 }
 
+// WithSurd returns the field with the square root of a polynomial in the
+// variables adjoined, in place of the root it has. It panics when x has a
+// denominator or is free of variables; that x is no square is the caller's
+// promise.
+func (f *FunctionField) WithSurd(x Fraction) *FunctionField {
+	if !x.den.IsZero() || x.num.Uses(0) || x.num.IsConstant() {
+		panic("algebra: not the square root of a polynomial")
+	}
+	a := mpoly.Variable(f.size(), 0)
+	return &FunctionField{names: f.names, values: f.values, surd: true, mod: a.Mul(a).Sub(x.num), degree: 2}
+}
+
 // size is the number of variables of the polynomials: the root comes first.
 func (f *FunctionField) size() int { return len(f.names) + 1 }
 
 // Names returns the names of the variables.
 func (f *FunctionField) Names() []string { return append([]string(nil), f.names...) }
 
-// Root returns a, if there is one.
-func (f *FunctionField) Root() (Algebraic, bool) { return f.root, f.degree > 1 }
+// Root returns a, if there is one and it is a number.
+func (f *FunctionField) Root() (Algebraic, bool) { return f.root, f.degree > 1 && !f.surd }
+
+// Surd returns the polynomial that a is the square root of, if it is one.
+func (f *FunctionField) Surd() (Fraction, bool) {
+	if !f.surd {
+		return Fraction{}, false
+	}
+	return Fraction{num: f.mod.Coefficients(0)[0].Neg()}, true
+}
+
+// HasRoot tells whether a occurs in x.
+func (x Fraction) HasRoot() bool { return x.num.Uses(0) }
 
 // Degree returns the degree of a over Q, 1 if there is none.
 func (f *FunctionField) Degree() int { return f.degree }
@@ -374,8 +399,9 @@ func (f *FunctionField) Negative(x Fraction) bool {
 
 // IsNumber tells whether x is free of variables that have no value.
 func (f *FunctionField) IsNumber(x Fraction) bool {
+	root := f.surd && x.num.Uses(0)
 	for i, v := range f.values {
-		if v == nil && (x.num.Uses(i+1) || x.den.Uses(i+1)) {
+		if v == nil && (x.num.Uses(i+1) || x.den.Uses(i+1) || root && f.mod.Uses(i+1)) {
 			return false
 		}
 	}
@@ -459,6 +485,9 @@ func (f *FunctionField) enclose(x Fraction, prec uint) Ball {
 func (f *FunctionField) value(i int, prec uint) Ball {
 	if i > 0 {
 		return f.values[i-1](prec)
+	}
+	if d, ok := f.Surd(); ok {
+		return f.enclose(d, prec).Sqrt(prec)
 	}
 	z, err := f.root.Enclose(context.Background(), prec)
 	if err != nil {

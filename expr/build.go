@@ -85,6 +85,17 @@ func Mul(factors ...Node) Node {
 				gather(v.Num)
 				return
 			}
+			num, top := splitNumber(v.Num)
+			den, bottom := splitNumber(v.Den)
+			c = c.Mul(num).Quo(den)
+			if isNumber(bottom, 1) {
+				if !isNumber(top, 1) {
+					gather(top)
+				}
+				return
+			}
+			v = Quotient{Num: top, Den: bottom}
+			f = v
 			if last := len(rest) - 1; isNumber(v.Num, 1) && last >= 0 {
 				if _, name := rest[last].(Symbol); name {
 					rest[last] = Quotient{Num: rest[last], Den: v.Den}
@@ -103,11 +114,58 @@ func Mul(factors ...Node) Node {
 	for _, f := range factors {
 		gather(f)
 	}
+	factor, consts := joinSqrts(consts)
+	c = c.Mul(factor)
 	out := coefficient(c.Abs(), consts, rest)
 	if c.Sign() < 0 {
 		return Negate(out)
 	}
 	return out
+}
+
+// joinSqrts writes the product of square roots of numbers as c sqrt(m).
+func joinSqrts(consts []Node) (algebra.Rat, []Node) {
+	one := algebra.RatFromInt(1)
+	radicand := one
+	var others []Node
+	count := 0
+	for _, n := range consts {
+		if f, ok := n.(Call); ok && f.Func == "sqrt" {
+			if x, ok := f.Arg.(Number); ok && x.Val.Sign() > 0 {
+				radicand = radicand.Mul(x.Val)
+				count++
+				continue
+			}
+		}
+		others = append(others, n)
+	}
+	if count < 2 {
+		return one, consts
+	}
+	c, m := algebra.SqrtParts(radicand)
+	if root := sqrtNode(m); !isNumber(root, 1) {
+		others = append([]Node{root}, others...)
+	}
+	return c, others
+}
+
+// splitNumber takes the number out of a product, 1 if there is none.
+func splitNumber(n Node) (algebra.Rat, Node) {
+	one := algebra.RatFromInt(1)
+	switch v := n.(type) {
+	case Number:
+		if !v.Val.IsZero() {
+			return v.Val, Int(1)
+		}
+	case Neg:
+		c, rest := splitNumber(v.X)
+		return c.Neg(), rest
+	case Product:
+		if x, ok := v.Factors[0].(Number); ok && !x.Val.IsZero() {
+			return x.Val, product(v.Factors[1:])
+		}
+	}
+	return one, n
 }
 
 // coefficient returns c consts rest for c >= 0.
@@ -120,6 +178,18 @@ func coefficient(c algebra.Rat, consts, rest []Node) Node {
 	if !num.IsOne() {
 		top = append([]Node{Num(num)}, consts...)
 	}
+	if len(rest) > 0 {
+		if q, ok := rest[0].(Quotient); ok { // one fraction for numbers and names
+			if !isNumber(q.Num, 1) || len(top) == 0 {
+				top = append(top, factorsOf(q.Num)...)
+			}
+			bottom := factorsOf(q.Den)
+			if !den.IsOne() {
+				bottom = append([]Node{Num(den)}, bottom...)
+			}
+			return product(append([]Node{Quotient{Num: product(top), Den: product(bottom)}}, rest[1:]...))
+		}
+	}
 	switch {
 	case den.IsOne():
 		return product(append(top, rest...))
@@ -129,6 +199,13 @@ func coefficient(c algebra.Rat, consts, rest []Node) Node {
 		return product(append([]Node{Num(c)}, rest...))
 	}
 	return product(append([]Node{Quotient{Num: product(top), Den: Num(den)}}, rest...))
+}
+
+func factorsOf(n Node) []Node {
+	if p, ok := n.(Product); ok {
+		return p.Factors
+	}
+	return []Node{n}
 }
 
 func product(factors []Node) Node {
@@ -169,6 +246,9 @@ func namesOnly(factors []Node) bool {
 func Div(num, den Node) Node {
 	if d, ok := den.(Number); ok && !d.Val.IsZero() {
 		return Mul(num, Num(d.Val.Inv()))
+	}
+	if q, ok := num.(Quotient); ok {
+		return Div(q.Num, Mul(q.Den, den))
 	}
 	if n, ok := num.(Neg); ok {
 		return Negate(Div(n.X, den))

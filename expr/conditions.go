@@ -14,10 +14,18 @@ type Conditions struct {
 	k       *Constants
 	factors []Constant
 	simple  []algebra.Poly[Constant] // polynomials whose roots must be distinct
+	signs   []Constant               // what must not be negative
 }
 
 // NewConditions returns an empty list over a field, nil for Q.
 func NewConditions(k *Constants) *Conditions { return &Conditions{k: k} }
+
+// ImposeSigns enters what the square roots of the field take not to be negative.
+func (l *Conditions) ImposeSigns() {
+	if l.k != nil {
+		l.signs = l.k.implied
+	}
+}
 
 // Exclude enters what makes x vanish, if anything does.
 func (l *Conditions) Exclude(ctx context.Context, x Constant) error {
@@ -78,6 +86,15 @@ func (l *Conditions) Broken(s *Substitution) (string, error) {
 		if s.m.to.IsZero(x) {
 			r := l.k.unequal(p)
 			return r.String(), nil
+		}
+	}
+	for _, p := range l.signs {
+		x, err := SubstituteScalar(s, p)
+		if err != nil {
+			return "", err
+		}
+		if sign, ok := s.m.to.Sign(x); ok && sign < 0 {
+			return l.k.Node(p).String() + " >= 0", nil
 		}
 	}
 	return "", nil
@@ -183,6 +200,10 @@ func (l *Conditions) Strings() []string {
 	for _, p := range l.simple {
 		w := presenter[Constant]{k: l.k, style: l.k}
 		out = append(out, "the roots of "+w.poly(p, Sym("s")).String()+" are distinct")
+	}
+	for _, p := range l.signs {
+		r := Relation{Left: l.k.Node(p), Right: Int(0), Op: ">="}
+		out = append(out, r.String())
 	}
 	slices.Sort(out)
 	return out

@@ -19,6 +19,62 @@ func (c *Constants) Node(x Constant) Node {
 	return c.shown.get(c).node(x)
 }
 
+// expanded writes a polynomial term by term, positive terms first.
+func (c *Constants) expanded(x Constant) Node {
+	d := c.shown.get(c)
+	y := d.element(x)
+	if _, den := d.to.Parts(y); !d.to.Equal(den, d.to.One()) {
+		return c.Node(x)
+	}
+	n := d.sum(y)
+	if s, ok := n.(Sum); ok && isNegated(s.Terms[0]) {
+		return negatedSum(Sum{Terms: negatedSum(s).(Sum).Terms})
+	}
+	return n
+}
+
+// Content is the common factor of what is written: of numerators and
+// denominators with their roots, cosines and sines.
+func (c *Constants) Content(x ...Constant) Constant {
+	plain := c.Degree() == 1
+	for _, f := range c.formals {
+		plain = plain && f.kind != halfTangentFormal
+	}
+	if plain {
+		return c.FunctionField.Content(x...)
+	}
+	d := c.shown.get(c)
+	y := make([]algebra.Fraction, len(x))
+	for i := range x {
+		y[i] = d.element(x[i])
+	}
+	out, err := d.to.Map(d.to.Content(y...), c.FunctionField, Constant{}, d.values())
+	if err != nil {
+		panic(err) // a common denominator is not zero
+	}
+	return out
+}
+
+// values returns the variables of the display as elements of the field.
+func (d *display) values() []Constant {
+	c := d.from
+	out := make([]Constant, 0, len(d.vars))
+	for i, f := range c.formals {
+		u := c.Variable(i)
+		if f.kind != halfTangentFormal {
+			out = append(out, u)
+			continue
+		}
+		square := c.Mul(u, u)
+		sum := c.Add(c.One(), square)
+		out = append(out, c.quotient(c.Sub(c.One(), square), sum), c.quotient(c.Mul(c.FromInt(2), u), sum))
+	}
+	for _, g := range c.generators {
+		out = append(out, g.value)
+	}
+	return out
+}
+
 // sharedDisplay is the display of a field, made when first asked for.
 type sharedDisplay struct {
 	once sync.Once
@@ -70,6 +126,10 @@ func (c *Constants) display() *display {
 		d.vars = append(d.vars, displayVar{generator: &c.generators[i]})
 	}
 	d.to = algebra.NewFunctionField(make([]string, len(d.vars)), nil)
+	if _, ok := c.Surd(); ok {
+		d.root = []algebra.Fraction{d.to.One(), d.to.Mul(d.element(c.generators[0].scale), d.to.Variable(generators))}
+		return d
+	}
 	for _, row := range c.table {
 		sum := d.to.Zero()
 		for m, r := range row {
@@ -312,15 +372,42 @@ func (d *display) product(p algebra.Fraction) (algebra.Rat, []factorNode) {
 		sums = append(sums, factorNode{d.sum(f.Base), -1, f.Exp})
 	}
 	sort.SliceStable(names, func(i, j int) bool { return d.before(names[i].variable, names[j].variable) })
+	c, names = d.joinRoots(c, names)
 	return c, append(names, sums...)
+}
+
+// joinRoots writes the product of square roots of integers as one.
+func (d *display) joinRoots(c algebra.Rat, factors []factorNode) (algebra.Rat, []factorNode) {
+	radicand := algebra.RatFromInt(1)
+	count := 0
+	var out []factorNode
+	for _, f := range factors {
+		if f.variable >= 0 && f.exp == 1 {
+			if g := d.vars[f.variable].generator; g != nil && g.q == 2 {
+				if r, ok := d.from.Rational(g.arg); ok {
+					radicand = radicand.Mul(r)
+					count++
+					continue
+				}
+			}
+		}
+		out = append(out, f)
+	}
+	if count < 2 {
+		return c, factors
+	}
+	outer, m := algebra.SqrtParts(radicand)
+	return c.Mul(outer), append([]factorNode{{sqrtNode(m), -1, 1}}, out...)
 }
 
 // before puts square roots and pi before symbols, and functions last.
 func (d *display) before(i, j int) bool {
 	rank := func(v int) int {
 		switch x := d.vars[v]; {
-		case x.generator != nil:
+		case x.generator != nil && x.generator.q > 0:
 			return 0
+		case x.generator != nil:
+			return 3
 		case x.name == "pi":
 			return 1
 		case x.fn == "":
@@ -386,7 +473,8 @@ func (d *display) sum(p algebra.Fraction) Node {
 			}
 		}
 		sort.SliceStable(factors, func(i, j int) bool { return d.before(factors[i].variable, factors[j].variable) })
-		nodes := []Node{Num(algebra.RatFromBigInt(t.Coef))}
+		c, factors := d.joinRoots(algebra.RatFromBigInt(t.Coef), factors)
+		nodes := []Node{Num(c)}
 		for _, f := range factors {
 			nodes = append(nodes, Pow(f.base, f.exp))
 		}

@@ -26,6 +26,7 @@ type Constants struct {
 	generators []generator
 	table      [][]algebra.Rat // the powers of a in products of the generators
 	assumed    Assumptions
+	implied    []Constant // what square roots take not to be negative
 	shown      *sharedDisplay
 }
 
@@ -56,7 +57,8 @@ type generator struct {
 	arg    Constant    // free of later generators
 	angle  algebra.Rat // cos(angle pi)
 	value  Constant
-	degree int // over the field of the generators before it
+	degree int      // over the field of the generators before it
+	scale  Constant // the root of the field over the value, for an arg with symbols
 }
 
 // mostAlgebraic bounds the degree of the algebraic numbers of a model.
@@ -223,10 +225,54 @@ func (g *Constants) placeholder(c *Constants) *algebra.FunctionField {
 	return f
 }
 
+// implying returns the field in which x is not negative.
+func (c *Constants) implying(x Constant) *Constants {
+	g := *c
+	g.shown = &sharedDisplay{}
+	g.implied = append(slices.Clone(c.implied), x)
+	g.assumed.list = append(slices.Clone(c.assumed.list), assumption{x, notNegative})
+	return &g
+}
+
+// WithoutRoot returns the field without its algebraic numbers, in which elements
+// that hold none are the same, and whether the formal constants allow it.
+func (c *Constants) WithoutRoot() (*Constants, bool) {
+	for _, f := range c.formals {
+		if f.arg.HasRoot() {
+			return nil, false
+		}
+	}
+	g := *c
+	g.shown = &sharedDisplay{}
+	g.generators, g.table = nil, nil
+	g.FunctionField = g.build()
+	return &g, true
+}
+
+// withSurd returns the field with the square root of a polynomial x in symbols;
+// the generator is the square root of x/den^2.
+func (c *Constants) withSurd(x, den Constant) *Constants {
+	g := *c
+	g.shown = &sharedDisplay{}
+	g.FunctionField = c.WithSurd(x)
+	arg := c.quotient(c.quotient(x, den), den)
+	g.generators = []generator{{q: 2, arg: arg, value: g.quotient(g.RootElement(), den), degree: 2, scale: den}}
+	return &g
+}
+
 // carry maps what c knows into g, given the images of the variables.
 func (g *Constants) carry(c *Constants, values []Constant) {
+	surd, isSurd := c.Surd()
+	if isSurd {
+		x, err := c.Map(surd, g.FunctionField, Constant{}, values)
+		if err != nil {
+			panic(err) // a polynomial has no denominator
+		}
+		g.FunctionField = g.FunctionField.WithSurd(x)
+		surd = x
+	}
 	root := Constant{}
-	if _, ok := c.Root(); ok {
+	if c.Degree() > 1 {
 		root = g.RootElement()
 	}
 	place := g.FunctionField
@@ -241,14 +287,20 @@ func (g *Constants) carry(c *Constants, values []Constant) {
 		g.formals[i].arg = to(f.arg)
 	}
 	for _, h := range c.generators {
-		h.arg, h.value = to(h.arg), to(h.value)
+		h.arg, h.value, h.scale = to(h.arg), to(h.value), to(h.scale)
 		g.generators = append(g.generators, h)
 	}
 	g.assumed = c.assumed.mapped(to)
+	for _, x := range c.implied {
+		g.implied = append(g.implied, to(x))
+	}
 	g.table = c.table
 	g.FunctionField = g.build()
 	if root, ok := c.Root(); ok {
 		g.FunctionField = g.FunctionField.WithRoot(root)
+	}
+	if isSurd {
+		g.FunctionField = g.FunctionField.WithSurd(surd)
 	}
 }
 
@@ -277,6 +329,9 @@ func (c *Constants) adjoin(h generator, adj algebra.Adjunction) *Constants {
 	h.degree = adj.Field.Degree() / c.Degree()
 	g.generators = append(g.generators, h)
 	g.assumed = c.assumed.mapped(to)
+	for _, x := range c.implied {
+		g.implied = append(g.implied, to(x))
+	}
 	g.FunctionField = adj.Field
 	root, _ := adj.Field.Root()
 	g.FunctionField = g.build().WithRoot(root)

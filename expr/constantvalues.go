@@ -377,12 +377,9 @@ func (c *Constants) algebraic(p algebra.Poly[Constant], near func(prec uint) alg
 // NthRoot returns the positive q-th root of a number x >= 0.
 // The error may be a growth.
 func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
-	outside := func() error {
-		return Errorf(OutsideClass, at, "the root of %s: roots of numbers are covered; to use the root of an expression with symbols, give it a name and write the expression as its square", Quote(c.Node(x).String()))
-	}
 	for i := range c.formals {
 		if c.Uses(x, i) {
-			return Constant{}, outside()
+			return c.surd(x, q, at)
 		}
 	}
 	sign, _ := c.Sign(x)
@@ -410,6 +407,66 @@ func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
 	near := func(prec uint) algebra.Ball { return c.Enclose(x, prec+16).Root(q, prec) }
 	y, err := c.algebraic(algebra.NewPoly[Constant](c, coefs...), near, generator{q: q, arg: x}, at)
 	return c.Mul(scale, y), err
+}
+
+// surd returns the square root of an expression in symbols. Squares and
+// denominators leave the root.
+func (c *Constants) surd(x Constant, q int, at Pos) (Constant, error) {
+	outside := func(why string) error {
+		return Errorf(OutsideClass, at, "the root of %s: %s; give it a name and write the expression as a power of that", Quote(c.Node(x).String()), why)
+	}
+	if q != 2 {
+		return Constant{}, outside("of expressions with symbols square roots are taken")
+	}
+	if x.HasRoot() {
+		return Constant{}, outside("roots of roots with symbols are not taken")
+	}
+	r, factors, err := c.Factors(context.Background(), x)
+	if err != nil {
+		return Constant{}, err
+	}
+	outer, inner, den := c.One(), c.One(), c.One()
+	for _, f := range factors {
+		half, err := c.power(f.Base, int64(f.Exp>>1))
+		if err != nil {
+			return Constant{}, err
+		}
+		if f.Exp&1 == 1 {
+			inner = c.Mul(inner, f.Base)
+			if f.Exp < 0 {
+				den = c.Mul(den, f.Base)
+			}
+		}
+		// The root of p^(2k) q is |p|^k sqrt(q), k odd: p is taken not to be negative,
+		// which becomes a condition.
+		if f.Exp>>1&1 == 1 {
+			switch sign, ok := c.weakSign(f.Base); {
+			case ok && sign < 0:
+				half = c.Neg(half)
+			case !ok:
+				return Constant{}, &growth{c.implying(f.Base)}
+			}
+		}
+		outer = c.Mul(outer, half)
+	}
+	number, m := algebra.SqrtParts(r.Abs())
+	outer = c.Mul(outer, c.FromRat(number))
+	inner = c.Mul(inner, c.FromRat(algebra.RatFromBigInt(m)))
+	if r.Sign() < 0 {
+		inner = c.Neg(inner)
+	}
+	if _, rational := c.Rational(inner); rational {
+		root, err := c.NthRoot(inner, 2, at)
+		return c.Mul(outer, root), err
+	}
+	old, ok := c.Surd()
+	switch {
+	case ok && c.Equal(old, inner):
+		return c.Mul(outer, c.RootElement()), nil
+	case c.Degree() > 1:
+		return Constant{}, outside("one square root with symbols is taken, and no other roots beside it")
+	}
+	return Constant{}, &growth{c.withSurd(inner, den)}
 }
 
 // powerParts returns n = outer^q inner with an inner that is not divisible by

@@ -183,13 +183,20 @@ func joined(a, b *Constants) (*Constants, error) {
 	})
 }
 
-// simplest returns f over Q if it has rational coefficients only.
+// simplest returns f over Q if it has rational coefficients only, and without
+// algebraic numbers if these cancel.
 func (f *overField[E]) simplest(ctx context.Context) (exact, error) {
 	c, ok := any(f.k).(*Constants)
 	if !ok {
 		return f, nil
 	}
 	g := any(f).(*overField[Constant])
+	if c.Degree() > 1 {
+		h, err := g.withoutRoot(ctx, c)
+		if err != nil || h != exact(g) {
+			return h, err
+		}
+	}
 	origin, ok := c.Rational(g.origin)
 	if !ok {
 		return f, nil
@@ -216,6 +223,46 @@ func (f *overField[E]) simplest(ctx context.Context) (exact, error) {
 		free = append(free, FreeTerm[algebra.Rat]{t.Name, out[i+1]})
 	}
 	return newOverField[algebra.Rat](algebra.Q, origin, out[0], free), nil
+}
+
+// withoutRoot returns f over the field without algebraic numbers if it holds
+// none, f itself otherwise.
+func (f *overField[E]) withoutRoot(ctx context.Context, c *Constants) (exact, error) {
+	g := any(f).(*overField[Constant])
+	plain, ok := c.WithoutRoot()
+	if !ok || g.origin.HasRoot() {
+		return f, nil
+	}
+	over := func(p algebra.Poly[Constant]) (algebra.Poly[Constant], bool) {
+		coefs := p.Coefs()
+		for _, x := range coefs {
+			if x.HasRoot() {
+				return p, false
+			}
+		}
+		return algebra.NewPoly[Constant](plain, coefs...), true
+	}
+	images := g.images()
+	for i, m := range images {
+		num, ok := over(m.num)
+		if !ok {
+			return f, nil
+		}
+		den, ok := over(m.Denominator().Poly())
+		if !ok {
+			return f, nil
+		}
+		factors, err := plain.FactorPoly(ctx, den)
+		if err != nil {
+			return nil, err
+		}
+		images[i] = NewDenominator[Constant](plain, factors).Image(num)
+	}
+	var free []FreeTerm[Constant]
+	for i, t := range g.free {
+		free = append(free, FreeTerm[Constant]{t.Name, images[i+1]})
+	}
+	return newOverField[Constant](plain, g.origin, images[0], free).simplest(ctx)
 }
 
 // rationalPoly returns a polynomial with rational coefficients over Q.
@@ -327,6 +374,30 @@ func NewSubstitution(from, to *Constants, values map[string]Node) (*Substitution
 func (s *Substitution) Value(name string) (Constant, bool) {
 	x, ok := s.values[name]
 	return x, ok
+}
+
+// Field returns the field mapped to with the assumptions of the one mapped from.
+// Values that contradict an assumption are an error.
+func (s *Substitution) Field() (*Constants, error) {
+	out := s.m.to
+	if s.m.d == nil {
+		return out, nil
+	}
+	for _, a := range s.m.d.from.assumed.list {
+		x, err := s.m.apply(a.p)
+		if err != nil {
+			return nil, s.explain(err)
+		}
+		next, err := out.assuming(x, a.kind, Pos{})
+		if err != nil {
+			sign := map[assumptionKind]string{isPositive: ">", notNegative: ">=", notZero: "!="}[a.kind]
+			return nil, Errorf(NeedsAssumption, Pos{}, "the values contradict the assumption %s %s 0", s.m.d.from.Node(a.p), sign)
+		}
+		if _, number := out.Rational(x); !number {
+			out = next
+		}
+	}
+	return out, nil
 }
 
 // IsRational tells whether the values of the names, where they are given, are

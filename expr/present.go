@@ -154,7 +154,20 @@ func (w presenter[E]) exp(rate Node) Node {
 	if isNumber(rate, 0) {
 		return Int(1)
 	}
-	return Apply("exp", Mul(rate, w.time))
+	return Apply("exp", w.perTime(rate))
+}
+
+// perTime returns a rate times the time, as one quotient.
+func (w presenter[E]) perTime(rate Node) Node {
+	switch v := rate.(type) {
+	case Neg:
+		return Negate(w.perTime(v.X))
+	case Quotient:
+		if _, number := v.Den.(Number); !number {
+			return Div(Mul(v.Num, w.time), v.Den)
+		}
+	}
+	return Mul(rate, w.time)
 }
 
 // scaled returns P(t) times the factors, with the rational content of P in
@@ -226,27 +239,36 @@ func (w presenter[E]) inverse(x E) E {
 // are entire functions of d.
 func (w presenter[E]) quadratic(part localPart[E]) Node {
 	q := w.quadraticPart(part)
-	angle := Mul(w.times(q.c, q.root), w.time)
+	angle := w.perTime(w.times(q.c, q.root))
 	exp := w.exp(w.Node(q.h))
 	cos, sin := Apply("cos", angle), Apply("sin", angle)
 	root := q.root
-	switch {
-	case !q.decided:
-		cos, sin = Apply("cosh", angle), Div(Apply("sinh", angle), root)
-		root = Int(1)
-	case q.sign > 0:
-		if !q.a.IsZero() && !q.b.IsZero() {
+	if q.sign > 0 {
+		if q.decided && !q.a.IsZero() && !q.b.IsZero() {
 			return Add(w.branch(q, q.c), w.branch(q, w.k.Neg(q.c)))
 		}
 		cos, sin = Apply("cosh", angle), Apply("sinh", angle)
+	}
+	// odd is b(t) root sin wt, or with 1/root, and other factors.
+	odd := func(b algebra.Poly[E], factors ...Node) Node {
+		if !q.over {
+			return w.scaled(b, append([]Node{root}, factors...)...)
+		}
+		content, prim := w.contentOf(b, w.time)
+		n := w.Node(content)
+		if last := len(factors) - 1; isNumber(n, 1) && isNumber(prim, 1) {
+			factors[last] = Div(factors[last], root)
+			return Mul(factors...)
+		}
+		return Mul(append([]Node{Div(n, root), prim}, factors...)...)
 	}
 	switch {
 	case q.b.IsZero():
 		return w.scaled(q.a, exp, cos)
 	case q.a.IsZero():
-		return w.scaled(q.b, root, exp, sin)
+		return odd(q.b, exp, sin)
 	case w.k.IsZero(q.h):
-		return Add(w.scaled(q.a, cos), w.scaled(q.b, root, sin))
+		return Add(w.scaled(q.a, cos), odd(q.b, sin))
 	}
 	// A common content in front, unless it makes the parts longer.
 	content := w.Content(append(q.a.Coefs(), q.b.Coefs()...)...)
@@ -254,25 +276,32 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 		content = w.k.Neg(content)
 	}
 	inv := w.inverse(content)
+	sign := w.k.One()
+	if minus, _ := w.writtenSign(q.a); minus {
+		sign = w.k.Neg(sign)
+	}
 	return shorter(
-		Mul(w.Node(content), exp, Add(w.scaled(q.a.Scale(inv), cos), w.scaled(q.b.Scale(inv), root, sin))),
-		Mul(exp, Add(w.scaled(q.a, cos), w.scaled(q.b, root, sin))),
+		Mul(w.Node(content), exp, Add(w.scaled(q.a.Scale(inv), cos), odd(q.b.Scale(inv), sin))),
+		Mul(w.Node(sign), exp, Add(w.scaled(q.a.Scale(sign), cos), odd(q.b.Scale(sign), sin))),
 	)
 }
 
 // quadraticPart is the part of a prime with the roots h +- sqrt(d) in the
 // coefficients in which it is written, d = +-(c root)^2: with w = c root,
 //
-//	e^(ht) (a(t) cos wt + b(t) root sin wt)          for d < 0
-//	e^(ht) (a(t) cosh wt + b(t) root sinh wt)        for d > 0
-//	e^(ht) (a(t) cosh wt + b(t) sinh(wt)/root)       where the sign is open
+//	e^(ht) (a(t) cos wt + b(t) root sin wt)          for the sign -1
+//	e^(ht) (a(t) cosh wt + b(t) root sinh wt)        for the sign 1
 //
-// or for d > 0 the sum of (u + v r) e^((h + r) t) over r = +-w.
+// and 1/root in place of root where over is set; or for d > 0 the sum of
+// (u + v r) e^((h + r) t) over r = +-w. Where the sign of d is not decided, over
+// is set, and either sign will do.
 type quadraticPart[E any] struct {
 	h, c    E
 	root    Node
+	square  E // of root
 	sign    int
 	decided bool
+	over    bool
 	u, v    []E
 	a, b    algebra.Poly[E]
 }
@@ -282,11 +311,18 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 	h, d := quadraticRoots(k, part.p)
 	q := quadraticPart[E]{h: h}
 	q.sign, q.decided = w.weakSign(d)
+	if !q.decided {
+		q.sign = 1
+		if k.Negative(d) {
+			q.sign = -1
+		}
+	}
 	size := d
 	if q.sign < 0 {
 		size = k.Neg(d)
 	}
 	q.c, q.root = w.sqrt(size)
+	q.square = k.Mul(size, w.inverse(k.Mul(q.c, q.c)))
 	// On the class of s, h + r with r^2 = d, c[k] is u[k] + v[k] r.
 	q.u, q.v = make([]E, len(part.c)), make([]E, len(part.c))
 	for i, x := range part.c {
@@ -298,14 +334,28 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 	two := k.FromInt(2)
 	q.a = algebra.NewPoly[E](k, q.u...).Scale(two)
 	q.b = algebra.NewPoly[E](k, q.v...).Scale(k.Mul(two, q.c))
-	switch {
-	case !q.decided:
-		// v w sinh wt = v c root^2 (sinh(wt)/root)
-		q.b = q.b.Scale(k.Mul(d, w.inverse(k.Mul(q.c, q.c))))
-	case q.sign < 0:
+	if q.sign < 0 {
 		q.b = q.b.Neg()
 	}
+	// b root = (b root^2)/root
+	_, number := k.Rational(q.square)
+	if over := q.b.Scale(q.square); !q.decided || !number && w.simpler(over, q.b) {
+		q.b, q.over = over, true
+	}
 	return q
+}
+
+// simpler tells whether the coefficients of p are written shorter than those of
+// q.
+func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
+	size := func(p algebra.Poly[E]) int {
+		n := 0
+		for _, c := range p.Coefs() {
+			n += len(w.Node(c).String())
+		}
+		return n
+	}
+	return size(p) < size(q)
 }
 
 // times returns x root as one quotient.
@@ -342,12 +392,19 @@ func (w presenter[E]) writtenSign(p algebra.Poly[E]) (minus, ascending bool) {
 // branch presents (sum of (u[k] + v[k] r) t^k) e^((h + r) t) with r = c root.
 func (w presenter[E]) branch(q quadraticPart[E], c E) Node {
 	exp := w.exp(w.surd(q.h, c, q.root))
+	coefficient := func(i int) Node {
+		v := w.k.Mul(q.v[i], c)
+		if q.over {
+			return w.surd(q.u[i], w.k.Mul(v, q.square), Div(Int(1), q.root))
+		}
+		return w.surd(q.u[i], v, q.root)
+	}
 	if len(q.u) == 1 {
-		return Mul(w.surd(q.u[0], w.k.Mul(q.v[0], c), q.root), exp)
+		return Mul(coefficient(0), exp)
 	}
 	var terms []Node
 	for i := len(q.u) - 1; i >= 0; i-- {
-		terms = append(terms, Mul(w.surd(q.u[i], w.k.Mul(q.v[i], c), q.root), w.power(i)))
+		terms = append(terms, Mul(coefficient(i), w.power(i)))
 	}
 	return Mul(Add(terms...), exp)
 }

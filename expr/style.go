@@ -106,22 +106,33 @@ func (c *Constants) sqrt(x Constant) (Constant, Node) {
 	if r.Sign() < 0 {
 		inner = c.Neg(inner)
 	}
+	below := c.One()
 	for _, f := range factors {
-		// Denominators leave the root: 1/sqrt(p) = sqrt(p)/p.
-		half := f.Exp >> 1
+		half := f.Exp / 2 // toward 0, so that k/m stays together
 		z, err := c.power(f.Base, int64(half))
 		if err != nil {
 			panic(err) // factors are not zero
 		}
 		y = c.Mul(y, z)
-		if f.Exp&1 == 1 {
+		switch f.Exp % 2 {
+		case 1:
 			inner = c.Mul(inner, f.Base)
+		case -1:
+			below = c.Mul(below, f.Base)
 		}
 	}
-	if c.Equal(inner, c.One()) {
-		return y, Int(1)
+	if len(inner.Numerator()) > 1 { // a sum under the root is not divided
+		y, inner, below = c.quotient(y, below), c.Mul(inner, below), c.One()
 	}
-	return y, Apply("sqrt", c.Node(inner))
+	switch {
+	case c.Equal(below, c.One()) && c.Equal(inner, c.One()):
+		return y, Int(1)
+	case c.Equal(below, c.One()):
+		return y, Apply("sqrt", c.expanded(inner))
+	case c.Equal(inner, c.One()):
+		return y, Div(Int(1), Apply("sqrt", c.expanded(below)))
+	}
+	return y, Apply("sqrt", Div(c.expanded(inner), c.expanded(below)))
 }
 
 // NodeOf writes an element of a field.
@@ -142,7 +153,7 @@ func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E]) []Node {
 	case 2:
 		h, d := quadraticRoots(k, p)
 		sign, decided := w.weakSign(d)
-		if decided && sign < 0 {
+		if sign < 0 {
 			d = k.Neg(d)
 		}
 		c, root := w.sqrt(d)

@@ -34,14 +34,21 @@ func (p *problemOver[E]) parameters() []string {
 	return c.k.(*expr.Constants).SymbolsIn(all...)
 }
 
-// simplest returns the problem over Q if all its numbers are rational.
+// simplest returns the problem over Q if all its numbers are rational, and
+// without algebraic numbers if it holds none.
 func simplest(p *problemOver[expr.Constant]) problem {
-	rational := true
+	rational, plain := true, true
 	p.elements(func(x expr.Constant) {
 		_, ok := p.k.Rational(x)
 		rational = rational && ok
+		plain = plain && !x.HasRoot()
 	})
 	if !rational {
+		c := p.k.(*expr.Constants)
+		if k, ok := c.WithoutRoot(); ok && plain && c.Degree() > 1 {
+			out, _ := mapProblem[expr.Constant, expr.Constant](p, k, func(x expr.Constant) (expr.Constant, error) { return x, nil })
+			return out
+		}
 		return p
 	}
 	to := func(x expr.Constant) (algebra.Rat, error) {
@@ -139,6 +146,7 @@ func (a *answerOver[E]) conditions(ctx context.Context) (*expr.Conditions, error
 		return expr.NewConditions(nil), nil
 	}
 	list := expr.NewConditions(s.problemOver.k.(*expr.Constants))
+	list.ImposeSigns()
 	enter := func(f func(context.Context, expr.Constant) error, elements []expr.Constant) error {
 		for _, x := range elements {
 			if err := f(ctx, x); err != nil {
@@ -176,6 +184,9 @@ func (a *answerOver[E]) substitute(ctx context.Context, m *Model, names []string
 			return expr.Errorf(expr.Singular, expr.Pos{}, "the values violate the condition %s of the model", broken)
 		}
 		to := func(x E) (expr.Constant, error) { return expr.SubstituteScalar(s, x) }
+		if k, err = s.Field(); err != nil {
+			return err
+		}
 		p, err := mapProblem[E, expr.Constant](a.problemOver, k, to)
 		if err != nil {
 			return err

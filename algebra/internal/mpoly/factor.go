@@ -185,7 +185,10 @@ func factorIn(ctx context.Context, p Poly, vars []int, drop int) ([]Factor, erro
 			if err != nil {
 				return nil, err
 			}
-			more, err := factorUsed(ctx, mustDivide(q, content))
+			if q, err = quotient(ctx, q, content); err != nil {
+				return nil, err
+			}
+			more, err := factorUsed(ctx, q)
 			return append(factors, more...), err
 		}
 	}
@@ -262,11 +265,11 @@ func contentIn(ctx context.Context, p Poly, main int) (Poly, error) {
 	return g, nil
 }
 
-// mustDivide returns p / q for a known divisor q.
-func mustDivide(p, q Poly) Poly {
-	r, ok := p.DivExact(q)
-	if !ok {
+// quotient returns p / q for a known divisor q; the only error is ctx.Err().
+func quotient(ctx context.Context, p, q Poly) (Poly, error) {
+	r, ok, err := divide(ctx, p, q)
+	if err == nil && !ok {
 		panic("mpoly: a known divisor does not divide")
 	}
-	return r
+	return r, err
 }

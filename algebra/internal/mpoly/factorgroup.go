@@ -96,12 +96,15 @@ func (b *groupLift) addPrime(ctx context.Context, r *lineFactors) (ok bool, err 
 		if lead[0][0] == 0 {
 			return false, nil
 		}
-		rows[s] = r.scaled(lead[0], r.product(group, n), n)
+		rows[s] = r.scaled(ctx, lead[0], r.product(ctx, group, n), n)
 	}
 	var residues [][]sparseTerm
 	if len(w.order) == 2 {
-		residues = b.translated(r, rows)
+		residues = b.translated(ctx, r, rows)
 	} else if residues, err = b.sparse(ctx, r, rows); residues == nil || err != nil {
+		return false, err
+	}
+	if err := ctx.Err(); err != nil {
 		return false, err
 	}
 	b.combine(f, residues)
@@ -116,14 +119,14 @@ type sparseTerm struct {
 
 // translated returns the terms for the case of one variable beside x, when the
 // line is all there is.
-func (b *groupLift) translated(r *lineFactors, rows [][][]uint64) [][]sparseTerm {
+func (b *groupLift) translated(ctx context.Context, r *lineFactors, rows [][][]uint64) [][]sparseTerm {
 	f := r.line.f
 	terms := make([][]sparseTerm, len(rows))
 	back := f.Neg(r.line.point[1])
 	for s, g := range rows {
 		for i, row := range g[:len(g)-1] {
 			row = trimmed(row)
-			f.translate(row, back)
+			f.translate(ctx, row, back)
 			for k, c := range row {
 				if c != 0 {
 					terms[s] = append(terms[s], sparseTerm{[]uint16{uint16(i), uint16(k)}, c})
@@ -246,12 +249,9 @@ func (b *groupLift) factors(ctx context.Context) ([]Factor, error) {
 	for s := range b.groups {
 		g := b.polynomial(s)
 		for range b.mult(s) {
-			if err := ctx.Err(); err != nil {
+			q, ok, err := divide(ctx, rest, g)
+			if !ok || err != nil {
 				return nil, err
-			}
-			q, ok := rest.DivExact(g)
-			if !ok {
-				return nil, nil
 			}
 			rest = q
 		}

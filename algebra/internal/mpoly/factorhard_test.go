@@ -187,3 +187,29 @@ func TestFactorCancelled(t *testing.T) {
 	}
 	require.Less(t, time.Since(start), 2*time.Second)
 }
+
+// TestFactorManyVariables has more variables than a word has bits.
+func TestFactorManyVariables(t *testing.T) {
+	const n = 70
+	sum := ConstantWord(n, 1)
+	mix := ConstantWord(n, 3)
+	for i := range n {
+		sum = sum.Add(Variable(n, i).Pow(1 + i%3))
+		mix = mix.Sub(Variable(n, i).Mul(Variable(n, (i+1)%n)))
+	}
+	// The content of the last factors in x_0 has x_64 only, and the other way round.
+	low, high := Variable(n, 64).Add(ConstantWord(n, 1)), Variable(n, 0).Sub(ConstantWord(n, 5))
+	require.Len(t, checkFactors(t, sum), 1)
+	require.Len(t, checkFactors(t, low.Mul(high)), 2)
+	require.Len(t, checkFactors(t, sum.Mul(mix).Mul(low).Mul(high)), 4)
+	require.Len(t, checkFactors(t, sum.Mul(mix).Mul(mix)), 2)
+}
+
+// TestFactorHighDegree is about degrees far beyond the typical ones.
+func TestFactorHighDegree(t *testing.T) {
+	x, y, one := Variable(2, 0), Variable(2, 1), ConstantWord(2, 1)
+	p := x.Mul(x).Add(y.Pow(300)).Add(one)
+	q := x.Mul(x).Mul(y).Sub(y.Pow(299)).Add(x)
+	require.Len(t, checkFactors(t, p.Mul(q)), 2)
+	require.Len(t, checkFactors(t, x.Pow(2).Sub(y.Pow(20001)).Add(one)), 1)
+}

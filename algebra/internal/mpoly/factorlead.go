@@ -57,7 +57,10 @@ func (w *wangLift) distribute(ctx context.Context, r *lineFactors, groups [][]in
 		leads[s] = ConstantWord(n, 1)
 		value := big.NewInt(1) // of the leading coefficient at the point
 		if len(images) > 0 {
-			own := r.groupLead(group)
+			own, err := r.groupLead(ctx, group)
+			if err != nil {
+				return nil, err
+			}
 			for k, g := range images {
 				for len(own) >= len(g) {
 					q, ok := f.quotient(own, g)
@@ -102,15 +105,18 @@ func (w *wangLift) distribute(ctx context.Context, r *lineFactors, groups [][]in
 // groupLead returns the leading coefficient in x, up to a constant, of the
 // primitive polynomial in x and t that is a multiple of the product of a group
 // of local factors.
-func (r *lineFactors) groupLead(group []int) []uint64 {
+func (r *lineFactors) groupLead(ctx context.Context, group []int) ([]uint64, error) {
 	f := r.line.f
 	n := r.degree + 1
-	rows := r.scaled(r.lead, r.product(group, n), n)
+	rows := r.scaled(ctx, r.lead, r.product(ctx, group, n), n)
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
 	top := trimmed(rows[len(rows)-1])
 	content := top
 	for i := len(rows) - 2; i >= 0 && len(content) > 1; i-- {
 		content = f.gcd(content, rows[i])
 	}
 	q, _ := f.quotient(top, content)
-	return q
+	return q, nil
 }

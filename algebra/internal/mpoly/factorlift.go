@@ -85,6 +85,7 @@ func (l *seriesLift) start() (ok bool) {
 	f := l.f
 	l.bottom, l.unit = nil, f.one
 	for i := range l.factor {
+		l.factor[i].size = 1
 		for range l.mult[i] - 1 {
 			if l.bottom == nil {
 				l.bottom = []uint64{f.one}
@@ -168,9 +169,6 @@ func (l *seriesLift) multiply(m, k int) {
 // It reports whether there are such factors; not, when ctx is done.
 func (l *seriesLift) lift(ctx context.Context, a [][]uint64, n int) bool {
 	f := l.f
-	for i := range l.factor {
-		l.factor[i].size = 1
-	}
 	top := len(l.part) - 1
 	for k := 1; k < n; k++ {
 		if ctx.Err() != nil {

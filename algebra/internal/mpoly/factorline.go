@@ -71,17 +71,21 @@ func (l *line) restrict(ctx context.Context, t *termTable, c []uint64, degrees [
 		x = f.Add(x, f.one)
 	}
 	for _, r := range rows {
-		l.interpolate(r)
+		l.interpolate(ctx, r)
 	}
-	return rows, nil
+	return rows, ctx.Err()
 }
 
 // interpolate replaces the values at 0, 1, 2, ... by the coefficients of the
-// polynomial that takes them (Newton's divided differences).
-func (l *line) interpolate(r []uint64) {
+// polynomial that takes them (Newton's divided differences); it stops early
+// when ctx is done.
+func (l *line) interpolate(ctx context.Context, r []uint64) {
 	f := l.f
 	small := l.inverses(len(r))
 	for j := 1; j < len(r); j++ {
+		if j&63 == 63 && ctx.Err() != nil {
+			return
+		}
 		for i := len(r) - 1; i >= j; i-- {
 			r[i] = f.times(f.Sub(r[i], r[i-1]), small[j])
 		}
@@ -89,6 +93,9 @@ func (l *line) interpolate(r []uint64) {
 	// Horner's scheme with the nodes from the last but one down to 0.
 	node := f.fromWord(int64(len(r) - 2))
 	for j := len(r) - 2; j > 0; j-- {
+		if j&63 == 63 && ctx.Err() != nil {
+			return
+		}
 		for i := j; i < len(r)-1; i++ {
 			r[i] = f.Sub(r[i], f.times(node, r[i+1]))
 		}
@@ -136,13 +143,10 @@ func liftLine(ctx context.Context, ln *line, t *termTable, c []uint64, degrees [
 		return nil, nil
 	}
 	n := r.degree + 1 + precision
-	inverse := f.inverseSeries(r.lead, n)
+	inverse := f.inverseSeries(ctx, r.lead, n)
 	for i, row := range rows {
 		monic := make([]uint64, n)
-		for k := range monic {
-			s := f.coefficient(dotSum{}, row, inverse, k)
-			monic[k] = f.redc(s.hi, s.lo)
-		}
+		f.shortProduct(ctx, monic, row, inverse)
 		rows[i] = monic
 	}
 	sizes := make([]int, len(image))
@@ -169,10 +173,13 @@ func liftLine(ctx context.Context, ln *line, t *termTable, c []uint64, degrees [
 }
 
 // multiplySeries returns the product of two polynomials in x over the power
-// series in t, modulo t^n.
-func (f *field) multiplySeries(a, b [][]uint64, n int) [][]uint64 {
+// series in t, modulo t^n; it stops early when ctx is done.
+func (f *field) multiplySeries(ctx context.Context, a, b [][]uint64, n int) [][]uint64 {
 	c := newRows(n, len(a[0])+len(b[0])-1)
 	for k := range c {
+		if k&15 == 15 && ctx.Err() != nil {
+			break
+		}
 		for i := range c[k] {
 			var s dotSum
 			for j := max(0, k-len(b)+1); j <= min(k, len(a)-1); j++ {
@@ -185,25 +192,23 @@ func (f *field) multiplySeries(a, b [][]uint64, n int) [][]uint64 {
 }
 
 // product returns the product of the factors with the given numbers modulo
-// t^n, as coefficients of t^k.
-func (r *lineFactors) product(pick []int, n int) [][]uint64 {
+// t^n, as coefficients of t^k, unless ctx is done.
+func (r *lineFactors) product(ctx context.Context, pick []int, n int) [][]uint64 {
 	g := r.factor[pick[0]]
 	for _, i := range pick[1:] {
-		g = r.line.f.multiplySeries(g, r.factor[i], n)
+		g = r.line.f.multiplySeries(ctx, g, r.factor[i], n)
 	}
 	return g[:n]
 }
 
-// scaled returns the product lead(t) g modulo t^n by powers of x.
-func (r *lineFactors) scaled(lead []uint64, g [][]uint64, n int) [][]uint64 {
+// scaled returns the product lead(t) g modulo t^n by powers of x, unless
+// ctx is done.
+func (r *lineFactors) scaled(ctx context.Context, lead []uint64, g [][]uint64, n int) [][]uint64 {
 	f := r.line.f
 	rows := transpose(g[:n])
 	for i, row := range rows {
 		c := make([]uint64, n)
-		for k := range c {
-			s := f.coefficient(dotSum{}, row, lead, k)
-			c[k] = f.redc(s.hi, s.lo)
-		}
+		f.shortProduct(ctx, c, row, lead)
 		rows[i] = c
 	}
 	return rows
@@ -213,9 +218,9 @@ func (r *lineFactors) scaled(lead []uint64, g [][]uint64, n int) [][]uint64 {
 // x and t of degree at most degree in t, as far as the series tell. For the
 // restriction of a true factor it is one: its leading coefficient divides lead,
 // and the cofactor in lead has no larger degree than the cofactor itself.
-func (r *lineFactors) isFactor(pick []int) bool {
+func (r *lineFactors) isFactor(ctx context.Context, pick []int) bool {
 	n := r.degree + 1 + precision
-	for _, row := range r.scaled(r.lead, r.product(pick, n), n) {
+	for _, row := range r.scaled(ctx, r.lead, r.product(ctx, pick, n), n) {
 		for _, c := range row[r.degree+1:] {
 			if c != 0 {
 				return false

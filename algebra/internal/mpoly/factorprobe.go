@@ -56,7 +56,10 @@ func (r *probe) variables(main int) uint64 {
 			set &= u
 		}
 	}
-	return set &^ (1 << (main % 64))
+	if len(r.degrees) <= 64 {
+		set &^= 1 << main
+	}
+	return set
 }
 
 // primitive reports whether p is proven free of content in the variable of the column main. The content

@@ -91,7 +91,7 @@ func (r *lineFactors) findSubset(ctx context.Context, left []int, size int, trac
 			pick[i] = left[a]
 			sum = f.Add(sum, traces[pick[i]])
 		}
-		if sum == 0 && r.isFactor(pick) {
+		if sum == 0 && r.isFactor(ctx, pick) {
 			return pick, ctx.Err()
 		}
 		i := size - 1
@@ -99,7 +99,7 @@ func (r *lineFactors) findSubset(ctx context.Context, left []int, size int, trac
 			i--
 		}
 		if i < 0 {
-			return nil, nil
+			return nil, ctx.Err()
 		}
 		for at[i]++; i+1 < size; i++ {
 			at[i+1] = at[i] + 1

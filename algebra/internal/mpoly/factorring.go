@@ -1,6 +1,9 @@
 package mpoly
 
-import "math/bits"
+import (
+	"context"
+	"math/bits"
+)
 
 // redc returns (hi 2^64 + lo) / 2^64 for hi < P.
 func (f *field) redc(hi, lo uint64) uint64 {
@@ -162,6 +165,17 @@ func (f *field) inverseModulo(room, a, m []uint64) (s []uint64, c uint64) {
 	return trimmed(s1), r1[0]
 }
 
+// shortProduct sets c to a b modulo x^len(c); it stops early when ctx is done.
+func (f *field) shortProduct(ctx context.Context, c, a, b []uint64) {
+	for k := range c {
+		if k&63 == 63 && ctx.Err() != nil {
+			return
+		}
+		s := f.coefficient(dotSum{}, a, b, k)
+		c[k] = f.redc(s.hi, s.lo)
+	}
+}
+
 // evaluate returns a(x).
 func (f *field) evaluate(a []uint64, x uint64) uint64 {
 	var y uint64
@@ -171,21 +185,28 @@ func (f *field) evaluate(a []uint64, x uint64) uint64 {
 	return y
 }
 
-// translate replaces a(x) by a(x + c).
-func (f *field) translate(a []uint64, c uint64) {
+// translate replaces a(x) by a(x + c); it stops early when ctx is done.
+func (f *field) translate(ctx context.Context, a []uint64, c uint64) {
 	for i := range a {
+		if i&63 == 63 && ctx.Err() != nil {
+			return
+		}
 		for j := len(a) - 2; j >= i; j-- {
 			a[j] = f.Add(a[j], f.times(c, a[j+1]))
 		}
 	}
 }
 
-// inverseSeries returns 1/a modulo x^n for a(0) != 0.
-func (f *field) inverseSeries(a []uint64, n int) []uint64 {
+// inverseSeries returns 1/a modulo x^n for a(0) != 0; it stops early when ctx is
+// done.
+func (f *field) inverseSeries(ctx context.Context, a []uint64, n int) []uint64 {
 	r := make([]uint64, n)
 	r[0] = f.reciprocal(a[0])
 	c := f.Neg(r[0])
 	for k := 1; k < n; k++ {
+		if k&63 == 63 && ctx.Err() != nil {
+			break
+		}
 		top := min(k, len(a)-1)
 		s := f.cross(dotSum{}, a[1:top+1], r[k-top:k])
 		r[k] = f.times(c, f.redc(s.hi, s.lo))

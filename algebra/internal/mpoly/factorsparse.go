@@ -158,14 +158,14 @@ func (l *sparseLift) extend(ctx context.Context, known []*partialFactor, j int) 
 		if err := ctx.Err(); err != nil {
 			return nil, err
 		}
-		e.image(at, cells, a)
+		e.image(ctx, at, cells, a)
 		if !e.lift.start() || !e.lift.lift(ctx, a, precision) {
 			return nil, ctx.Err()
 		}
 		if at == 0 {
 			precision = e.lift.degree() + 1
 		}
-		e.record(at, precision)
+		e.record(ctx, at, precision)
 	}
 	next := e.solve(ctx, precision)
 	return next, ctx.Err()
@@ -203,19 +203,19 @@ func (e *extension) prepare(ctx context.Context) (ok bool) {
 		e.values = append(e.values, values)
 	}
 	e.lift = newSeriesLift(f, sizes, l.mult, e.width)
-	return e.leadingCoefficients()
+	return e.leadingCoefficients(ctx)
 }
 
 // leadingCoefficients evaluates the leading coefficients at all points.
-func (e *extension) leadingCoefficients() (ok bool) {
+func (e *extension) leadingCoefficients(ctx context.Context) (ok bool) {
 	f := e.l.f
 	for _, q := range e.lead {
 		rows, inverses := make([]uint64, e.points*e.width), make([]uint64, e.points)
 		for at := range e.points {
 			row := rows[at*e.width : (at+1)*e.width]
 			q.next(f, row)
-			f.translate(row, e.l.point[e.j])
-			if row[0] == 0 {
+			f.translate(ctx, row, e.l.point[e.j])
+			if row[0] == 0 || ctx.Err() != nil {
 				return false
 			}
 			inverses[at] = row[0]
@@ -228,12 +228,12 @@ func (e *extension) leadingCoefficients() (ok bool) {
 
 // image sets a to the image of the polynomial at the next point, by powers of
 // y_j - its value, and what is known of the factors.
-func (e *extension) image(at int, cells []uint64, a [][]uint64) {
+func (e *extension) image(ctx context.Context, at int, cells []uint64, a [][]uint64) {
 	f := e.l.f
 	e.polynomial.next(f, cells)
 	for i := range len(a[0]) {
 		r := cells[i*e.width : (i+1)*e.width]
-		f.translate(r, e.l.point[e.j])
+		f.translate(ctx, r, e.l.point[e.j])
 		for k, x := range r {
 			a[k][i] = x
 		}
@@ -249,7 +249,7 @@ func (e *extension) image(at int, cells []uint64, a [][]uint64) {
 }
 
 // record keeps the coefficients of the lifted factors in powers of y_j.
-func (e *extension) record(at, precision int) {
+func (e *extension) record(ctx context.Context, at, precision int) {
 	f := e.l.f
 	back := f.Neg(e.l.point[e.j])
 	row := make([]uint64, precision)
@@ -261,7 +261,7 @@ func (e *extension) record(at, precision int) {
 			for b := range row {
 				row[b] = e.lift.factor[s].row[b][i]
 			}
-			f.translate(row, back)
+			f.translate(ctx, row, back)
 			for b, x := range row {
 				e.values[s][i][b][at] = x
 			}

@@ -160,22 +160,22 @@ func (t *termTable) integerImage(degrees []int, point []int64) []*big.Int {
 	}
 	powers := make([][]*big.Int, t.width)
 	for k := 1; k < t.width; k++ {
-		powers[k] = make([]*big.Int, degrees[k]+1)
-		powers[k][0] = big.NewInt(1)
-		x := big.NewInt(point[k])
-		for i := 1; i <= degrees[k]; i++ {
-			powers[k][i] = new(big.Int).Mul(powers[k][i-1], x)
-		}
+		powers[k] = make([]*big.Int, degrees[k]+1) // those needed
 	}
 	v, u := new(big.Int), new(big.Int)
 	for i, k := range t.term {
 		v.Set(t.p.coef(int(k)))
 		row := t.row(i)
 		for j := 1; j < len(row); j++ {
-			if row[j] > 0 {
-				u.Mul(v, powers[j][row[j]])
-				u, v = v, u
+			e := row[j]
+			if e == 0 {
+				continue
 			}
+			if powers[j][e] == nil {
+				powers[j][e] = new(big.Int).Exp(big.NewInt(point[j]), big.NewInt(int64(e)), nil)
+			}
+			u.Mul(v, powers[j][e])
+			u, v = v, u
 		}
 		image[row[0]].Add(image[row[0]], v)
 	}

@@ -201,3 +201,17 @@ func TestGCDCancelled(t *testing.T) {
 	_, err = GCDs(ctx, []Poly{Variable(2, 0).Add(Variable(2, 1))})
 	require.ErrorIs(t, err, context.Canceled)
 }
+
+// TestGCDInflated checks that a substitution of powers commutes with the gcd.
+func TestGCDInflated(t *testing.T) {
+	r := rand.New(rand.NewPCG(13, 1))
+	for range 20 {
+		g, a, b := exactly(r, 4, 4, 4, 5), exactly(r, 4, 4, 4, 5), exactly(r, 4, 4, 4, 5)
+		p, q := a.Mul(g), b.Mul(g)
+		powers := make([]Poly, 4)
+		for i := range powers {
+			powers[i] = Variable(4, i).Pow(1 + r.IntN(700))
+		}
+		require.True(t, mustGCD(t, p.Compose(powers), q.Compose(powers)).Equal(mustGCD(t, p, q).Compose(powers)))
+	}
+}

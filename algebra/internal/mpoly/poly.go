@@ -10,7 +10,7 @@ import (
 
 // Poly is a polynomial in n variables over Z. It is immutable, and the zero
 // value is the zero polynomial of any number of variables. Terms are sorted in
-// descending lexicographic order with x_0 > x_1 > ....; a degree beyond 32767
+// descending lexicographic order with x_0 > x_1 > ...; a degree beyond 32767
 // in a variable panics, so callers limit degrees.
 type Poly struct {
 	n    int

@@ -1,6 +1,7 @@
 package mpoly
 
 import (
+	"math"
 	"math/big"
 	"math/rand/v2"
 	"testing"
@@ -193,6 +194,20 @@ func TestAccessors(t *testing.T) {
 	require.Equal(t, -1, Poly{}.Degree(0))
 	require.Panics(t, func() { Variable(1, 0).Pow(32767).Mul(Variable(1, 0)) })
 	require.Panics(t, func() { Variable(2, 0).Add(Variable(3, 0)) })
+	require.Panics(t, func() { Variable(2, 2) })
+	require.Panics(t, func() { Variable(2, 0).Pow(-1) })
+	require.Panics(t, func() { Variable(2, 0).DivExact(Poly{}) })
+	require.Panics(t, func() { Variable(2, 0).Derivative(2) })
+	require.Panics(t, func() { FromTerms(2, []Term{{big.NewInt(1), []int{1}}}) })
+	require.Panics(t, func() { FromTerms(1, []Term{{big.NewInt(1), []int{1 << 15}}}) })
+	require.Panics(t, func() { FromCoefficients(0, []Poly{Variable(2, 0)}) })
+	for term := range p.Terms() {
+		require.Equal(t, p.Term(0).Exp, term.Exp)
+		require.Zero(t, p.Lead().Cmp(term.Coef))
+		break
+	}
+	require.Zero(t, ConstantWord(3, math.MinInt64).Lead().Cmp(big.NewInt(math.MinInt64)))
+	requireCanonical(t, ConstantWord(3, math.MinInt64))
 }
 
 func TestSubstitutionLaws(t *testing.T) {

@@ -75,7 +75,10 @@ func squareFreeUsed(ctx context.Context, p Poly) ([]Factor, error) {
 			if err != nil {
 				return nil, err
 			}
-			more, err := squareFreePrimitive(ctx, mustDivide(p, content), main)
+			if p, err = quotient(ctx, p, content); err != nil {
+				return nil, err
+			}
+			more, err := squareFreePrimitive(ctx, p, main)
 			return append(parts, more...), err
 		}
 	}
@@ -92,9 +95,12 @@ func squareFreePrimitive(ctx context.Context, p Poly, main int) ([]Factor, error
 	if err != nil {
 		return nil, err
 	}
+	c, w, err := quotients(ctx, p, d, g)
+	if err != nil {
+		return nil, err
+	}
 	var parts []Factor
-	c := mustDivide(p, g)
-	w := mustDivide(d, g).Sub(c.Derivative(main))
+	w = w.Sub(c.Derivative(main))
 	for i := 1; !c.IsConstant(); i++ {
 		if w.IsZero() { // all that is left has multiplicity i
 			return append(parts, Factor{c, i}), nil
@@ -103,11 +109,21 @@ func squareFreePrimitive(ctx context.Context, p Poly, main int) ([]Factor, error
 		if err != nil {
 			return nil, err
 		}
-		c, w = mustDivide(c, a), mustDivide(w, a)
+		if c, w, err = quotients(ctx, c, w, a); err != nil {
+			return nil, err
+		}
 		if !a.IsConstant() {
 			parts = append(parts, Factor{a, i})
 		}
 		w = w.Sub(c.Derivative(main))
 	}
 	return parts, nil
+}
+
+// quotients returns p / g and q / g for a known common divisor g.
+func quotients(ctx context.Context, p, q, g Poly) (pg, qg Poly, err error) {
+	if pg, err = quotient(ctx, p, g); err == nil {
+		qg, err = quotient(ctx, q, g)
+	}
+	return pg, qg, err
 }
