@@ -154,6 +154,21 @@ func (f *FunctionField) factorAt(ctx context.Context, q Poly[Fraction], near fun
 	}
 }
 
+// FactorAt returns the monic irreducible factor over Q of p that has the root
+// which near encloses with about the given bits.
+func FactorAt(ctx context.Context, p Poly[Rat], near func(prec uint) Ball) (Poly[Rat], error) {
+	k := NewFunctionField(nil, nil)
+	c := make([]Fraction, p.Degree()+1)
+	for i := range c {
+		c[i] = k.FromRat(p.Coef(i))
+	}
+	f, err := k.factorAt(ctx, NewPoly[Fraction](k, c...), near)
+	if err != nil {
+		return Poly[Rat]{}, err
+	}
+	return k.rationalPoly(f), nil
+}
+
 // shiftedNorm returns the norm over Q of h(s - c a), and whether it is
 // square-free; it is irreducible then, as h is.
 func (f *FunctionField) shiftedNorm(ctx context.Context, h Poly[Fraction], c int64) (Poly[Rat], bool, error) {

@@ -23,7 +23,8 @@ func ExampleRationals_CharPoly() {
 		return
 	}
 	fmt.Println(p)
-	fmt.Println(a.EvalPoly(p).IsZero())
+	value, _ := a.EvalPoly(context.Background(), p)
+	fmt.Println(value.IsZero())
 	// Output:
 	// s^3 + 6*s^2 + 10*s + 4
 	// true

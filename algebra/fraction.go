@@ -137,11 +137,22 @@ func CatchLimit(err *error) {
 // second.
 const mostProducts = 1 << 23
 
+// mostTerms bounds the terms of a numerator or denominator.
+const mostTerms = 20_000
+
 func mul(p, q mpoly.Poly) mpoly.Poly {
 	if n, m := p.Len(), q.Len(); n*m > mostProducts {
 		panic(&LimitError{fmt.Sprintf("the product of two expressions of %d and %d terms", n, m)})
 	}
-	return p.Mul(q)
+	return bounded(p.Mul(q))
+}
+
+// bounded returns p if it keeps the limit on terms.
+func bounded(p mpoly.Poly) mpoly.Poly {
+	if n := p.Len(); n > mostTerms {
+		panic(&LimitError{fmt.Sprintf("an expression of %d terms in the symbols, at most %d are taken", n, mostTerms)})
+	}
+	return p
 }
 
 func gcd(p, q mpoly.Poly) mpoly.Poly {
@@ -257,13 +268,13 @@ func (f *FunctionField) Add(x, y Fraction) Fraction {
 	case y.num.IsZero():
 		return x
 	case x.den.IsZero() && y.den.IsZero():
-		return Fraction{num: x.num.Add(y.num)}
+		return Fraction{num: bounded(x.num.Add(y.num))}
 	case x.den.Equal(y.den):
-		return f.over(x.num.Add(y.num), x.den)
+		return f.over(bounded(x.num.Add(y.num)), x.den)
 	}
 	b, d := f.denominator(x), f.denominator(y)
 	g := gcd(b, d)
-	num := mul(x.num, quo(d, g)).Add(mul(y.num, quo(b, g)))
+	num := bounded(mul(x.num, quo(d, g)).Add(mul(y.num, quo(b, g))))
 	if num.IsZero() {
 		return Fraction{}
 	}

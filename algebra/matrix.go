@@ -135,16 +135,32 @@ func (a Matrix[E]) Mul(b Matrix[E]) Matrix[E] {
 	if a.n != b.m {
 		panic(ShapeError{Op: "product", R1: a.m, C1: a.n, R2: b.m, C2: b.n})
 	}
+	p, err := a.mul(context.Background(), b)
+	if err != nil {
+		panic(err) // the context does not end
+	}
+	return p
+}
+
+// mul is Mul under a context.
+func (a Matrix[E]) mul(ctx context.Context, b Matrix[E]) (Matrix[E], error) {
 	x, y := a.entries(), b.entries()
-	return MatrixFromFunc(a.ring, a.m, b.n, func(i, j int) E {
-		s := a.ring.Zero()
-		for k, c := range x[i*a.n : (i+1)*a.n] {
-			if !a.ring.IsZero(c) {
-				s = a.ring.Add(s, a.ring.Mul(c, y[k*b.n+j]))
+	e := make([]E, 0, a.m*b.n)
+	for i := range a.m {
+		for j := range b.n {
+			s := a.ring.Zero()
+			for k, c := range x[i*a.n : (i+1)*a.n] {
+				if !a.ring.IsZero(c) {
+					s = a.ring.Add(s, a.ring.Mul(c, y[k*b.n+j]))
+				}
 			}
+			e = append(e, s)
 		}
-		return s
-	})
+		if err := ctx.Err(); err != nil {
+			return Matrix[E]{}, err
+		}
+	}
+	return ownMatrix(a.ring, a.m, b.n, e), nil
 }
 
 // MulVec returns a v for a column v.
@@ -174,28 +190,35 @@ func (a Matrix[E]) mustBeSquare(op string) {
 }
 
 // Pow returns a^k of a square matrix for k >= 0.
-func (a Matrix[E]) Pow(k int) Matrix[E] {
+func (a Matrix[E]) Pow(ctx context.Context, k int) (r Matrix[E], err error) {
 	a.mustBeSquare("power")
-	r := Identity(a.ring, a.m)
+	r = Identity(a.ring, a.m)
 	for ; k > 0; k >>= 1 {
 		if k&1 == 1 {
-			r = r.Mul(a)
+			if r, err = r.mul(ctx, a); err != nil {
+				return r, err
+			}
 		}
 		if k > 1 {
-			a = a.Mul(a)
+			if a, err = a.mul(ctx, a); err != nil {
+				return a, err
+			}
 		}
 	}
-	return r
+	return r, nil
 }
 
 // EvalPoly returns p(a) of a square matrix by Horner's rule.
-func (a Matrix[E]) EvalPoly(p Poly[E]) Matrix[E] {
+func (a Matrix[E]) EvalPoly(ctx context.Context, p Poly[E]) (y Matrix[E], err error) {
 	a.mustBeSquare("polynomial")
-	y := Identity(a.ring, a.m).Scale(a.ring.Zero())
+	y = Identity(a.ring, a.m).Scale(a.ring.Zero())
 	for i := p.Degree(); i >= 0; i-- {
-		y = y.Mul(a).Add(Identity(a.ring, a.m).Scale(p.Coef(i)))
+		if y, err = y.mul(ctx, a); err != nil {
+			return y, err
+		}
+		y = y.Add(Identity(a.ring, a.m).Scale(p.Coef(i)))
 	}
-	return y
+	return y, nil
 }
 
 // Beside returns the matrix [a b].
@@ -243,6 +266,9 @@ func CharPoly[E any](ctx context.Context, a Matrix[E]) (Poly[E], error) {
 			v[i] = a.At(i, k)
 		}
 		for i := 0; i < k; i++ {
+			if err := ctx.Err(); err != nil {
+				return Poly[E]{}, err
+			}
 			s := r.Zero()
 			for j := range v {
 				s = r.Add(s, r.Mul(a.At(k, j), v[j]))

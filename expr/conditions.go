@@ -56,21 +56,45 @@ func (l *Conditions) ExcludeDenominator(ctx context.Context, x Constant) error {
 	return l.Exclude(ctx, den)
 }
 
-// excludeRepeated enters the repeated roots of a polynomial.
-func (l *Conditions) excludeRepeated(p algebra.Poly[Constant]) {
+// mostDiscriminant bounds the degree of a polynomial whose discriminant is
+// taken, and shortCondition the terms of its factors as conditions.
+const (
+	mostDiscriminant = 4
+	shortCondition   = 4
+)
+
+// excludeRepeated enters the repeated roots of a polynomial: the factors of its
+// discriminant where these are short, the polynomial itself otherwise.
+func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constant]) error {
+	symbolic := false
 	for i := range p.Degree() + 1 {
-		if !l.k.IsNumber(p.Coef(i)) {
-			if !slices.ContainsFunc(l.simple, p.Equal) {
-				l.simple = append(l.simple, p)
-			}
-			return
+		symbolic = symbolic || !l.k.IsNumber(p.Coef(i))
+	}
+	if !symbolic || slices.ContainsFunc(l.simple, p.Equal) {
+		return nil
+	}
+	if p.Degree() <= mostDiscriminant {
+		of := NewConditions(l.k)
+		if err := of.Exclude(ctx, resultant[Constant](l.k, p, p.Derivative())); err != nil {
+			return err
+		}
+		long := func(x Constant) bool { return len(x.Numerator()) > shortCondition }
+		if !slices.ContainsFunc(of.factors, long) {
+			*l = *l.Join(of)
+			return nil
 		}
 	}
+	l.simple = append(l.simple, p)
+	return nil
 }
 
 // Join returns the conditions of both lists.
 func (l *Conditions) Join(m *Conditions) *Conditions {
 	out := l.Without(m)
+	out.signs = l.signs
+	if out.k == nil {
+		out.k = m.k
+	}
 	out.factors = append(slices.Clone(m.factors), out.factors...)
 	out.simple = append(slices.Clone(m.simple), out.simple...)
 	return out
@@ -177,6 +201,9 @@ func (c *Constants) linearIn(p Constant, i int) (slope, rest Constant, ok bool) 
 // Without returns the conditions that the list m does not have.
 func (l *Conditions) Without(m *Conditions) *Conditions {
 	out := &Conditions{k: l.k}
+	if len(m.signs) == 0 {
+		out.signs = l.signs
+	}
 	for _, p := range l.factors {
 		if !slices.ContainsFunc(m.factors, func(q Constant) bool { return l.k.Equal(p, q) }) {
 			out.factors = append(out.factors, p)
@@ -199,7 +226,8 @@ func (l *Conditions) Strings() []string {
 	}
 	for _, p := range l.simple {
 		w := presenter[Constant]{k: l.k, style: l.k}
-		out = append(out, "the roots of "+w.poly(p, Sym("s")).String()+" are distinct")
+		p = p.Scale(w.inverse(w.Content(p.Coefs()...)))
+		out = append(out, "the roots of "+w.poly(p, Sym(l.k.FreeName("s", "z"))).String()+" are distinct")
 	}
 	for _, p := range l.signs {
 		r := Relation{Left: l.k.Node(p), Right: Int(0), Op: ">="}
@@ -260,7 +288,9 @@ func (f Image[E]) exclude(ctx context.Context, l *Conditions) error {
 			return err
 		}
 		if pp.p.Degree() > 2 {
-			l.excludeRepeated(pp.p)
+			if err := l.excludeRepeated(ctx, pp.p); err != nil {
+				return err
+			}
 			for j, other := range m.den {
 				if j != i {
 					if err := l.Exclude(ctx, resultant(k, pp.p, other.p)); err != nil {

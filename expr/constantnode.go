@@ -55,6 +55,21 @@ func (c *Constants) Content(x ...Constant) Constant {
 	return out
 }
 
+// numericContent returns the positive rational number that x is written with as
+// a factor: the gcd of the integers above over that of those below.
+func (c *Constants) numericContent(x Constant) algebra.Rat {
+	d := c.shown.get(c)
+	num, den := d.to.Parts(d.element(x))
+	integers := func(terms []algebra.Term) *big.Int {
+		g := new(big.Int)
+		for _, t := range terms {
+			g.GCD(nil, nil, g, new(big.Int).Abs(t.Coef))
+		}
+		return g
+	}
+	return algebra.RatFromFrac(integers(num.Numerator()), integers(den.Numerator()))
+}
+
 // values returns the variables of the display as elements of the field.
 func (d *display) values() []Constant {
 	c := d.from
@@ -162,7 +177,7 @@ func (c *Constants) generatorNode(g generator) Node {
 	if g.q == 0 {
 		return Apply("cos", Mul(Num(g.angle), Sym("pi")))
 	}
-	arg := c.Node(g.arg)
+	arg := c.expanded(g.arg)
 	if g.q == 2 {
 		return Apply("sqrt", arg)
 	}

@@ -62,7 +62,7 @@ type generator struct {
 }
 
 // mostAlgebraic bounds the degree of the algebraic numbers of a model.
-const mostAlgebraic = 32
+const mostAlgebraic = 16
 
 // NewConstants returns the field Q(names); the name pi stands for the number.
 func NewConstants(names ...string) *Constants {
@@ -161,6 +161,21 @@ func (c *Constants) Symbols() []string {
 		}
 	}
 	return out
+}
+
+// FreeName returns the first of the names that no symbol has, with digits if it
+// must be.
+func (c *Constants) FreeName(names ...string) string {
+	for n := 1; ; n++ {
+		for _, name := range names {
+			if n > 1 {
+				name = fmt.Sprintf("%s%d", name, n)
+			}
+			if c == nil || c.index(name) < 0 {
+				return name
+			}
+		}
+	}
 }
 
 // SymbolsIn returns the names of the symbols that occur in the elements, those

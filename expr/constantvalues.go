@@ -291,7 +291,7 @@ func (c *Constants) cosSinPi(r algebra.Rat, at Pos) (cos, sin Constant, err erro
 			break
 		}
 		if cos, err = c.cosine(rest, at); err == nil {
-			sin, err = c.cosine(algebra.NewRat(1, 2).Sub(rest), at)
+			sin, err = c.sine(rest, cos, at)
 		}
 	}
 	if err != nil {
@@ -344,12 +344,31 @@ func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
 	if new(big.Int).And(r.Num(), big.NewInt(1)).Sign() != 0 {
 		sign = -1
 	}
-	p := chebyshev.Sub(algebra.PolyFromInts(sign))
-	near := func(prec uint) algebra.Ball {
+	p, err := algebra.FactorAt(context.Background(), chebyshev.Sub(algebra.PolyFromInts(sign)), cosPi(r))
+	if err != nil {
+		return Constant{}, err
+	}
+	return c.algebraic(c.overConstants(p), cosPi(r), generator{angle: r}, at)
+}
+
+// sine returns sin(r pi) for 0 < r < 1/2 from the cosine, by its square.
+func (c *Constants) sine(r algebra.Rat, cos Constant, at Pos) (Constant, error) {
+	r = algebra.NewRat(1, 2).Sub(r)
+	for _, g := range c.generators {
+		if g.q == 0 && g.angle.Equal(r) {
+			return g.value, nil
+		}
+	}
+	p := algebra.NewPoly[Constant](c, c.Sub(c.Mul(cos, cos), c.One()), c.Zero(), c.One())
+	return c.algebraic(p, cosPi(r), generator{angle: r}, at)
+}
+
+// cosPi encloses cos(r pi).
+func cosPi(r algebra.Rat) func(prec uint) algebra.Ball {
+	return func(prec uint) algebra.Ball {
 		_, cos := algebra.Pi(prec).Mul(algebra.BallFromRat(r.Big(), prec), prec).SinCos(prec)
 		return cos
 	}
-	return c.algebraic(c.overConstants(p), near, generator{angle: r}, at)
 }
 
 // overConstants returns a polynomial over Q as one over c.
@@ -389,18 +408,17 @@ func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
 	case sign < 0:
 		return Constant{}, Errorf(OutsideClass, at, "a fractional power of the negative number %s", Quote(c.Node(x).String()))
 	}
-	scale := c.One()
-	if r, ok := c.Rational(x); ok {
-		// (a/b)^(1/q) = (a b^(q-1))^(1/q)/b, without the q-th powers in it
-		b := r.Den()
-		n := r.Num()
-		n.Mul(n, new(big.Int).Exp(b, big.NewInt(int64(q-1)), nil))
-		outer, inner := powerParts(n, q)
-		scale = c.FromRat(algebra.RatFromFrac(outer, b))
-		if inner.IsInt64() && inner.Int64() == 1 {
-			return scale, nil
-		}
-		x = c.FromRat(algebra.RatFromBigInt(inner))
+	// (a/b)^(1/q) = (a b^(q-1))^(1/q)/b, without the q-th powers in it
+	r := c.numericContent(x)
+	rest := c.quotient(x, c.FromRat(r))
+	b := r.Den()
+	n := r.Num()
+	n.Mul(n, new(big.Int).Exp(b, big.NewInt(int64(q-1)), nil))
+	outer, inner := powerParts(n, q)
+	scale := c.FromRat(algebra.RatFromFrac(outer, b))
+	x = c.Mul(c.FromRat(algebra.RatFromBigInt(inner)), rest)
+	if c.Equal(x, c.One()) {
+		return scale, nil
 	}
 	coefs := make([]Constant, q+1)
 	coefs[0], coefs[q] = c.Neg(x), c.One()

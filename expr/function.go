@@ -36,6 +36,7 @@ type exact interface {
 	node(variable string) Node
 	parameters() []string
 	exclude(ctx context.Context, l *Conditions) error
+	remarks() []string
 	simplest(ctx context.Context) (exact, error)
 	mapped(ctx context.Context, to *Constants, m *mapping) (exact, error)
 	digits(ctx context.Context, t *big.Rat, digits int) (string, error)

@@ -1,10 +1,8 @@
 package expr
 
 import (
-	"fmt"
 	"math"
 	"math/big"
-	"slices"
 	"sort"
 
 	"example.org/closedform/algebra"
@@ -19,15 +17,18 @@ func (f Function) Node() Node { return f.over().node(f.variable) }
 func (f *overField[E]) node(variable string) Node {
 	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin, root: "z"}
 	w.time = w.timeNode()
-	for n := 1; variable == w.root || slices.Contains(f.parameters(), w.root); n++ {
-		w.root = "r"
-		if n > 1 {
-			w.root = fmt.Sprintf("r%d", n)
-		}
+	if w.root = f.field().FreeName("z", "r"); w.root == variable {
+		w.root = f.field().FreeName("r", "q")
 	}
 	var terms []Node
 	for _, t := range f.free {
-		terms = append(terms, Mul(Sym(t.Name), w.image(t.Image)))
+		n := w.image(t.Image)
+		if q, ok := n.(Quotient); ok {
+			n = Div(Mul(Sym(t.Name), q.Num), q.Den)
+		} else {
+			n = Mul(Sym(t.Name), n)
+		}
+		terms = append(terms, n)
 	}
 	return Add(append(terms, w.image(f.base))...)
 }

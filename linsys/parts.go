@@ -34,7 +34,11 @@ func (sv *solver[E]) particular(ctx context.Context, y []expr.Image[E]) ([]expr.
 			return algebra.MatrixFromFunc[algebra.Poly[E]](l, rows, cols, func(i, j int) algebra.Poly[E] { return l.FromBase(m.At(i, j)) })
 		}
 		shifted := lift(sv.a).Sub(algebra.Identity[algebra.Poly[E]](l, len(y)).Scale(l.Root()))
-		vectors, err := echelonKernel[algebra.Poly[E]](ctx, l, shifted.Pow(mult).Above(lift(sv.constraintMatrix())))
+		power, err := shifted.Pow(ctx, mult)
+		if err != nil {
+			return nil, wrapCancel(err)
+		}
+		vectors, err := echelonKernel[algebra.Poly[E]](ctx, l, power.Above(lift(sv.constraintMatrix())))
 		if err != nil {
 			return nil, wrapCancel(err)
 		}

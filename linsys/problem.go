@@ -259,8 +259,10 @@ func substituted[E, F any](ctx context.Context, a *answerOver[E], p *problemOver
 // modes returns the modes with their roots where these are numbers.
 func (a *answerOver[E]) modes(ctx context.Context) ([]Mode, error) {
 	var out []Mode
+	constants, _ := any(a.k).(*expr.Constants)
+	s := expr.Sym(constants.FreeName("s", "z"))
 	for i, f := range a.solution.modes.Factors() {
-		mode := Mode{Factor: expr.PolyNodeOf(a.k, f.P, expr.Sym("s")), Degree: f.P.Degree(), Multiplicity: f.Mult}
+		mode := Mode{Factor: expr.PolyNodeOf(a.k, f.P, s), Degree: f.P.Degree(), Multiplicity: f.Mult}
 		symbolic := false
 		if c, ok := any(a.k).(*expr.Constants); ok {
 			for j := range f.P.Degree() + 1 {
@@ -300,7 +302,7 @@ func (a *answerOver[E]) modes(ctx context.Context) ([]Mode, error) {
 
 // Mode is an irreducible factor of the characteristic polynomial of a model.
 type Mode struct {
-	Factor       expr.Node // in s, monic, irreducible over the field of the model's numbers
+	Factor       expr.Node // in s, or z if s is a symbol; monic, irreducible over the field of the model's numbers
 	Degree       int
 	Multiplicity int
 	Roots        []Eigenvalue // the roots: real ones ascending, then conjugate pairs, where they are numbers

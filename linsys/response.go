@@ -227,6 +227,22 @@ func (r *Response) Conditions(ctx context.Context) (model, formula []string, err
 	return m.Strings(), all.Without(m).Strings(), nil
 }
 
+// Remarks says what a reader of the written states should know; see
+// [expr.Function.Remarks].
+func (r *Response) Remarks() []string {
+	var out []string
+	for _, list := range [][]expr.Function{r.states, r.transient, r.steady} {
+		for _, f := range list {
+			for _, s := range f.Remarks() {
+				if !slices.Contains(out, s) {
+					out = append(out, s)
+				}
+			}
+		}
+	}
+	return out
+}
+
 // Parameters returns the names of the symbols in the states.
 func (r *Response) Parameters() []string {
 	var out []string

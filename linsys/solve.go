@@ -243,8 +243,14 @@ func (sv *solver[E]) generalised(ctx context.Context, p algebra.Poly[E]) ([][]E,
 		}
 		return out, nil
 	}
-	m := sv.a.EvalPoly(p).Pow(mult).Above(sv.constraintMatrix())
-	return algebra.Kernel[E](ctx, sv.k, m)
+	m, err := sv.a.EvalPoly(ctx, p)
+	if err != nil {
+		return nil, err
+	}
+	if m, err = m.Pow(ctx, mult); err != nil {
+		return nil, err
+	}
+	return algebra.Kernel[E](ctx, sv.k, m.Above(sv.constraintMatrix()))
 }
 
 // dualBasis returns the combinations of the vectors that are dual to the first
