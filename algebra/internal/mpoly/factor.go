@@ -98,8 +98,11 @@ func factorUsed(ctx context.Context, p Poly) ([]Factor, error) {
 	}
 	vars = slices.DeleteFunc(vars, func(i int) bool { return i == drop })
 	factors, err := factorIn(ctx, p, vars, drop)
-	if err != nil || len(factors) == 1 && factors[0].Mult == 1 {
-		return []Factor{{p, 1}}, err
+	if err != nil {
+		return nil, err
+	}
+	if len(factors) == 1 && factors[0].Mult == 1 {
+		return []Factor{{p, 1}}, nil
 	}
 	for k, g := range factors {
 		factors[k].P = g.P.homogenised(drop)
@@ -189,7 +192,10 @@ func factorIn(ctx context.Context, p Poly, vars []int, drop int) ([]Factor, erro
 				return nil, err
 			}
 			more, err := factorUsed(ctx, q)
-			return append(factors, more...), err
+			if err != nil {
+				return nil, err
+			}
+			return append(factors, more...), nil
 		}
 	}
 	if r.degrees[main] == 1 {
@@ -201,8 +207,11 @@ func factorIn(ctx context.Context, p Poly, vars []int, drop int) ([]Factor, erro
 	}
 	w := newWangLift(r.t, main)
 	irreducible, err := w.start(ctx, multiplicities)
-	if err != nil || irreducible {
-		return []Factor{{p, 1}}, err
+	if err != nil {
+		return nil, err
+	}
+	if irreducible {
+		return []Factor{{p, 1}}, nil
 	}
 	return w.factor(ctx, whole(), multiplicities)
 }

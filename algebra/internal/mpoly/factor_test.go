@@ -71,8 +71,7 @@ func checkFactors(t testing.TB, p Poly) []Factor {
 		require.Positive(t, g.P.LeadSign())
 		require.Zero(t, g.P.Content().Cmp(big.NewInt(1)))
 		require.Positive(t, g.Mult)
-		for k := range g.Mult {
-			_ = k
+		for range g.Mult {
 			product = product.Mul(g.P)
 		}
 		if i > 0 {

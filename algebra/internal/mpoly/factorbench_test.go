@@ -43,5 +43,13 @@ func BenchmarkFactorZ(b *testing.B) {
 			}
 		}
 	}
+	x, y := Variable(2, 0), Variable(2, 1)
+	inputs = append(inputs,
+		namedPoly{"differences=5", differences(5)},
+		namedPoly{"differences=6", differences(6)},
+		namedPoly{"signedSums=4", signedSums(4)},
+		namedPoly{"signedRoots=5", signedRoots(5)},
+		namedPoly{"x^24-y^24", x.Pow(24).Sub(y.Pow(24))},
+	)
 	benchFactor(b, inputs)
 }

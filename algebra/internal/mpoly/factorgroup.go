@@ -4,6 +4,8 @@ import (
 	"context"
 	"math/big"
 	"slices"
+
+	"example.org/closedform/algebra/internal/intpoly"
 )
 
 // groupLift collects, over several primes, the factors that belong to groups of
@@ -242,12 +244,16 @@ func (b *groupLift) join(f *field, t *crtTerms, list []sparseTerm, inverse uint6
 }
 
 // factors returns the primitive parts of the collected polynomials if their
-// product with multiplicities is p, up to the sign, else nil.
+// images at the point are the products of the local factors in the groups and
+// their product with multiplicities is p, up to the sign, else nil.
 func (b *groupLift) factors(ctx context.Context) ([]Factor, error) {
 	rest := b.w.p
 	var factors []Factor
 	for s := range b.groups {
 		g := b.polynomial(s)
+		if !b.hasImage(g, s) {
+			return nil, nil
+		}
 		for range b.mult(s) {
 			q, ok, err := divide(ctx, rest, g)
 			if !ok || err != nil {
@@ -261,6 +267,20 @@ func (b *groupLift) factors(ctx context.Context) ([]Factor, error) {
 		return nil, nil
 	}
 	return factors, nil
+}
+
+// hasImage reports whether the image of g at the point is, up to a constant, the
+// product of the local factors in group s: then the refuted subsets prove that
+// g is irreducible.
+func (b *groupLift) hasImage(g Poly, s int) bool {
+	w := b.w
+	t := newTermTable(g, w.order, false)
+	_, image := intpoly.New(t.integerImage(t.degrees(), w.point)...).Primitive()
+	product := intpoly.New(big.NewInt(1))
+	for _, i := range b.groups[s] {
+		product = intpoly.Mul(product, w.image[i].P)
+	}
+	return slices.EqualFunc(image, product, func(x, y *big.Int) bool { return x.Cmp(y) == 0 })
 }
 
 // polynomial returns the primitive part of the collected polynomial s.

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math/big"
+	"sync/atomic"
 	"testing"
 	"time"
 
@@ -177,32 +178,75 @@ func TestFactorCancelled(t *testing.T) {
 	_, err = SquareFree(ctx, Variable(2, 0))
 	require.ErrorIs(t, err, context.Canceled)
 
-	p := signedRoots(5).Mul(signedSums(5))
+	p := signedSums(6) // takes a second
 	ctx, cancel = context.WithTimeout(context.Background(), 20*time.Millisecond)
 	defer cancel()
 	start := time.Now()
 	_, _, err = FactorZ(ctx, p)
-	if err != nil {
-		require.ErrorIs(t, err, context.DeadlineExceeded)
+	require.ErrorIs(t, err, context.DeadlineExceeded)
+	require.Less(t, time.Since(start), time.Second)
+}
+
+// countdown is a context that is cancelled when it has been asked often enough.
+type countdown struct {
+	context.Context
+	left atomic.Int64
+}
+
+func (c *countdown) Err() error {
+	if c.left.Add(-1) < 0 {
+		return context.Canceled
 	}
-	require.Less(t, time.Since(start), 2*time.Second)
+	return nil
+}
+
+// TestFactorCancelledAnywhere stops at all stages.
+func TestFactorCancelledAnywhere(t *testing.T) {
+	x, y, z := Variable(3, 0), Variable(3, 1), Variable(3, 2)
+	one := ConstantWord(3, 1)
+	for name, p := range map[string]Poly{
+		"content": differences(4),
+		"lift":    signedSums(4),
+		"lead":    y.Mul(x.Pow(2)).Add(z).Add(one).Pow(2).Mul(z.Mul(x.Pow(2)).Add(y.Pow(3)).Sub(one)),
+		"long":    x.Pow(2).Sub(y.Pow(150).Mul(z.Pow(2))).Add(one).Mul(x.Pow(2).Add(y.Pow(149).Mul(z)).Add(x)),
+	} {
+		finished := false
+		for k := int64(0); !finished; k += 1 + k/16 {
+			ctx := &countdown{Context: context.Background()}
+			ctx.left.Store(k)
+			_, f, err := FactorZ(ctx, p)
+			finished = err == nil
+			if !finished {
+				require.ErrorIs(t, err, context.Canceled, name)
+				require.Empty(t, f)
+			}
+			ctx.left.Store(k)
+			_, err = SquareFree(ctx, p)
+			require.True(t, err == nil || err == context.Canceled, name)
+		}
+	}
 }
 
 // TestFactorManyVariables has more variables than a word has bits.
 func TestFactorManyVariables(t *testing.T) {
 	const n = 70
-	sum := ConstantWord(n, 1)
-	mix := ConstantWord(n, 3)
-	for i := range n {
-		sum = sum.Add(Variable(n, i).Pow(1 + i%3))
-		mix = mix.Sub(Variable(n, i).Mul(Variable(n, (i+1)%n)))
+	sum, mix := ConstantWord(n, 1), ConstantWord(n, 3)
+	for i := range n / 2 {
+		sum = sum.Add(Variable(n, 2*i).Mul(Variable(n, 2*i+1).Pow(1 + i%3)))
+		mix = mix.Sub(Variable(n, i).Pow(2).Mul(Variable(n, n-1-i)))
 	}
 	// The content of the last factors in x_0 has x_64 only, and the other way round.
 	low, high := Variable(n, 64).Add(ConstantWord(n, 1)), Variable(n, 0).Sub(ConstantWord(n, 5))
 	require.Len(t, checkFactors(t, sum), 1)
 	require.Len(t, checkFactors(t, low.Mul(high)), 2)
-	require.Len(t, checkFactors(t, sum.Mul(mix).Mul(low).Mul(high)), 4)
-	require.Len(t, checkFactors(t, sum.Mul(mix).Mul(mix)), 2)
+	require.Len(t, checkFactors(t, sum.Mul(mix)), 2)
+	require.Len(t, checkFactors(t, mix.Mul(low).Mul(high)), 3)
+	vars := make([]int, n)
+	for i := range vars {
+		vars[i] = i
+	}
+	require.True(t, newProbe(mix, vars).primitive(0))
+	require.False(t, newProbe(mix.Mul(low), vars).primitive(0))
 }
 
 // TestFactorHighDegree is about degrees far beyond the typical ones.

@@ -16,10 +16,10 @@ import (
 // they are put together to restrictions of true factors, in general one for
 // one (Bertini); then the leading coefficients in x of the true factors are
 // known, and so are the true factors after lifting, modulo as many primes as
-// their coefficients ask for. They are checked by division. That none is
-// reducible is proven by the failure of all subsets on the line: a factor
-// over Z has a restriction that is a product of local ones (uniqueness of
-// Hensel lifting).
+// their coefficients ask for. They are checked by their images at the point and
+// by division. That none is reducible is proven by the failure of all subsets
+// on the line: a factor over Z has a restriction that is a product of local
+// ones (uniqueness of Hensel lifting).
 //
 // Sources: Wang, An improved multivariate polynomial factoring algorithm,
 // Math. Comp. 32 (1978), for the outline and the leading coefficients; von zur

@@ -2,7 +2,6 @@ package mpoly
 
 import (
 	"context"
-	"fmt"
 	"math/big"
 	"math/rand/v2"
 	"testing"
@@ -103,18 +102,93 @@ func TestFactorWrongMultiplicities(t *testing.T) {
 	requireSame(t, []Factor{{g, 1}, {k, 1}}, factorAt(t, p, 0, []int64{0, 5, 5}))
 }
 
-func TestGelfondBound(t *testing.T) {
-	// (1 + x)^k (1 + y)^k has small factors; x^24 - y^24 has none larger than it.
-	for _, k := range []int{1, 5, 9} {
+// TestFactorHeights checks the bound of modulusBits on dense products.
+func TestFactorHeights(t *testing.T) {
+	for k := 1; k < 10; k++ {
 		p := Variable(2, 0).Add(ConstantWord(2, 1)).Pow(k).Add(Variable(2, 1))
 		q := Variable(2, 1).Sub(ConstantWord(2, 1)).Pow(k).Add(Variable(2, 0))
-		f := checkFactors(t, p.Mul(q))
-		bits := p.Mul(q).MaxBits()
-		for i := range 2 {
-			bits += p.Mul(q).Degree(i)
+		pq := p.Mul(q)
+		bits := pq.MaxBits() + pq.Degree(0) + pq.Degree(1)
+		for _, g := range checkFactors(t, pq) {
+			require.LessOrEqual(t, g.P.MaxBits(), bits)
 		}
-		for _, g := range f {
-			require.LessOrEqual(t, g.P.MaxBits(), bits, fmt.Sprint(k))
+	}
+}
+
+func TestFactorDeterministic(t *testing.T) {
+	p := signedSums(4).Mul(signedRoots(4)).Mul(differences(4))
+	want := checkFactors(t, p)
+	for range 3 {
+		got := checkFactors(t, p)
+		require.Len(t, got, len(want))
+		for i := range got {
+			require.True(t, got[i].P.Equal(want[i].P))
+			require.Equal(t, want[i].Mult, got[i].Mult)
 		}
+	}
+}
+
+// TestFactorFalseGroups takes local factors for restrictions of true ones that
+// are none: the proofs have to notice.
+func TestFactorFalseGroups(t *testing.T) {
+	ctx := context.Background()
+	for n := 2; n <= 4; n++ {
+		p := signedRoots(n)
+		vars := []int{0, 1, 2, 3}[:n]
+		w := newWangLift(newProbe(p, vars).t, 0)
+		w.p, w.order = p, w.table.vars
+		w.table = newTermTable(p, w.order, true)
+		w.point = []int64{0, 1, 4, 25}[:n]
+		var err error
+		_, w.image, err = intpoly.FactorZ(ctx, intpoly.Poly(w.table.integerImage(w.degrees, w.point)))
+		require.NoError(t, err)
+		require.Len(t, w.image, 1<<(n-1))
+		line, err := w.liftLine(ctx, 0)
+		require.NoError(t, err)
+		var groups [][]int
+		for i := range w.image {
+			require.False(t, line.isFactor(ctx, []int{i}))
+			groups = append(groups, []int{i})
+		}
+		require.NoError(t, w.factorLead(ctx))
+		leads, err := w.distribute(ctx, line, groups)
+		require.NoError(t, err)
+		b := newGroupLift(w, groups, leads)
+		ok, err := b.addPrime(ctx, line)
+		require.NoError(t, err)
+		if ok {
+			factors, err := b.factors(ctx)
+			require.NoError(t, err)
+			require.Nil(t, factors)
+		}
+	}
+}
+
+// TestFactorRemainders joins residues whose terms come and go.
+func TestFactorRemainders(t *testing.T) {
+	product := new(big.Int).SetUint64(fieldAt(0).P)
+	product.Mul(product, new(big.Int).SetUint64(fieldAt(1).P))
+	half := new(big.Int).Rsh(product, 1)
+	values := []*big.Int{
+		big.NewInt(5), big.NewInt(-1), new(big.Int).SetUint64(fieldAt(0).P), new(big.Int).SetUint64(fieldAt(1).P),
+		new(big.Int).Neg(new(big.Int).SetUint64(fieldAt(0).P)), half, new(big.Int).Neg(half),
+	}
+	b := &groupLift{modulus: big.NewInt(1), terms: make([]crtTerms, 1)}
+	for i := range 2 {
+		f := fieldAt(i)
+		var list []sparseTerm
+		for k, v := range values {
+			if c := f.fromBig(v); c != 0 {
+				list = append(list, sparseTerm{[]uint16{uint16(k)}, c})
+			}
+		}
+		b.combine(f, [][]sparseTerm{list})
+		require.False(t, b.stable() && i == 0, "coefficients of the size of the prime")
+	}
+	require.Zero(t, b.modulus.Cmp(product))
+	require.Len(t, b.terms[0].value, len(values))
+	for k, v := range b.terms[0].value {
+		require.Equal(t, []uint16{uint16(k)}, b.terms[0].row[k])
+		require.Zero(t, v.Cmp(values[k]))
 	}
 }

@@ -79,7 +79,10 @@ func squareFreeUsed(ctx context.Context, p Poly) ([]Factor, error) {
 				return nil, err
 			}
 			more, err := squareFreePrimitive(ctx, p, main)
-			return append(parts, more...), err
+			if err != nil {
+				return nil, err
+			}
+			return append(parts, more...), nil
 		}
 	}
 	if m, ok := r.multiplicities(column); ok && len(m) == 2 {
