@@ -8,11 +8,11 @@ import (
 )
 
 // Conditions collects what must not vanish: irreducible expressions in the
-// symbols of a field, without duplicates and without those that the assumptions
-// of the field exclude.
+// symbols of a field and in cosines, sines and roots as they are written, without
+// duplicates and without those that the assumptions of the field exclude.
 type Conditions struct {
 	k       *Constants
-	factors []Constant
+	factors []algebra.Fraction       // in the field of the display
 	simple  []algebra.Poly[Constant] // polynomials whose roots must be distinct
 	signs   []Constant               // what must not be negative
 }
@@ -29,31 +29,72 @@ func (l *Conditions) ImposeSigns() {
 
 // Exclude enters what makes x vanish, if anything does.
 func (l *Conditions) Exclude(ctx context.Context, x Constant) error {
-	if _, number := l.k.Rational(x); number {
+	if l.k.IsNumber(x) {
 		return nil
 	}
-	num, _ := l.k.Parts(l.k.Norm(x))
-	_, factors, err := l.k.Factors(ctx, num)
-	if err != nil {
-		return err
-	}
-	for _, f := range factors {
-		p := f.Base
-		if l.k.NotZero(p) || slices.ContainsFunc(l.factors, func(q Constant) bool { return l.k.Equal(p, q) }) {
-			continue
-		}
-		l.factors = append(l.factors, p)
-	}
-	return nil
+	d := l.k.shown.get(l.k)
+	num, _ := d.to.Parts(d.element(l.k.normalised(x)))
+	return l.exclude(ctx, d, num)
 }
 
 // ExcludeDenominator enters what makes the denominator of x vanish.
 func (l *Conditions) ExcludeDenominator(ctx context.Context, x Constant) error {
-	if x.Denominator() == nil {
+	if l.k.IsNumber(x) {
 		return nil
 	}
-	_, den := l.k.Parts(x)
-	return l.Exclude(ctx, den)
+	d := l.k.shown.get(l.k)
+	_, den := d.to.Parts(d.element(x))
+	return l.exclude(ctx, d, den)
+}
+
+func (l *Conditions) exclude(ctx context.Context, d *display, p algebra.Fraction) error {
+	_, factors, err := d.to.Factors(ctx, p)
+	if err != nil {
+		return err
+	}
+	for _, f := range factors {
+		x, err := d.to.Map(f.Base, l.k.FunctionField, Constant{}, d.values())
+		if err != nil {
+			return err
+		}
+		if !l.k.NotZero(x) && !l.has(d, f.Base) {
+			l.factors = append(l.factors, f.Base)
+		}
+	}
+	return nil
+}
+
+func (l *Conditions) has(d *display, p algebra.Fraction) bool {
+	return slices.ContainsFunc(l.factors, func(q algebra.Fraction) bool { return d.to.Equal(p, q) })
+}
+
+// normalised returns the multiple of x by a number of the field whose leading
+// coefficient, as a polynomial in the variables, is rational.
+func (c *Constants) normalised(x Constant) Constant {
+	if !x.HasRoot() {
+		return x
+	}
+	if _, symbolic := c.Surd(); symbolic {
+		return x
+	}
+	var lead []algebra.Term
+	for _, t := range x.Numerator() {
+		order := -1
+		if lead != nil {
+			order = slices.Compare(lead[0].Exp[1:], t.Exp[1:])
+		}
+		if order < 0 {
+			lead = nil
+		}
+		if order <= 0 {
+			lead = append(lead, t)
+		}
+	}
+	for i, t := range lead {
+		lead[i].Exp = make([]int, len(t.Exp))
+		lead[i].Exp[0] = t.Exp[0]
+	}
+	return c.quotient(x, c.FromTerms(lead))
 }
 
 // mostDiscriminant bounds the degree of a polynomial whose discriminant is
@@ -78,7 +119,7 @@ func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constan
 		if err := of.Exclude(ctx, resultant[Constant](l.k, p, p.Derivative())); err != nil {
 			return err
 		}
-		long := func(x Constant) bool { return len(x.Numerator()) > shortCondition }
+		long := func(x algebra.Fraction) bool { return len(x.Numerator()) > shortCondition }
 		if !slices.ContainsFunc(of.factors, long) {
 			*l = *l.Join(of)
 			return nil
@@ -88,13 +129,13 @@ func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constan
 	return nil
 }
 
-// Join returns the conditions of both lists.
+// Join returns the conditions of both lists, which are over the same field.
 func (l *Conditions) Join(m *Conditions) *Conditions {
+	if l.k == nil {
+		return m
+	}
 	out := l.Without(m)
 	out.signs = l.signs
-	if out.k == nil {
-		out.k = m.k
-	}
 	out.factors = append(slices.Clone(m.factors), out.factors...)
 	out.simple = append(slices.Clone(m.simple), out.simple...)
 	return out
@@ -103,7 +144,7 @@ func (l *Conditions) Join(m *Conditions) *Conditions {
 // Broken returns a condition that a substitution violates, "" if there is none.
 func (l *Conditions) Broken(s *Substitution) (string, error) {
 	for _, p := range l.factors {
-		x, err := SubstituteScalar(s, p)
+		x, err := l.k.shown.get(l.k).to.Map(p, s.m.to.FunctionField, Constant{}, s.m.images)
 		if err != nil {
 			return "", err
 		}
@@ -198,14 +239,19 @@ func (c *Constants) linearIn(p Constant, i int) (slope, rest Constant, ok bool) 
 	return slope, rest, len(above) > 0
 }
 
-// Without returns the conditions that the list m does not have.
+// Without returns the conditions that the list m, over the same field, does not
+// have.
 func (l *Conditions) Without(m *Conditions) *Conditions {
+	if l.k == nil || m.k == nil {
+		return l
+	}
+	d := l.k.shown.get(l.k)
 	out := &Conditions{k: l.k}
 	if len(m.signs) == 0 {
 		out.signs = l.signs
 	}
 	for _, p := range l.factors {
-		if !slices.ContainsFunc(m.factors, func(q Constant) bool { return l.k.Equal(p, q) }) {
+		if !m.has(d, p) {
 			out.factors = append(out.factors, p)
 		}
 	}
@@ -239,8 +285,8 @@ func (l *Conditions) Strings() []string {
 
 // unequal writes that p does not vanish: x != y where p is a difference of two
 // terms, p != 0 otherwise.
-func (c *Constants) unequal(p Constant) Relation {
-	n := c.Node(p)
+func (c *Constants) unequal(p algebra.Fraction) Relation {
+	n := c.shown.get(c).write(p)
 	if neg, ok := n.(Neg); ok {
 		n = neg.X
 	}

@@ -296,8 +296,10 @@ func power(f *algebra.FunctionField, x algebra.Fraction, n int) algebra.Fraction
 const mostFactored = 400
 
 // node writes an element of the field.
-func (d *display) node(x Constant) Node {
-	y := d.element(x)
+func (d *display) node(x Constant) Node { return d.write(d.element(x)) }
+
+// write writes an element of the field of the display.
+func (d *display) write(y algebra.Fraction) Node {
 	num, den := d.to.Parts(y)
 	c, top := d.product(num)
 	e, bottom := d.product(den)
