@@ -22,6 +22,11 @@ func overQ(p intpoly.Poly) Poly[Rat] {
 }
 
 func (Rationals) gcdPoly(p, q Poly[Rat]) Poly[Rat] {
+	if p.q != nil && p.q.w != nil && q.q != nil && q.q.w != nil {
+		if g, ok := intpoly.GCDWords(p.q.w, q.q.w); ok {
+			return Poly[Rat]{ring: Q, q: (&qpoly{w: g}).monic()}
+		}
+	}
 	a, _ := overZ(p)
 	b, _ := overZ(q)
 	return overQ(intpoly.GCD(a, b))

@@ -67,7 +67,7 @@ func overWords(a Matrix[Rat]) (w []int64, d *big.Int, ok bool) {
 	if a.q == nil {
 		a.q = qmatrixFromRats(a.e)
 	}
-	return a.q.w, new(big.Int).Set(a.q.den), a.q.w != nil
+	return a.q.w, a.q.den, a.q.w != nil
 }
 
 // intRows returns the rows of the integer matrix d a and the denominator d.
@@ -139,6 +139,11 @@ func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
 	var x *big.Int
 	var err error
 	w, d, ok := overWords(a)
+	if ok && isOne(d) {
+		if x, ok, err := intmat.SmallDet(ctx, a.n, w); ok {
+			return RatFromInt(x), err
+		}
+	}
 	if ok {
 		x, err = intmat.DetWords(ctx, a.n, w)
 	} else {
@@ -148,7 +153,10 @@ func (Rationals) det(ctx context.Context, a Matrix[Rat]) (Rat, error) {
 	if err != nil {
 		return Rat{}, err
 	}
-	return RatFromFrac(x, d.Exp(d, big.NewInt(int64(a.n)), nil)), nil
+	if isOne(d) {
+		return RatFromBigInt(x), nil
+	}
+	return RatFromFrac(x, new(big.Int).Exp(d, big.NewInt(int64(a.n)), nil)), nil
 }
 
 func (Rationals) solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], error) {
@@ -166,6 +174,14 @@ func (Rationals) solve(ctx context.Context, a, b Matrix[Rat]) (Matrix[Rat], erro
 
 func (Rationals) inverse(ctx context.Context, a Matrix[Rat]) (Matrix[Rat], error) {
 	w, d, ok := overWords(a)
+	if ok && isOne(d) {
+		if num, den, ok, err := intmat.SmallInverse(ctx, a.n, w); ok {
+			if err != nil {
+				return Matrix[Rat]{}, singularOr(err)
+			}
+			return Matrix[Rat]{ring: Q, m: a.n, n: a.n, q: &qmatrix{w: num, den: big.NewInt(den)}}, nil
+		}
+	}
 	if ok {
 		num, den, err := intmat.InverseWords(ctx, a.n, w)
 		return overCommon(num, den, d, big.NewInt(1), a.n, a.n, err)
@@ -202,11 +218,8 @@ func (Rationals) kernel(ctx context.Context, a Matrix[Rat]) ([][]Rat, error) {
 
 // overCommon returns the m x n matrix num*p/(den*q).
 func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matrix[Rat], error) {
-	if errors.Is(err, intmat.ErrSingular) {
-		return Matrix[Rat]{}, ErrSingular
-	}
 	if err != nil {
-		return Matrix[Rat]{}, err
+		return Matrix[Rat]{}, singularOr(err)
 	}
 	entries := make([]*big.Int, 0, m*n)
 	for _, row := range num {
@@ -218,4 +231,12 @@ func overCommon(num [][]*big.Int, den, p, q *big.Int, m, n int, err error) (Matr
 		}
 	}
 	return Matrix[Rat]{ring: Q, m: m, n: n, q: newQMatrix(entries, new(big.Int).Mul(den, q))}, nil
+}
+
+// singularOr returns err, or [ErrSingular] for that of package intmat.
+func singularOr(err error) error {
+	if errors.Is(err, intmat.ErrSingular) {
+		return ErrSingular
+	}
+	return err
 }

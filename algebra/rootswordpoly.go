@@ -65,14 +65,14 @@ func newWordPoly(c []*big.Int, s wordScale) *wordPoly {
 // eval finds, without the rounding to float64. In units of the last place a
 // product is off by less than w+1, always downward, see fixedMul. A step
 // C + 4(x+iy)b, t = 2(x+iy), is off by less than 4(w+1) in the real part, a
-// difference of products, and 8(w+1) in the imaginary part, and C by 1: at most
-// u = 9(w+1)+1 in all. As the factors from a step to the last one are at most 1,
+// difference of products, and 8(w+1) in the imaginary part, and C by 1; those
+// of fixedFactor2 by less than 16, 24 and 1: at most u = 10(w+1)+1 in all. As the factors from a step to the last one are at most 1,
 // the n+1 steps add up to (n+1)u, and to 2(n+1)u for any B_k, as those are at
 // most 2. A step of the derivative takes over twice the error of B and adds u:
 // in all n (4(n+1) + 1) u.
 func (p *wordPoly) errors() (value, deriv float64) {
 	n := float64(p.n)
-	u := math.Ldexp(float64(9*(p.w+1)+1), -64*p.w)
+	u := math.Ldexp(float64(10*(p.w+1)+1), -64*p.w)
 	return (n + 1) * u, n * (4*n + 5) * u
 }
 
@@ -162,13 +162,13 @@ func (p *wordPoly) evalReal2(z wordPoint, deriv bool) (value, slope complex128) 
 
 // evalComplex2 is eval for two words.
 func (p *wordPoly) evalComplex2(z wordPoint, deriv bool) (value, slope complex128) {
-	x0, x1, y0, y1 := z.re[0], z.re[1], z.im[0], z.im[1]
+	f := newFixedFactor2(z.re[1], z.re[0], z.im[1], z.im[0])
 	var r0, r1, i0, i1, dr0, dr1, di0, di1 uint64
 	for k := p.n; k >= 0; k-- {
 		var c uint64
 		s := p.shift[k] & 1
 		if deriv {
-			a1, a0, b1, b0 := fixedMulComplex2(x1, x0, y1, y0, dr1, dr0, di1, di0)
+			a1, a0, b1, b0 := f.mul(dr1, dr0, di1, di0)
 			a1, a0, b1, b0 = a1<<1|a0>>63, a0<<1, b1<<1|b0>>63, b0<<1
 			a0, c = bits.Add64(a0, r0, 0)
 			a1 += r1 + c
@@ -177,7 +177,7 @@ func (p *wordPoly) evalComplex2(z wordPoint, deriv bool) (value, slope complex12
 			dr1, dr0 = a1<<s|a0>>63>>(s^1), a0<<s
 			di1, di0 = b1<<s|b0>>63>>(s^1), b0<<s
 		}
-		a1, a0, b1, b0 := fixedMulComplex2(x1, x0, y1, y0, r1, r0, i1, i0)
+		a1, a0, b1, b0 := f.mul(r1, r0, i1, i0)
 		s++
 		a1, a0, b1, b0 = a1<<s|a0>>(64-s), a0<<s, b1<<s|b0>>(64-s), b0<<s
 		r0, c = bits.Add64(a0, p.c[2*k], 0)
@@ -187,15 +187,70 @@ func (p *wordPoly) evalComplex2(z wordPoint, deriv bool) (value, slope complex12
 	return complex(fixedFloat2(r1, r0), fixedFloat2(i1, i0)), complex(fixedFloat2(dr1, dr0), fixedFloat2(di1, di0))
 }
 
-// fixedMulComplex2 returns the parts of (x+iy) (a+bi) for numbers of two words.
-func fixedMulComplex2(x1, x0, y1, y0, a1, a0, b1, b0 uint64) (r1, r0, i1, i0 uint64) {
-	s1, s0 := fixedMul2(x1, x0, a1, a0)
-	t1, t0 := fixedMul2(y1, y0, b1, b0)
-	r0, c := bits.Sub64(s0, t0, 0)
-	r1 = s1 - t1 - c
-	s1, s0 = fixedMul2(x1, x0, b1, b0)
-	t1, t0 = fixedMul2(y1, y0, a1, a0)
-	i0, c = bits.Add64(s0, t0, 0)
-	i1 = s1 + t1 + c
+// fixedFactor2 is a factor x+iy of two words prepared for products with many
+// numbers a+bi. With every number raised by 1/2, and so without a sign,
+//
+//	x a - y b = x' a' - y' b' - (x-y)/2 - (a-b)/2
+//	x b + y a = x' b' + y' a' - (x+y)/2 - (a+b)/2 - 1/2
+//
+// which spares the four corrections of the signs.
+type fixedFactor2 struct {
+	x1, x0, y1, y0 uint64 // x' and y'
+	r1, r0, i1, i0 uint64 // (x-y)/2 and (x+y)/2 + 1/2
+}
+
+func newFixedFactor2(x1, x0, y1, y0 uint64) fixedFactor2 {
+	f := fixedFactor2{x1: x1 ^ 1<<63, x0: x0, y1: y1 ^ 1<<63, y0: y0}
+	x1, x0, y1, y0 = uint64(int64(x1)>>1), x1<<63|x0>>1, uint64(int64(y1)>>1), y1<<63|y0>>1
+	var c uint64
+	f.r0, c = bits.Sub64(x0, y0, 0)
+	f.r1 = x1 - y1 - c
+	f.i0, c = bits.Add64(x0, y0, 0)
+	f.i1 = (x1 + y1 + c) ^ 1<<63
+	return f
+}
+
+// mul returns the parts of the product with a+bi. Products without a sign miss
+// three carries from below, so are off by less than 3 units of the last place,
+// downward, and halves by 1/2: in all less than 4 in the real part, a difference,
+// and 6 in the imaginary part.
+func (f *fixedFactor2) mul(a1, a0, b1, b0 uint64) (r1, r0, i1, i0 uint64) {
+	var c uint64
+	h1, h0, k1, k0 := uint64(int64(a1)>>1), a1<<63|a0>>1, uint64(int64(b1)>>1), b1<<63|b0>>1
+	a1, b1 = a1^1<<63, b1^1<<63
+
+	r1, r0 = fixedMulUnsigned2(f.x1, f.x0, a1, a0)
+	s1, s0 := fixedMulUnsigned2(f.y1, f.y0, b1, b0)
+	r0, c = bits.Sub64(r0, s0, 0)
+	r1, _ = bits.Sub64(r1, s1, c)
+	r0, c = bits.Sub64(r0, h0, 0)
+	r1, _ = bits.Sub64(r1, h1, c)
+	r0, c = bits.Add64(r0, k0, 0)
+	r1, _ = bits.Add64(r1, k1, c)
+	r0, c = bits.Sub64(r0, f.r0, 0)
+	r1, _ = bits.Sub64(r1, f.r1, c)
+
+	i1, i0 = fixedMulUnsigned2(f.x1, f.x0, b1, b0)
+	s1, s0 = fixedMulUnsigned2(f.y1, f.y0, a1, a0)
+	i0, c = bits.Add64(i0, s0, 0)
+	i1, _ = bits.Add64(i1, s1, c)
+	i0, c = bits.Sub64(i0, h0, 0)
+	i1, _ = bits.Sub64(i1, h1, c)
+	i0, c = bits.Sub64(i0, k0, 0)
+	i1, _ = bits.Sub64(i1, k1, c)
+	i0, c = bits.Sub64(i0, f.i0, 0)
+	i1, _ = bits.Sub64(i1, f.i1, c)
 	return r1, r0, i1, i0
+}
+
+// fixedMulUnsigned2 returns the upper words of a product without signs, up to
+// three carries.
+func fixedMulUnsigned2(x1, x0, y1, y0 uint64) (z1, z0 uint64) {
+	h, _ := bits.Mul64(x0, y1)
+	k, _ := bits.Mul64(x1, y0)
+	z1, z0 = bits.Mul64(x1, y1)
+	z0, c := bits.Add64(z0, h, 0)
+	z1 += c
+	z0, c = bits.Add64(z0, k, 0)
+	return z1 + c, z0
 }

@@ -55,77 +55,62 @@ func absFloat(x []uint64) float64 {
 	top := len(x) - 1
 	negative := x[top]>>63 == 1
 	var r float64
-	carry := uint64(1)
-	for i, v := range x {
+	carry, unit := uint64(1), 1.0
+	for _, v := range x {
 		if negative {
 			v = ^v + carry
 			if v != 0 {
 				carry = 0
 			}
 		}
-		r += math.Ldexp(float64(v), 64*i)
+		r += float64(v) * unit
+		unit *= 0x1p64
 	}
 	return r
 }
 
-// norms returns upper bounds of shift + r_i over the Euclidean norms r_i of
-// the rows and of the columns of s.
-func (s *square) norms(shift float64) (rows, cols []upper) {
-	n := s.n
-	out := make([]upper, 2*n)
-	rows, cols = out[:n], out[n:]
+// norm returns an upper bound of shift, 0 or 1, plus the Euclidean norm of the
+// n entries from the given one on with the given step: a row or a column of s.
+func (s *square) norm(first, step int, shift float64) upper {
 	if s.w > floatLimbs {
-		for i := range n {
-			for j := range n {
-				b := bitLen(s.at(i, j))
-				rows[i].exp = max(rows[i].exp, b)
-				cols[j].exp = max(cols[j].exp, b)
-			}
+		longest := 0
+		for k := range s.n {
+			i := (first + k*step) * s.w
+			longest = max(longest, bitLen(s.e[i:i+s.w]))
 		}
-		root := math.Sqrt(float64(n))*slack + 1 // the shift is at most one such entry
-		for i := range out {
-			if out[i].exp > 0 || shift > 0 {
-				out[i].frac = root
-			}
+		if longest == 0 {
+			return upper{shift, 0}
 		}
-		return rows, cols
+		return upper{math.Sqrt(float64(s.n))*slack + 1, longest} // the shift is at most one such entry
 	}
-	sums := make([]float64, 2*n)
-	for i := range n {
-		for j := range n {
-			var x float64
-			if s.w == 1 {
-				x = float64(int64(s.e[i*n+j]))
-			} else {
-				x = absFloat(s.at(i, j))
-			}
-			sums[i] += x * x
-			sums[n+j] += x * x
+	var sum float64
+	for k := range s.n {
+		i := first + k*step
+		var x float64
+		if s.w == 1 {
+			x = float64(int64(s.e[i]))
+		} else {
+			x = absFloat(s.e[i*s.w : (i+1)*s.w])
 		}
+		sum += x * x
 	}
-	more := s.slack()
-	for i, x := range sums {
-		out[i].frac = (shift + math.Sqrt(x)) * more
-	}
-	return rows, cols
+	return upper{(shift + math.Sqrt(sum)) * s.slack(), 0}
 }
 
-// smallerProduct returns the smaller of the products of two lists of bounds.
-func smallerProduct(x, y []upper) upper {
-	p, q := product(x), product(y)
-	if p.frac == 0 || q.frac == 0 {
-		return upper{}
-	}
-	if p.bits() < q.bits() {
-		return p
-	}
-	return q
-}
-
-func product(factors []upper) upper {
+// rowProduct returns the product of the bounds norm of the rows.
+func (s *square) rowProduct(shift float64) upper {
 	p := upper{1, 0}
-	for _, x := range factors {
-		p = p.times(x)
+	for i := range s.n {
+		p = p.times(s.norm(i*s.n, 1, shift))
+	}
+	return p
+}
+
+// columnProduct returns the product of the bounds norm of the columns.
+func (s *square) columnProduct(shift float64) upper {
+	p := upper{1, 0}
+	for j := range s.n {
+		p = p.times(s.norm(j, s.n, shift))
 	}
 	return p
 }
@@ -138,15 +123,14 @@ func product(factors []upper) upper {
 // Source: J. von zur Gathen, J. Gerhard, Modern Computer Algebra,
 // Theorem 16.6 (Hadamard's inequality).
 func (s *square) hadamardBits() int {
-	return smallerProduct(s.norms(0)).bits()
+	return min(s.rowProduct(0).bits(), s.columnProduct(0).bits())
 }
 
 // columnBits is [square.hadamardBits] from the columns alone. Replacing a
 // column by a vector v of norm at least 1 multiplies that bound by at most
 // the norm, so that it serves for Cramer's rule, too.
 func (s *square) columnBits() int {
-	_, cols := s.norms(0)
-	return product(cols).bits()
+	return s.columnProduct(0).bits()
 }
 
 // charPolyBits returns b with |c| < 2^b for every coefficient c of the
@@ -166,7 +150,7 @@ func (s *square) columnBits() int {
 // than a factor n + 1, as r_i is at most the i-th row sum: its maximum over k
 // is at least (1 + rho)^n / (n + 1).
 func (s *square) charPolyBits() int {
-	return smallerProduct(s.norms(1)).bits()
+	return min(s.rowProduct(1).bits(), s.columnProduct(1).bits())
 }
 
 // rowSumBits returns b such that every sum of absolute values of a row is

@@ -71,7 +71,7 @@ func TestSolvePathsAgree(t *testing.T) {
 			require.Zero(t, den.Cmp(liftedDen))
 			wide++
 		}
-		if s.w > 1 || bits+8 > 60 {
+		if s.w > 1 || bits+8 > 62 {
 			continue
 		}
 		words++
@@ -95,7 +95,7 @@ func TestSolvePathsAgree(t *testing.T) {
 			}
 		}
 		add(s.wordSolution(t.Context(), unit, n))
-		add(s.wordInverse(t.Context()))
+		add(squareOf(a).invert(t.Context()))
 		if singular {
 			for _, err := range append(errs, err) {
 				require.ErrorIs(t, err, ErrSingular)
@@ -145,7 +145,7 @@ func TestCramerSkipsPrimesDividingTheDeterminant(t *testing.T) {
 
 func TestWordsAndIntegersGiveTheSame(t *testing.T) {
 	ctx := t.Context()
-	tried := 0
+	tried, smallDets := 0, 0
 	for _, a := range samples() {
 		n := len(a)
 		e := []int64{}
@@ -174,6 +174,12 @@ func TestWordsAndIntegersGiveTheSame(t *testing.T) {
 		det, err := DetWords(ctx, n, e)
 		require.NoError(t, err)
 		require.Zero(t, plainDet(a).Cmp(det))
+		small, ok, err := SmallDet(ctx, n, e)
+		require.NoError(t, err)
+		if ok {
+			require.Zero(t, det.Cmp(big.NewInt(small)))
+			smallDets++
+		}
 		want, wantDen, wantErr := Inverse(ctx, a)
 		got, gotDen, gotErr := InverseWords(ctx, n, e)
 		require.Equal(t, wantErr, gotErr)
@@ -188,6 +194,7 @@ func TestWordsAndIntegersGiveTheSame(t *testing.T) {
 		require.Equal(t, before, e)
 	}
 	require.Greater(t, tried, 50)
+	require.Greater(t, smallDets, 30)
 	require.Panics(t, func() { _, _ = CharPolyWords(ctx, 2, make([]int64, 3)) })
 }
 

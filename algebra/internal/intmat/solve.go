@@ -75,7 +75,15 @@ func (s *square) solve(ctx context.Context, b [][]*big.Int) (num [][]*big.Int, d
 // is num/den, with den > 0 and no factor in common with all of num. It
 // returns [ErrSingular] when det A = 0. See [Solve].
 func Inverse(ctx context.Context, a [][]*big.Int) (num [][]*big.Int, den *big.Int, err error) {
-	return squareOf(a).invert(ctx)
+	a, contents, err := rowContents(ctx, a)
+	if err != nil {
+		return nil, nil, err
+	}
+	num, den, err = squareOf(a).invert(ctx)
+	if err != nil || contents == nil {
+		return num, den, err
+	}
+	return scaledColumns(ctx, num, den, contents)
 }
 
 // InverseWords is [Inverse] for the matrix of order n with rows a.
@@ -83,10 +91,34 @@ func InverseWords(ctx context.Context, n int, a []int64) (num [][]*big.Int, den 
 	return squareOfWords(n, a).invert(ctx)
 }
 
+// SmallInverse is [InverseWords] with the answer in words, row after row; ok is
+// false when Hadamard's bound does not promise that it fits.
+func SmallInverse(ctx context.Context, n int, a []int64) (num []int64, den int64, ok bool, err error) {
+	s := squareOfWords(n, a)
+	bits := s.hadamardBits()
+	if bits > minorBits {
+		return nil, 0, false, nil
+	}
+	x, d, err := s.wordInverse(ctx, bits)
+	if err != nil {
+		return nil, 0, true, err
+	}
+	num = make([]int64, len(x))
+	for i, v := range x {
+		num[i] = int64(v)
+	}
+	return num, int64(d), true, nil
+}
+
+// invert is Inverse; it may overwrite s.
 func (s *square) invert(ctx context.Context) (num [][]*big.Int, den *big.Int, err error) {
 	bits := s.hadamardBits()
-	if bits <= 60 {
-		return s.wordInverse(ctx)
+	if bits <= minorBits {
+		x, d, err := s.wordInverse(ctx, bits)
+		if err != nil {
+			return nil, nil, err
+		}
+		return rowsOf(bigWords(x), s.n, s.n), new(big.Int).SetUint64(d), nil
 	}
 	return s.cramer(ctx, nil, s.n, bits, 1)
 }

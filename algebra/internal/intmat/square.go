@@ -78,6 +78,9 @@ func (s *square) at(i, j int) []uint64 {
 }
 
 func (s *square) isZero(i, j int) bool {
+	if s.w == 1 {
+		return s.e[i*s.n+j] == 0
+	}
 	for _, x := range s.at(i, j) {
 		if x != 0 {
 			return false

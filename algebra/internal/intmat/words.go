@@ -98,21 +98,19 @@ func (s *square) wordSolution(ctx context.Context, b []uint64, k int) (num [][]*
 	return rowsOf(bigWords(rows), s.n, k), new(big.Int).SetUint64(d), ctx.Err()
 }
 
-// wordInverse returns the inverse when |det A| and the entries of adj(A) are
-// below 2^60: less than half the first prime, modulo which they are found. A
-// determinant of that size is zero when its image is.
-func (s *square) wordInverse(ctx context.Context) (num [][]*big.Int, den *big.Int, err error) {
-	f := zp.NewField(prime(0))
-	x, det, err := s.cramerImage(ctx, f, nil)
-	if err != nil {
-		return nil, nil, err
+// wordInverse overwrites s and returns x, row after row, and d > 0 with
+// A x = d I in lowest terms, for the bound 2^bits, at most 2^minorBits, of the
+// minors of A. Only a row or column of zeros goes with entries longer than
+// words, and has a bound below 1.
+func (s *square) wordInverse(ctx context.Context, bits int) (x []uint64, d uint64, err error) {
+	if bits > 0 {
+		if d, err = s.bareiss(ctx); err != nil {
+			return nil, 0, err
+		}
 	}
-	if x == nil {
-		return nil, nil, ErrSingular
+	if d == 0 {
+		return nil, 0, ErrSingular
 	}
-	for i, v := range x {
-		x[i] = uint64(f.Lift(v))
-	}
-	x, d := lowestWords(x, uint64(f.Lift(det[0])))
-	return rowsOf(bigWords(x), s.n, s.n), new(big.Int).SetUint64(d), ctx.Err()
+	x, d = lowestWords(s.e, d)
+	return x, d, ctx.Err()
 }

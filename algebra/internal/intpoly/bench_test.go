@@ -70,7 +70,7 @@ func BenchmarkGCD(b *testing.B) {
 func BenchmarkMulWays(b *testing.B) {
 	for _, k := range []int{1, 2, 3, 4, 5, 6, 8, 16} {
 		for _, n := range []int{4, 8, 12, 16, 20, 40, 60, 100, 200} {
-			size := min((k*word-12)/2, word*k/2)
+			size := min((k*wordSize-12)/2, wordSize*k/2)
 			p, q := randomPoly(1, n-1, size), randomPoly(2, n-1, size)
 			ways := map[string]func(){
 				"flat": func() { mulFlat(p, q, k) },
@@ -96,8 +96,8 @@ func BenchmarkMulWays(b *testing.B) {
 // BenchmarkDivWays calibrates flatWords.
 func BenchmarkDivWays(b *testing.B) {
 	for _, k := range []int{1, 2, 4, 8, 12, 16, 24} {
-		q := randomPoly(1, 20, k*word/2-8)
-		p := Mul(q, randomPoly(2, 20, k*word/2-8))
+		q := randomPoly(1, 20, k*wordSize/2-8)
+		p := Mul(q, randomPoly(2, 20, k*wordSize/2-8))
 		b.Run(fmt.Sprintf("k=%d/flat", k), func(b *testing.B) {
 			for b.Loop() {
 				divFlat(p, q)

@@ -8,21 +8,21 @@ import (
 	"github.com/stretchr/testify/require"
 )
 
-// word is the size of a word in bits.
-const word = bits.UintSize
+// wordSize is the size of a word in bits.
+const wordSize = bits.UintSize
 
 // signed returns the number that v stands for.
 func signed(v []big.Word) *big.Int {
 	x := new(big.Int).SetBits(append([]big.Word(nil), v...))
 	if negative(v) {
-		x.Sub(x, new(big.Int).Lsh(big.NewInt(1), uint(len(v)*word)))
+		x.Sub(x, new(big.Int).Lsh(big.NewInt(1), uint(len(v)*wordSize)))
 	}
 	return x
 }
 
 // wrap returns x modulo 2^(k words) as a signed number.
 func wrap(x *big.Int, k int) *big.Int {
-	return signed(toFlat(Poly{new(big.Int).Rem(x, new(big.Int).Lsh(big.NewInt(1), uint(k*word)))}, k, false).w)
+	return signed(toFlat(Poly{new(big.Int).Rem(x, new(big.Int).Lsh(big.NewInt(1), uint(k*wordSize)))}, k, false).w)
 }
 
 func requireInt(t *testing.T, want, got *big.Int) {
@@ -35,7 +35,7 @@ func TestFlatWordsAgainstInt(t *testing.T) {
 	for k := 1; k <= 5; k++ {
 		for _, x := range b {
 			for _, y := range b {
-				if x.BitLen() >= k*word || y.BitLen() >= k*word {
+				if x.BitLen() >= k*wordSize || y.BitLen() >= k*wordSize {
 					continue
 				}
 				a, c := toFlat(Poly{x}, k, false), toFlat(Poly{y}, k, false)
@@ -55,14 +55,14 @@ func TestFlatWordsAgainstInt(t *testing.T) {
 					requireInt(t, wrap(new(big.Int).Mul(x, y), k), signed(v))
 				}
 			}
-			if x.BitLen() >= k*word {
+			if x.BitLen() >= k*wordSize {
 				continue
 			}
 			v := toFlat(Poly{x}, k, false).w
 			if x.Sign() != 0 {
 				require.Equal(t, int(x.TrailingZeroBits()), trailingZeros(v))
 			}
-			for _, n := range []int{0, 1, 31, word - 1, word, word + 1, k*word - 1} {
+			for _, n := range []int{0, 1, 31, wordSize - 1, wordSize, wordSize + 1, k*wordSize - 1} {
 				s := append([]big.Word(nil), v...)
 				shiftRight(s, n)
 				requireInt(t, new(big.Int).Rsh(x, uint(n)), signed(s))

@@ -190,7 +190,7 @@ func hessenbergDet(ctx context.Context, ring localRing, n int, a []uint64) (uint
 //
 // Source: G. Golub, C. Van Loan, Matrix Computations, section 3.2 (the
 // left-looking, or jki, form of elimination).
-func determinant(ctx context.Context, ring localRing, n int, a []uint64) (uint64, error) {
+func determinant(ctx context.Context, ring *matrixRing, n int, a []uint64) (uint64, error) {
 	if isHessenberg(n, a) {
 		return hessenbergDet(ctx, ring, n, a)
 	}
