@@ -1,6 +1,9 @@
 package algebra
 
-import "fmt"
+import (
+	"context"
+	"fmt"
+)
 
 // Extension is the simple extension K[s]/(p) of a field K by a root of the
 // irreducible polynomial p. Its elements are polynomials over K of degree less
@@ -70,11 +73,47 @@ func (x *Extension[E]) Inv(a Poly[E]) (Poly[E], error) {
 	if a.IsZero() {
 		return a, ErrDivisionByZero
 	}
+	if n, ok := any(x.base).(normInverter); ok && n.invertsByNorm() {
+		return x.invByNorm(a)
+	}
 	g, u, _ := ExtendedGCD(x.base, a, x.p)
 	if g.Degree() > 0 {
 		return Poly[E]{}, &ReducibleError{Modulus: x.p.String(), Factor: g.String()}
 	}
 	return x.Reduce(u), nil
+}
+
+// normInverter marks fields in which remainders grow, so that inverses are found
+// from the norm.
+type normInverter interface{ invertsByNorm() bool }
+
+// invByNorm returns 1/a from the characteristic polynomial of the multiplication
+// by a, s^d + c1 s^(d-1) + ... + cd, as -(a^(d-1) + c1 a^(d-2) + ... + c(d-1))/cd
+// by the theorem of Cayley and Hamilton.
+func (x *Extension[E]) invByNorm(a Poly[E]) (Poly[E], error) {
+	d := x.p.Degree()
+	columns := make([]Poly[E], d)
+	columns[0] = a
+	for j := 1; j < d; j++ {
+		columns[j] = x.Reduce(columns[j-1].ShiftUp(1))
+	}
+	chi, err := CharPoly(context.Background(), MatrixFromFunc[E](x.base, d, d, func(i, j int) E {
+		if i > columns[j].Degree() {
+			return x.base.Zero()
+		}
+		return columns[j].Coef(i)
+	}))
+	if err != nil {
+		return Poly[E]{}, err
+	}
+	if x.base.IsZero(chi.Coef(0)) {
+		return Poly[E]{}, &ReducibleError{Modulus: x.p.String(), Factor: GCD(x.base, a, x.p).String()}
+	}
+	sum := x.One()
+	for i := 1; i < d; i++ {
+		sum = x.Mul(sum, a).Add(x.FromBase(chi.Coef(d - i)))
+	}
+	return sum.Scale(x.base.Neg(mustInv(x.base, chi.Coef(0)))), nil
 }
 
 // Trace returns the trace of a over K, the sum over the roots r of the modulus

@@ -242,6 +242,10 @@ func (f *FunctionField) reduce(p mpoly.Poly) mpoly.Poly {
 	return mpoly.FromCoefficients(0, c[:f.degree])
 }
 
+// invertsByNorm tells that Euclid's algorithm over the field lets expressions
+// grow: there are variables.
+func (f *FunctionField) invertsByNorm() bool { return len(f.names) > 0 }
+
 func (f *FunctionField) Zero() Fraction { return Fraction{} }
 
 func (f *FunctionField) One() Fraction { return f.FromInt(1) }

@@ -57,7 +57,8 @@ func (l *Conditions) exclude(ctx context.Context, d *display, p algebra.Fraction
 		if err != nil {
 			return err
 		}
-		if !l.k.NotZero(x) && !l.has(d, f.Base) {
+		// In tan(b/2) the case b = pi does not show.
+		if (d.isTrigonometric(f.Base) || !l.k.NotZero(x)) && !l.has(d, f.Base) {
 			l.factors = append(l.factors, f.Base)
 		}
 	}
@@ -97,24 +98,27 @@ func (c *Constants) normalised(x Constant) Constant {
 	return c.quotient(x, c.FromTerms(lead))
 }
 
-// mostDiscriminant bounds the degree of a polynomial whose discriminant is
-// taken, and shortCondition the terms of its factors as conditions.
+// mostDiscriminant bounds the degree and the terms of a polynomial whose
+// discriminant is taken, and shortCondition the terms of its factors as
+// conditions.
 const (
 	mostDiscriminant = 4
+	mostCoefficients = 16
 	shortCondition   = 4
 )
 
 // excludeRepeated enters the repeated roots of a polynomial: the factors of its
 // discriminant where these are short, the polynomial itself otherwise.
 func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constant]) error {
-	symbolic := false
+	symbolic, size := false, 0
 	for i := range p.Degree() + 1 {
 		symbolic = symbolic || !l.k.IsNumber(p.Coef(i))
+		size += p.Coef(i).Size()
 	}
 	if !symbolic || slices.ContainsFunc(l.simple, p.Equal) {
 		return nil
 	}
-	if p.Degree() <= mostDiscriminant {
+	if p.Degree() <= mostDiscriminant && size <= mostCoefficients {
 		of := NewConditions(l.k)
 		if err := of.Exclude(ctx, resultant[Constant](l.k, p, p.Derivative())); err != nil {
 			return err
@@ -298,7 +302,9 @@ func (c *Constants) unequal(p algebra.Fraction) Relation {
 				left, right = neg.X, Negate(right)
 			}
 		}
-		return Relation{Left: left, Right: right, Op: "!="}
+		if _, name := left.(Symbol); name || !isNegated(right) {
+			return Relation{Left: left, Right: right, Op: "!="}
+		}
 	}
 	return Relation{Left: n, Right: Int(0), Op: "!="}
 }

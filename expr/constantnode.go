@@ -438,6 +438,16 @@ func (d *display) before(i, j int) bool {
 	return i < j
 }
 
+// isTrigonometric tells whether a cosine or a sine of a formal angle occurs.
+func (d *display) isTrigonometric(p algebra.Fraction) bool {
+	for i, v := range d.vars {
+		if (v.fn == "cos" || v.fn == "sin") && d.to.Uses(p, i) {
+			return true
+		}
+	}
+	return false
+}
+
 // variable returns the index of the variable that p is, or -1.
 func (d *display) variable(p algebra.Fraction) int {
 	t := p.Numerator()

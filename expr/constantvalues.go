@@ -30,6 +30,38 @@ func (c *Constants) Exp(x Constant, at Pos) (Constant, error) {
 	return out, nil
 }
 
+// Cos returns cos x. The error may be a growth. At a rational multiple of pi the
+// sine is not taken into the field.
+func (c *Constants) Cos(x Constant, at Pos) (Constant, error) {
+	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	if err != nil {
+		return Constant{}, err
+	}
+	for _, n := range coefs {
+		if n != 0 {
+			cos, _, err := c.CosSin(x, at)
+			return cos, err
+		}
+	}
+	return c.cosPi(turns, at)
+}
+
+// Sin returns sin x. The error may be a growth. At a rational multiple of pi the
+// cosine is not taken into the field.
+func (c *Constants) Sin(x Constant, at Pos) (Constant, error) {
+	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	if err != nil {
+		return Constant{}, err
+	}
+	for _, n := range coefs {
+		if n != 0 {
+			_, sin, err := c.CosSin(x, at)
+			return sin, err
+		}
+	}
+	return c.cosPi(algebra.NewRat(1, 2).Sub(turns), at)
+}
+
 // CosSin returns cos x and sin x. The error may be a growth.
 func (c *Constants) CosSin(x Constant, at Pos) (cos, sin Constant, err error) {
 	if c.IsZero(x) {
@@ -240,67 +272,61 @@ func (c *Constants) linear(x Constant, args []Constant) ([]algebra.Rat, bool) {
 
 // cosSinPi returns the cosine and sine of r pi.
 func (c *Constants) cosSinPi(r algebra.Rat, at Pos) (cos, sin Constant, err error) {
-	den, ok := algebra.RatFromBigInt(r.Den()).Int64()
-	if !ok || den > 4*mostAlgebraic {
-		return cos, sin, Errorf(LimitExceeded, at, "the cosine of pi*%s is an algebraic number of too high a degree", r)
-	}
-	num := new(big.Int).Mod(r.Num(), big.NewInt(2*den)).Int64()
-	half := c.FromRat(algebra.NewRat(1, 2))
-	// By quadrants: r = k/2 + rest with 0 <= rest < 1/2.
-	quadrant := 2 * num / den
-	rest := algebra.NewRat(num, den).Sub(algebra.NewRat(quadrant, 2))
-	switch d, _ := algebra.RatFromBigInt(rest.Den()).Int64(); {
-	case rest.IsZero():
-		cos, sin = c.One(), c.Zero()
-	case d == 3: // 1/3
-		cos = half
-		sin, err = c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
-	case d == 6: // 1/6
-		sin = half
-		cos, err = c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
-	case d == 4:
-		cos, err = c.NthRoot(half, 2, at)
-		sin = cos
-	case d == 5:
-		// cos(pi/5) = (1 + sqrt(5))/4, cos(2pi/5) = (sqrt(5) - 1)/4
-		var five Constant
-		if five, err = c.NthRoot(c.FromInt(5), 2, at); err == nil {
-			n, _ := algebra.RatFromBigInt(rest.Num()).Int64()
-			cos = c.Mul(c.FromRat(algebra.NewRat(1, 4)), c.Add(five, c.FromInt(3-2*n)))
-			sin, err = c.NthRoot(c.Sub(c.One(), c.Mul(cos, cos)), 2, at)
-		}
-	case d%4 == 2: // the complement has the odd denominator d/2
-		sin, cos, err = c.cosSinPi(algebra.NewRat(1, 2).Sub(rest), at)
-	case d&(d-1) == 0: // the half of an angle that is known
-		var double Constant
-		if double, _, err = c.cosSinPi(rest.Mul(algebra.RatFromInt(2)), at); err == nil {
-			if cos, err = c.NthRoot(c.Mul(half, c.Add(c.One(), double)), 2, at); err == nil {
-				sin, err = c.NthRoot(c.Mul(half, c.Sub(c.One(), double)), 2, at)
-			}
-		}
-	default:
-		if a, b, composite := splitFraction(rest, d); composite {
-			var ca, sa, cb, sb Constant
-			if ca, sa, err = c.cosSinPi(a, at); err != nil {
-				return cos, sin, err
-			}
-			if cb, sb, err = c.cosSinPi(b, at); err != nil {
-				return cos, sin, err
-			}
-			cos, sin = c.Sub(c.Mul(ca, cb), c.Mul(sa, sb)), c.Add(c.Mul(ca, sb), c.Mul(sa, cb))
-			break
-		}
-		if cos, err = c.cosine(rest, at); err == nil {
-			sin, err = c.sine(rest, cos, at)
-		}
-	}
-	if err != nil {
+	if cos, err = c.cosPi(r, at); err != nil {
 		return cos, sin, err
 	}
-	for range quadrant {
-		cos, sin = c.Neg(sin), cos
+	sin, err = c.cosPi(algebra.NewRat(1, 2).Sub(r), at)
+	return cos, sin, err
+}
+
+// cosPi returns cos(r pi): in radicals where the denominator of r is a product
+// of 5, 3 and a power of 2, as a named cosine otherwise.
+func (c *Constants) cosPi(r algebra.Rat, at Pos) (Constant, error) {
+	den, ok := algebra.RatFromBigInt(r.Den()).Int64()
+	if !ok || den > 8*mostAlgebraic {
+		return Constant{}, Errorf(LimitExceeded, at, "the cosine of pi*%s is an algebraic number of too high a degree", r)
 	}
-	return cos, sin, nil
+	// cos is even, has the period 2, and changes its sign under r -> 1 - r.
+	num := new(big.Int).Mod(r.Num(), big.NewInt(2*den)).Int64()
+	if num > den {
+		num = 2*den - num
+	}
+	if 2*num > den {
+		x, err := c.cosPi(algebra.NewRat(den-num, den), at)
+		return c.Neg(x), err
+	}
+	r = algebra.NewRat(num, den)
+	half := c.FromRat(algebra.NewRat(1, 2))
+	switch {
+	case num == 0:
+		return c.One(), nil
+	case den == 2:
+		return c.Zero(), nil
+	case den == 3:
+		return half, nil
+	case den == 4:
+		return c.NthRoot(half, 2, at)
+	case den == 5: // (sqrt(5) + 1)/4 and (sqrt(5) - 1)/4
+		five, err := c.NthRoot(c.FromInt(5), 2, at)
+		return c.Mul(c.FromRat(algebra.NewRat(1, 4)), c.Add(five, c.FromInt(3-2*num))), err
+	case den == 6:
+		return c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
+	case den == 10 || den&(den-1) == 0: // the half of an angle
+		double, err := c.cosPi(r.Mul(algebra.RatFromInt(2)), at)
+		if err != nil {
+			return double, err
+		}
+		return c.NthRoot(c.Mul(half, c.Add(c.One(), double)), 2, at)
+	}
+	if a, b, ok := splitFraction(r, den); ok && den%2 == 0 && den%4 != 2 || ok && den%15 == 0 {
+		ca, sa, err := c.cosSinPi(a, at)
+		if err != nil {
+			return ca, err
+		}
+		cb, sb, err := c.cosSinPi(b, at)
+		return c.Sub(c.Mul(ca, cb), c.Mul(sa, sb)), err
+	}
+	return c.cosine(r, at)
 }
 
 // splitFraction writes r, with the denominator d, as a sum of fractions with
@@ -327,12 +353,18 @@ func splitFraction(r algebra.Rat, d int64) (a, b algebra.Rat, ok bool) {
 	return a, r.Sub(a), true
 }
 
-// cosine returns cos(r pi) for 0 < r < 1/2, which is a root of T_q(y) - (-1)^p,
-// r = p/q, with the Chebyshev polynomial T_q.
+// cosine returns cos(r pi) for 0 < r < 1/2 as a number of its own, a root of
+// T_q(y) - (-1)^p, r = p/q, with the Chebyshev polynomial T_q; by the square of
+// the sine where that is in the field.
 func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
+	complement := algebra.NewRat(1, 2).Sub(r)
 	for _, g := range c.generators {
-		if g.q == 0 && g.angle.Equal(r) {
+		switch {
+		case g.q == 0 && g.angle.Equal(r):
 			return g.value, nil
+		case g.q == 0 && g.angle.Equal(complement):
+			p := algebra.NewPoly[Constant](c, c.Sub(c.Mul(g.value, g.value), c.One()), c.Zero(), c.One())
+			return c.algebraic(p, cosPiBall(r), generator{angle: r}, at)
 		}
 	}
 	q, _ := algebra.RatFromBigInt(r.Den()).Int64()
@@ -344,27 +376,15 @@ func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
 	if new(big.Int).And(r.Num(), big.NewInt(1)).Sign() != 0 {
 		sign = -1
 	}
-	p, err := algebra.FactorAt(context.Background(), chebyshev.Sub(algebra.PolyFromInts(sign)), cosPi(r))
+	p, err := algebra.FactorAt(context.Background(), chebyshev.Sub(algebra.PolyFromInts(sign)), cosPiBall(r))
 	if err != nil {
 		return Constant{}, err
 	}
-	return c.algebraic(c.overConstants(p), cosPi(r), generator{angle: r}, at)
+	return c.algebraic(c.overConstants(p), cosPiBall(r), generator{angle: r}, at)
 }
 
-// sine returns sin(r pi) for 0 < r < 1/2 from the cosine, by its square.
-func (c *Constants) sine(r algebra.Rat, cos Constant, at Pos) (Constant, error) {
-	r = algebra.NewRat(1, 2).Sub(r)
-	for _, g := range c.generators {
-		if g.q == 0 && g.angle.Equal(r) {
-			return g.value, nil
-		}
-	}
-	p := algebra.NewPoly[Constant](c, c.Sub(c.Mul(cos, cos), c.One()), c.Zero(), c.One())
-	return c.algebraic(p, cosPi(r), generator{angle: r}, at)
-}
-
-// cosPi encloses cos(r pi).
-func cosPi(r algebra.Rat) func(prec uint) algebra.Ball {
+// cosPiBall encloses cos(r pi).
+func cosPiBall(r algebra.Rat) func(prec uint) algebra.Ball {
 	return func(prec uint) algebra.Ball {
 		_, cos := algebra.Pi(prec).Mul(algebra.BallFromRat(r.Big(), prec), prec).SinCos(prec)
 		return cos

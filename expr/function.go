@@ -118,6 +118,9 @@ func NoNames(s Symbol) (algebra.Rat, error) {
 	return algebra.Rat{}, irrational(s.Pos(), "%s", s.Name)
 }
 
+// Names returns the names in a tree, in order of appearance.
+func Names(n Node) []string { return namesIn(n, "") }
+
 // namesIn returns the names in a tree but that of the variable and of the roots
 // of sums, in order of appearance.
 func namesIn(n Node, variable string) []string {

@@ -356,7 +356,7 @@ func Split[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E], 
 	}
 	// N/(P Q) = A/P + B/Q with A = N/Q mod P.
 	p, q := in.Poly(), out.Poly()
-	_, _, inv := algebra.ExtendedGCD[E](k, p, q.Rem(k, p))
+	inv := mustInvert(algebra.NewExtension[E](k, p, "z"), q.Rem(k, p))
 	for i, f := range images {
 		if err := ctx.Err(); err != nil {
 			return nil, nil, err

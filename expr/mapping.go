@@ -50,7 +50,7 @@ func newMapping(from, to *Constants, values map[string]Constant) (*mapping, erro
 		var x Constant
 		var err error
 		if g.q == 0 {
-			x, _, err = to.cosSinPi(g.angle, Pos{})
+			x, err = to.cosPi(g.angle, Pos{})
 		} else {
 			if x, err = m.apply(g.arg); err == nil {
 				x, err = to.NthRoot(x, g.q, Pos{})

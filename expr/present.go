@@ -442,7 +442,7 @@ func (w presenter[E]) named(f Image[E], i int) Node {
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
 		num, den := f.residueRatio(i)
-		if len(f.den) > 1 && pp.p.Degree() <= mostDegreeAlone {
+		if _, symbols := any(w.k).(*Constants); !symbols && len(f.den) > 1 && pp.p.Degree() <= mostDegreeAlone {
 			// The part of this factor alone, which does not know of the others: it
 			// reads the same in a response and in its transient part.
 			den = pp.p.Derivative()

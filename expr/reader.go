@@ -295,6 +295,17 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 		}
 		acc.add(elementaryTerm[E]{0, slope, o, e, o})
 	case "cos", "sin":
+		if m, ok := k.(constantMaker[E]); ok && k.IsZero(slope) {
+			value := m.Cos
+			if v.Func == "sin" {
+				value = m.Sin
+			}
+			x, err := value(rest, v.Pos())
+			if err != nil {
+				return zero, err
+			}
+			return r.constant(x), nil
+		}
 		cos, sin, err := cosSinIn(k, rest, v.Pos())
 		if err != nil {
 			return zero, err
@@ -332,6 +343,8 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 // constants.
 type constantMaker[E any] interface {
 	Exp(x E, at Pos) (E, error)
+	Cos(x E, at Pos) (E, error)
+	Sin(x E, at Pos) (E, error)
 	CosSin(x E, at Pos) (cos, sin E, err error)
 	NthRoot(x E, q int, at Pos) (E, error)
 }

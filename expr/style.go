@@ -85,7 +85,7 @@ func (c *Constants) sqrt(x Constant) (Constant, Node) {
 		d, m := algebra.SqrtParts(r)
 		return c.FromRat(d), sqrtNode(m)
 	}
-	if c.hasRoot(x.Numerator()) {
+	if x.HasRoot() {
 		p := algebra.NewPoly[Constant](c, c.Neg(x), c.Zero(), c.One())
 		if factors, err := c.FactorPoly(context.Background(), p); err == nil && len(factors) == 2 {
 			y := factors[0].P.Coef(0)

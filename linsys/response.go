@@ -281,6 +281,13 @@ func (r *Response) Substitute(ctx context.Context, values map[string]expr.Node) 
 	if len(values) == 0 {
 		return r, nil
 	}
+	for name, v := range values {
+		for _, inner := range expr.Names(v) {
+			if _, given := values[inner]; !given && slices.Contains(r.constants, inner) {
+				return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the value of %s holds %s, which is a free constant of the response; use another name", expr.Quote(name), inner)
+			}
+		}
+	}
 	over, constants, err := r.over.substitute(ctx, r.model, r.constants, values)
 	if err != nil {
 		return nil, wrapCancel(err)
