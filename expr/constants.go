@@ -1,10 +1,12 @@
 package expr
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"slices"
 	"strings"
+	"unicode/utf8"
 
 	"example.org/closedform/algebra"
 )
@@ -64,8 +66,11 @@ type generator struct {
 // mostAlgebraic bounds the degree of the algebraic numbers of a model.
 const mostAlgebraic = 16
 
-// NewConstants returns the field Q(names); the name pi stands for the number.
+// NewConstants returns the field Q(names), the names in their natural order (k2
+// before k10); the name pi stands for the number.
 func NewConstants(names ...string) *Constants {
+	names = slices.Clone(names)
+	slices.SortFunc(names, compareNames)
 	formals := make([]formal, len(names))
 	for i, name := range names {
 		formals[i] = formal{kind: symbolFormal, name: name}
@@ -207,14 +212,66 @@ func (c *Constants) SymbolsIn(elements ...Constant) []string {
 
 // with returns the field with one more formal, whose argument is in c.
 func (c *Constants) with(f formal) *Constants {
-	formals := append(slices.Clone(c.formals), f)
-	return c.rebuild(formals, func(g *Constants) ([]Constant, error) {
+	at := len(c.formals)
+	if f.kind == symbolFormal || f.kind == piFormal {
+		at = 0
+		for at < len(c.formals) && c.formals[at].kind <= piFormal && compareNames(c.formals[at].text(), f.text()) < 0 {
+			at++
+		}
+	}
+	return c.rebuild(slices.Insert(slices.Clone(c.formals), at, f), func(g *Constants) ([]Constant, error) {
 		values := make([]Constant, len(c.formals))
 		for i := range values {
 			values[i] = g.Variable(i)
+			if i >= at {
+				values[i] = g.Variable(i + 1)
+			}
 		}
 		return values, nil
 	})
+}
+
+// text returns the name of a symbol or of pi.
+func (f formal) text() string {
+	if f.kind == piFormal {
+		return "pi"
+	}
+	return f.name
+}
+
+// compareNames orders names by their letters, and by the values of the numbers
+// in them.
+func compareNames(a, b string) int {
+	whole := strings.Compare(a, b)
+	for a != "" && b != "" {
+		x, restA := leadingNumber(a)
+		y, restB := leadingNumber(b)
+		if x != "" && y != "" {
+			if c := cmp.Or(cmp.Compare(len(x), len(y)), strings.Compare(x, y)); c != 0 {
+				return c
+			}
+			a, b = restA, restB
+			continue
+		}
+		r, n := utf8.DecodeRuneInString(a)
+		s, m := utf8.DecodeRuneInString(b)
+		if r != s {
+			return cmp.Compare(r, s)
+		}
+		a, b = a[n:], b[m:]
+	}
+	return cmp.Or(cmp.Compare(len(a), len(b)), whole)
+}
+
+// leadingNumber returns the digits that a text begins with, without zeros in
+// front of others, and the rest.
+func leadingNumber(s string) (digits, rest string) {
+	rest = strings.TrimLeft(s, "0123456789")
+	digits = s[:len(s)-len(rest)]
+	if n := strings.TrimLeft(digits, "0"); n != "" {
+		return n, rest
+	}
+	return digits, rest
 }
 
 // rebuild returns a field with other formals, whose arguments are in c, under

@@ -3,6 +3,8 @@ package expr
 import (
 	"context"
 	"math/big"
+	"slices"
+	"strings"
 
 	"example.org/closedform/algebra"
 )
@@ -89,28 +91,140 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 	return FunctionOf(n, "t", limits)
 }
 
-// FunctionOf converts a tree to a function of the variable.
+// FunctionOf converts a tree to a function of the variable. Where sums over named
+// roots hold exp(z*(t - c)), the function is held in the local time of c.
 func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
 	defer catchLimit(&err)
-	env := Env[algebra.Rat]{K: algebra.Q, Variable: variable, Limits: limits, Lookup: NoNames}
-	img, err := env.image(n)
+	f, err = functionOf(n, variable, nil, limits)
 	if err == nil {
-		return NewFunction[algebra.Rat](algebra.Q, variable, algebra.Rat{}, img), nil
+		return f, nil
+	}
+	if s, ok := n.(Sum); ok {
+		if g, ok := sumByRoots(s, variable, limits); ok {
+			return g, nil
+		}
+	}
+	if !hasRootSum(n) {
+		return f, err
+	}
+	if origin := originIn(n, variable); origin != nil {
+		if g, e := functionOf(n, variable, origin, limits); e == nil {
+			return g, nil
+		}
+	}
+	return f, err
+}
+
+// sumByRoots reads the terms of a sum in groups with the same square roots: each
+// group may be rational where all roots together are beyond the limit.
+func sumByRoots(s Sum, variable string, limits Limits) (Function, bool) {
+	var keys []string
+	groups := map[string][]Node{}
+	for _, t := range s.Terms {
+		key := strings.Join(rootsIn(t), " ")
+		if groups[key] == nil {
+			keys = append(keys, key)
+		}
+		groups[key] = append(groups[key], t)
+	}
+	if len(keys) < 2 {
+		return Function{}, false
+	}
+	var sum exact
+	for _, key := range keys {
+		f, err := functionOf(Add(groups[key]...), variable, nil, limits)
+		if err != nil || f.x.field() != nil {
+			return Function{}, false
+		}
+		if sum == nil {
+			sum = f.x
+		} else {
+			sum = sum.add(f.x)
+		}
+	}
+	return Function{variable, sum}, true
+}
+
+// rootsIn returns the radicands of the square roots in a tree, sorted.
+func rootsIn(n Node) []string {
+	var out []string
+	var visit func(n Node)
+	visit = func(n Node) {
+		if c, ok := n.(Call); ok && c.Func == "sqrt" {
+			if s := c.Arg.String(); !slices.Contains(out, s) {
+				out = append(out, s)
+			}
+		}
+		Children(n, func(c Node) bool {
+			visit(c)
+			return true
+		})
+	}
+	visit(n)
+	slices.Sort(out)
+	return out
+}
+
+// functionOf reads a tree in the local time of an origin, nil for 0.
+func functionOf(n Node, variable string, origin Node, limits Limits) (Function, error) {
+	x, err := readFunction[algebra.Rat](algebra.Q, NoNames, n, variable, origin, limits)
+	if err == nil {
+		return Function{variable, x}, nil
 	}
 	if !isIrrational(err) {
 		return Function{}, err
 	}
+	var f Function
 	_, err = Grow(NewConstants(namesIn(n, variable)...), func(k *Constants) error {
-		env := Env[Constant]{K: k, Variable: variable, Limits: limits, Lookup: k.Lookup}
-		img, err := env.image(n)
+		x, err := readFunction[Constant](k, k.Lookup, n, variable, origin, limits)
 		if err != nil {
 			return err
 		}
-		x, err := newOverField[Constant](k, k.Zero(), img, nil).simplest(context.Background())
-		f = Function{variable, x}
+		y, err := x.simplest(context.Background())
+		f = Function{variable, y}
 		return err
 	})
 	return f, err
+}
+
+func readFunction[E any](k algebra.Scalars[E], lookup func(Symbol) (E, error), n Node, variable string, origin Node, limits Limits) (*overField[E], error) {
+	env := Env[E]{K: k, Lookup: lookup, Limits: limits, Origin: k.Zero()}
+	if origin != nil {
+		var err error
+		if env.Origin, err = env.Scalar(origin); err != nil {
+			return nil, err
+		}
+		env.Local = true
+	}
+	env.Variable = variable
+	img, err := env.image(n)
+	if err != nil {
+		return nil, err
+	}
+	return newOverField(k, env.Origin, img, nil), nil
+}
+
+// originIn returns c where a sum over roots holds the time as a sum t - c, nil if
+// none does.
+func originIn(n Node, variable string) Node {
+	var origin Node
+	var visit func(n Node, inside bool)
+	visit = func(n Node, inside bool) {
+		if _, ok := n.(RootSum); ok {
+			inside = true
+		}
+		if s, ok := n.(Sum); ok && inside && origin == nil {
+			if t, ok := s.Terms[0].(Symbol); ok && t.Name == variable && len(s.Terms) == 2 {
+				origin = Negate(s.Terms[1])
+			}
+		}
+		Children(n, func(c Node) bool {
+			visit(c, inside)
+			return true
+		})
+	}
+	visit(n, false)
+	return origin
 }
 
 // NoNames is the Lookup of an Env over Q: no name has a rational value.
@@ -177,11 +291,12 @@ func (f Function) IsZero() bool { return f.over().isZero() }
 // Initial returns f at its origin, without the free constants.
 func (f Function) Initial() Node { return f.over().initial() }
 
-// Add returns f + g. It panics when the variables or the origins differ.
-// Functions over different fields are taken to one that holds both.
+// Add returns f + g. Functions over different fields are taken to one that holds
+// both, functions with different origins to the origin 0. It panics when the
+// variables differ, and where a sum over named roots has another origin than 0.
 func (f Function) Add(g Function) Function {
-	x, y := f.together(g)
-	if f.variable != g.variable || !x.sameOrigin(y) {
+	x, y, ok := f.together(g)
+	if f.variable != g.variable || !ok {
 		panic("expr: sum of functions in different times")
 	}
 	return f.with(x.add(y))
@@ -190,18 +305,39 @@ func (f Function) Add(g Function) Function {
 // Scale returns x f.
 func (f Function) Scale(x *big.Rat) Function { return f.with(f.over().scale(algebra.RatFromBig(x))) }
 
-// Sub returns f - g. It panics when the variables or the origins differ.
+// Sub returns f - g; see Add.
 func (f Function) Sub(g Function) Function { return f.Add(g.Scale(big.NewRat(-1, 1))) }
 
-// Equal tells whether f and g are the same function, in the same variable and
-// with the same origin.
+// Equal tells whether f and g are the same function, in the same variable. Sums
+// over named roots are compared in the same origin only.
 func (f Function) Equal(g Function) bool {
-	x, y := f.together(g)
-	return f.variable == g.variable && x.sameOrigin(y) && x.equal(y)
+	x, y, ok := f.together(g)
+	return f.variable == g.variable && ok && x.equal(y)
 }
 
-// together returns f and g over one field.
-func (f Function) together(g Function) (x, y exact) {
+// together returns f and g over one field and with one origin, if they have that.
+func (f Function) together(g Function) (x, y exact, ok bool) {
+	x, y = f.overOneField(g)
+	if x.sameOrigin(y) {
+		return x, y, true
+	}
+	if len(x.constants())+len(y.constants()) > 0 {
+		return x, y, false
+	}
+	a, err := functionOf(f.Node(), f.variable, nil, Limits{})
+	if err != nil {
+		return x, y, false
+	}
+	b, err := functionOf(g.Node(), g.variable, nil, Limits{})
+	if err != nil {
+		return x, y, false
+	}
+	x, y = a.overOneField(b)
+	return x, y, true
+}
+
+// overOneField returns f and g over one field.
+func (f Function) overOneField(g Function) (x, y exact) {
 	x, y = f.over(), g.over()
 	a, b := x.field(), y.field()
 	if a == b || a != nil && b != nil && a.FunctionField == b.FunctionField {

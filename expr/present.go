@@ -11,10 +11,21 @@ import (
 // Node returns f as a tree: the polynomial part, exponentials, and damped
 // sines and cosines with their coefficients in radicals, and sums over named
 // roots where a factor of the denominator has degree 3 or more. Slowly decaying
-// terms come first.
+// terms come first. In place of a form that is beyond the limits on terms there is
+// a symbol that says so, which does not read back.
 func (f Function) Node() Node { return f.over().node(f.variable) }
 
-func (f *overField[E]) node(variable string) Node {
+func (f *overField[E]) node(variable string) (n Node) {
+	defer func() {
+		if r := recover(); r != nil {
+			e, ok := r.(*algebra.LimitError)
+			if !ok {
+				panic(r)
+			}
+			// No name that anything reads.
+			n = Sym("(too long to be written: " + e.What + ")")
+		}
+	}()
 	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin, root: "z"}
 	w.time = w.timeNode()
 	if w.root = f.field().FreeName("z", "r"); w.root == variable {

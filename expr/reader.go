@@ -15,6 +15,9 @@ type Env[E any] struct {
 	// Lookup returns the value of a name, or an *Error that says why it has none.
 	Lookup func(Symbol) (E, error)
 	Limits Limits
+	// Local tells that functions are read in the local time variable - Origin.
+	Local  bool
+	Origin E
 }
 
 // Elementary converts a tree to a sum of elementary terms. The error, of type
@@ -98,7 +101,11 @@ func (r elementaryReader[E]) read(n Node) (Elementary[E], error) {
 		return r.constant(k.FromRat(v.Val)), nil
 	case Symbol:
 		if v.Name == r.env.Variable {
-			return Elementary[E]{k: k, terms: []elementaryTerm[E]{{1, k.Zero(), k.Zero(), k.One(), k.Zero()}}}, nil
+			t := Elementary[E]{k: k, terms: []elementaryTerm[E]{{1, k.Zero(), k.Zero(), k.One(), k.Zero()}}}
+			if r.env.Local {
+				t = t.Add(r.constant(r.env.Origin))
+			}
+			return t, nil
 		}
 		x, err := r.env.Lookup(v)
 		if err != nil {

@@ -68,7 +68,7 @@ func hasRootSum(n Node) bool {
 func (env Env[E]) rootSum(v RootSum, order *int) (Image[E], error) {
 	k := env.K
 	inner := env
-	inner.Variable = v.Var
+	inner.Variable, inner.Local = v.Var, false
 	lookup := env.Lookup
 	inner.Lookup = func(s Symbol) (E, error) {
 		if s.Name == env.Variable {
@@ -188,7 +188,11 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		case r.root:
 			return []rootTerm[E]{{c: r.l.Root()}}, nil
 		case r.env.Variable:
-			return []rootTerm[E]{{n: 1, c: r.l.One()}}, nil
+			t := []rootTerm[E]{{n: 1, c: r.l.One()}}
+			if r.env.Local && !r.env.K.IsZero(r.env.Origin) {
+				t = append(t, rootTerm[E]{c: r.l.FromBase(r.env.Origin)})
+			}
+			return t, nil
 		}
 		x, err := r.env.Lookup(v)
 		if err != nil {

@@ -4,7 +4,9 @@ import (
 	"context"
 	"fmt"
 	"math/big"
+	"strings"
 
+	"example.org/closedform/expr"
 	"example.org/closedform/linsys"
 )
 
@@ -88,6 +90,57 @@ func ExampleResponse_With() {
 	// 3*cos(2*t)
 }
 
+// Names without a value are symbols. The formula holds under conditions, and an
+// excluded case has a formula of its own.
+func ExampleResponse_When() {
+	ctx := context.Background()
+	model, _ := linsys.Read(`
+		depot' = -ka*depot              # a dose is absorbed and eliminated
+		body'  = ka*depot - ke*body
+		depot(0) = D;  body(0) = 0
+	`)
+	response, _ := model.ClosedForm(ctx)
+	_, conditions, _ := response.Conditions(ctx)
+	fmt.Println(response.State("body"), conditions)
+	equal, _ := response.When(ctx, "ka = ke")
+	fmt.Println(equal.State("body"))
+	// Output:
+	// ka*D/(ka - ke)*exp(-ke*t) - ka*D/(ka - ke)*exp(-ka*t) [ka != ke]
+	// ke*D*t*exp(-ke*t)
+}
+
+// Assumptions choose real forms and spare conditions.
+func ExampleModel_Assume() {
+	ctx := context.Background()
+	model, _ := linsys.Read("m*q'' + k*q = F; q(0) = 0; q'(0) = 0")
+	response, _ := model.ClosedForm(ctx)
+	of, formula, _ := response.Conditions(ctx)
+	fmt.Println(response.State("q"), of, formula)
+	model, _ = model.Assume("m > 0, k > 0")
+	response, _ = model.ClosedForm(ctx)
+	of, formula, _ = response.Conditions(ctx)
+	fmt.Println(response.State("q"), of, formula)
+	// Output:
+	// F/k - F/k*cos(sqrt(k/m)*t) [m != 0] [k != 0]
+	// F/k - F/k*cos(sqrt(k/m)*t) [] []
+}
+
+// Symbols get values later, numbers or expressions.
+func ExampleResponse_Substitute() {
+	ctx := context.Background()
+	model, _ := linsys.Read("T' = -T/tau + A*sin(2*pi*t/24 + phi)/tau; T(0) = 0")
+	response, _ := model.ClosedForm(ctx)
+	phase, _ := expr.Parse("pi/2", expr.Limits{})
+	special, _ := response.Substitute(ctx, map[string]expr.Node{"phi": phase, "tau": expr.Int(6)})
+	fmt.Println(special.State("T"))
+	special, _ = special.With(map[string]*big.Rat{"A": big.NewRat(5, 1)})
+	values, _ := special.At(ctx, big.NewRat(12, 1), 20)
+	fmt.Println(values)
+	// Output:
+	// 4*A/(pi^2 + 4)*cos(pi*t/12) + 2*pi*A/(pi^2 + 4)*sin(pi*t/12) - 4*A/(pi^2 + 4)*exp(-t/6)
+	// [-1.6371559712942356070]
+}
+
 // Second-order models come from their stiffness, damping and mass matrices.
 func ExampleFromMatrices() {
 	rats := func(x ...int64) []*big.Rat {
@@ -165,6 +218,43 @@ func ExampleResponse_GoSource() {
 	// 	c1 := math.Cos(2 * t)
 	// 	return ResponseState{
 	// 		X: e1 * c1,
+	// 	}
+	// }
+}
+
+// With symbols the function takes its parameters from a struct. The formulas
+// divide by ka - ke; the code is right, and accurate, for equal rates as well.
+func ExampleResponse_GoSource_symbols() {
+	model, _ := linsys.Read("x' = -ka*x; y' = ka*x - ke*y; x(0) = D; y(0) = 0")
+	response, _ := model.ClosedForm(context.Background())
+	src, _ := response.GoSource(context.Background(), linsys.GoOptions{Func: "Oral"})
+	_, rest, _ := strings.Cut(string(src), "// OralParams")
+	params, _, _ := strings.Cut(rest, "// Validate")
+	_, rest, _ = strings.Cut(rest, "// Oral returns")
+	code, _, _ := strings.Cut(rest, "\n\n")
+	fmt.Print("// OralParams", params, "// Oral returns", code)
+	// Output:
+	// // OralParams holds the parameters of the response.
+	// type OralParams struct {
+	// 	Ka float64 // ka
+	// 	Ke float64 // ke
+	// 	D  float64 // D
+	// }
+	//
+	// // Oral returns the states at the time t for parameters that are valid:
+	// //
+	// //	x = D*exp(-ka*t)
+	// //	y = ka*D/(ka - ke)*exp(-ke*t) - ka*D/(ka - ke)*exp(-ka*t)
+	// //
+	// // Where rates of these formulas coincide, or nearly do, the code still holds and
+	// // needs no case distinction.
+	// func Oral(p OralParams, t float64) OralState {
+	// 	rate1 := -p.Ka
+	// 	rate2 := -p.Ke
+	// 	diff1 := oralDivided(t, rate1, rate2)
+	// 	return OralState{
+	// 		X: p.D * diff1[0],
+	// 		Y: p.D * p.Ka * diff1[1],
 	// 	}
 	// }
 }
