@@ -176,7 +176,11 @@ func (f *FunctionField) shiftedNorm(ctx context.Context, h Poly[Fraction], c int
 		return f.rationalPoly(h), true, nil
 	}
 	moved := h.Translate(f.Mul(f.FromInt(-c), f.RootElement()))
-	n := f.rationalPoly(f.monic(f.norm(moved)))
+	norm, err := f.norm(ctx, moved)
+	if err != nil {
+		return Poly[Rat]{}, false, err
+	}
+	n := f.rationalPoly(f.monic(norm))
 	parts := SquareFree[Rat](Q, n)
 	return n, len(parts) == 1 && parts[0].Mult == 1, ctx.Err()
 }

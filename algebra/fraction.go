@@ -291,6 +291,18 @@ func (f *FunctionField) Add(x, y Fraction) Fraction {
 	return signed(num, den)
 }
 
+// Sum returns the sum of the elements, added in pairs, so that operands stay
+// short.
+func (f *FunctionField) Sum(x []Fraction) Fraction {
+	switch len(x) {
+	case 0:
+		return Fraction{}
+	case 1:
+		return x[0]
+	}
+	return f.Add(f.Sum(x[:len(x)/2]), f.Sum(x[len(x)/2:]))
+}
+
 func (f *FunctionField) Sub(x, y Fraction) Fraction { return f.Add(x, f.Neg(y)) }
 
 func (f *FunctionField) Neg(x Fraction) Fraction { return Fraction{num: x.num.Neg(), den: x.den} }
@@ -337,7 +349,15 @@ func (f *FunctionField) Inv(x Fraction) (Fraction, error) {
 	if !x.num.Uses(0) {
 		return signed(f.denominator(x), x.num), nil
 	}
-	chi := f.multiplication(x.num)
+	if p, ok := f.inRoot(x.num); ok && !f.surd {
+		m, _ := f.inRoot(f.mod)
+		_, u, _ := ExtendedGCD[Rat](Q, p, m)
+		return f.Mul(f.fromRoot(u), Fraction{num: f.denominator(x)}), nil
+	}
+	chi, err := f.multiplication(context.Background(), x.num)
+	if err != nil {
+		return Fraction{}, err
+	}
 	d := f.degree
 	sum := mpoly.ConstantWord(f.size(), 1)
 	for i := 1; i < d; i++ {
@@ -346,9 +366,36 @@ func (f *FunctionField) Inv(x Fraction) (Fraction, error) {
 	return f.over(mul(sum.Neg(), f.denominator(x)), chi.Coef(0)), nil
 }
 
+// inRoot returns a polynomial in a alone as one over Q.
+func (f *FunctionField) inRoot(p mpoly.Poly) (Poly[Rat], bool) {
+	for i := range f.names {
+		if p.Uses(i + 1) {
+			return Poly[Rat]{}, false
+		}
+	}
+	parts := p.Coefficients(0)
+	c := make([]Rat, len(parts))
+	for i, q := range parts {
+		c[i] = RatFromBigInt(q.ConstantTerm())
+	}
+	return NewPoly[Rat](Q, c...), true
+}
+
+// fromRoot is the inverse of inRoot, for degrees below that of a.
+func (f *FunctionField) fromRoot(p Poly[Rat]) Fraction {
+	ints, den := overZ(p)
+	terms := make([]mpoly.Term, len(ints))
+	for i, c := range ints {
+		exp := make([]int, f.size())
+		exp[0] = i
+		terms[i] = mpoly.Term{Coef: c, Exp: exp}
+	}
+	return f.over(mpoly.FromTerms(f.size(), terms), mpoly.Constant(f.size(), den))
+}
+
 // multiplication returns the characteristic polynomial of the multiplication by
 // p modulo the minimal polynomial of a, over the polynomials in the variables.
-func (f *FunctionField) multiplication(p mpoly.Poly) Poly[mpoly.Poly] {
+func (f *FunctionField) multiplication(ctx context.Context, p mpoly.Poly) (Poly[mpoly.Poly], error) {
 	r := polynomials{f.size()}
 	d := f.degree
 	columns := make([][]mpoly.Poly, d)
@@ -361,11 +408,7 @@ func (f *FunctionField) multiplication(p mpoly.Poly) Poly[mpoly.Poly] {
 		}
 	}
 	m := MatrixFromFunc[mpoly.Poly](r, d, d, func(i, j int) mpoly.Poly { return columns[j][i] })
-	chi, err := CharPoly(context.Background(), m)
-	if err != nil {
-		panic(err) // the context does not end
-	}
-	return chi
+	return CharPoly(ctx, m)
 }
 
 // polynomials is the ring of integer polynomials in n variables.

@@ -166,7 +166,11 @@ func (f *FunctionField) trager(ctx context.Context, p Poly[Fraction]) ([]Poly[Fr
 			return nil, err
 		}
 		shift := f.Mul(f.FromInt(c), f.RootElement())
-		_, factors, err := mpoly.FactorZ(ctx, f.norm(p.Translate(f.Neg(shift))))
+		norm, err := f.norm(ctx, p.Translate(f.Neg(shift)))
+		if err != nil {
+			return nil, err
+		}
+		_, factors, err := mpoly.FactorZ(ctx, norm)
 		if err != nil {
 			return nil, err
 		}
@@ -202,7 +206,7 @@ func nextShift(c int64) int64 {
 
 // norm returns a multiple by a polynomial in the variables of the norm over the
 // field without a of p, which is the determinant of the multiplication by p.
-func (f *FunctionField) norm(p Poly[Fraction]) mpoly.Poly {
+func (f *FunctionField) norm(ctx context.Context, p Poly[Fraction]) (mpoly.Poly, error) {
 	// The field with s as one more variable knows the same root.
 	ext := &FunctionField{names: append(append([]string(nil), f.names...), ""), degree: f.degree}
 	to := make([]int, f.size())
@@ -220,7 +224,11 @@ func (f *FunctionField) norm(p Poly[Fraction]) mpoly.Poly {
 		forth[j] = i
 	}
 	q := f.integral(p).Rename(ext.size(), forth)
-	return ext.multiplication(q).Coef(0).Rename(ext.size(), back)
+	chi, err := ext.multiplication(ctx, q)
+	if err != nil {
+		return mpoly.Poly{}, err
+	}
+	return chi.Coef(0).Rename(ext.size(), back), nil
 }
 
 // Roots isolates the complex roots of a square-free polynomial. It fails where
@@ -277,6 +285,11 @@ func (f *FunctionField) FromTerms(terms []Term) Fraction {
 
 // Uses tells whether the i-th variable occurs in x.
 func (f *FunctionField) Uses(x Fraction, i int) bool { return x.num.Uses(i+1) || x.den.Uses(i+1) }
+
+// DegreeIn returns the greater of the degrees of N and D in the i-th variable.
+func (f *FunctionField) DegreeIn(x Fraction, i int) int {
+	return max(x.num.Degree(i+1), x.den.Degree(i+1))
+}
 
 // Size returns the number of terms of N and D together.
 func (x Fraction) Size() int { return x.num.Len() + x.den.Len() }
@@ -352,17 +365,53 @@ func (f *FunctionField) factors(ctx context.Context, p mpoly.Poly, sign int) (Ra
 	return RatFromBigInt(content), out, nil
 }
 
-// Norm returns the norm of x over the field without the root a, x itself where
-// a does not occur.
-func (f *FunctionField) Norm(x Fraction) Fraction {
-	if !x.num.Uses(0) {
-		return x
+// Cancelled returns x as a quotient without common factors over Q(a): the
+// denominator of x itself is free of a, and may share such factors with the
+// numerator. Elements of more than most terms are returned as they are.
+func (f *FunctionField) Cancelled(x Fraction, most int) (num, den Fraction) {
+	num, den = f.Parts(x)
+	if !x.num.Uses(0) || x.Size() > most {
+		return num, den
 	}
-	n := Fraction{num: f.multiplication(x.num).Coef(0)}
-	if x.den.IsZero() {
-		return n
+	for i := range f.names {
+		if !den.num.Uses(i + 1) {
+			continue
+		}
+		p, q := f.inVariable(num, i), f.inVariable(den, i)
+		g := euclid[Fraction](f, p, q)
+		if g.Degree() < 1 {
+			continue
+		}
+		p, _ = p.DivExact(f, g)
+		q, _ = q.DivExact(f, g)
+		a, ok := f.fromVariable(p, i)
+		b, too := f.fromVariable(q, i)
+		if ok && too {
+			num, den = a, b
+		}
 	}
-	return f.over(n.num, x.den.Pow(f.degree))
+	return num, den
+}
+
+// inVariable returns a polynomial as one in the i-th variable.
+func (f *FunctionField) inVariable(x Fraction, i int) Poly[Fraction] {
+	parts := x.num.Coefficients(i + 1)
+	c := make([]Fraction, len(parts))
+	for j, p := range parts {
+		c[j] = Fraction{num: p}
+	}
+	return ownPoly[Fraction](f, c)
+}
+
+// fromVariable is the inverse of inVariable, where all coefficients are
+// polynomials up to a number.
+func (f *FunctionField) fromVariable(p Poly[Fraction], i int) (Fraction, bool) {
+	v := f.Variable(i)
+	sum := f.Zero()
+	for j := p.Degree(); j >= 0; j-- {
+		sum = f.Add(f.Mul(sum, v), p.Coef(j))
+	}
+	return sum, sum.den.IsZero() || sum.den.IsConstant()
 }
 
 // Map returns x with the element root of the field g in place of a and values[i]
@@ -396,7 +445,7 @@ func newMapping(g *FunctionField, values []Fraction) *mapping {
 }
 
 func (m *mapping) apply(p mpoly.Poly) Fraction {
-	sum := Fraction{}
+	var parts []Fraction
 	for t := range p.Terms() {
 		y := m.g.FromRat(RatFromBigInt(t.Coef))
 		for i, e := range t.Exp {
@@ -408,7 +457,7 @@ func (m *mapping) apply(p mpoly.Poly) Fraction {
 			}
 			y = m.g.Mul(y, m.powers[i][e])
 		}
-		sum = m.g.Add(sum, y)
+		parts = append(parts, y)
 	}
-	return sum
+	return m.g.Sum(parts)
 }

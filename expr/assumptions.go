@@ -93,7 +93,9 @@ func ParseRelations(src string, limits Limits) ([]Relation, error) {
 // the sign >, not negative for >=, not zero for !=. An assumption that cannot
 // hold is an error.
 func (c *Constants) assuming(x Constant, kind assumptionKind, at Pos) (*Constants, error) {
-	if sign, ok := c.Sign(x); ok && (sign < 0 || sign == 0 && kind != notNegative) {
+	sign, ok := c.Sign(x)
+	weak, decided := c.weakSign(x)
+	if ok && (sign < 0 || sign == 0 && kind != notNegative) || decided && weak < 0 && kind == isPositive {
 		return nil, Errorf(NeedsAssumption, at, "the assumption cannot hold")
 	}
 	out := *c

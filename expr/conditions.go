@@ -39,10 +39,16 @@ func (l *Conditions) Exclude(ctx context.Context, x Constant) error {
 
 // ExcludeDenominator enters what makes the denominator of x vanish.
 func (l *Conditions) ExcludeDenominator(ctx context.Context, x Constant) error {
-	if l.k.IsNumber(x) {
-		return nil
+	if err := ctx.Err(); err != nil || l.k.IsNumber(x) {
+		return err
 	}
 	d := l.k.shown.get(l.k)
+	if !x.HasRoot() {
+		// The numerator, which may be long, has a say only beside cosines and sines.
+		if den := d.denominator(x); !d.isTrigonometric(den) {
+			return l.exclude(ctx, d, den)
+		}
+	}
 	_, den := d.to.Parts(d.element(x))
 	return l.exclude(ctx, d, den)
 }

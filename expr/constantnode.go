@@ -233,54 +233,101 @@ func (c *Constants) powersInGenerators() [][]algebra.Rat {
 
 // element returns x in the field of the display, in which it is written.
 func (d *display) element(x Constant) algebra.Fraction {
-	num, den := x.Numerator(), x.Denominator()
-	// Half tangents are homogenised: with u = S/C, S = sin b/2 and C = cos b/2,
-	// u^i becomes S^i C^(n-i) in numerator and denominator, n even.
-	degrees := make([]int, len(d.from.formals))
-	for _, terms := range [][]algebra.Term{num, den} {
-		for _, t := range terms {
-			for i := range degrees {
-				degrees[i] = max(degrees[i], (t.Exp[i+1]+1)&^1)
+	if c := d.from; x.HasRoot() && x.Denominator() != nil {
+		if _, symbolic := c.Surd(); !symbolic {
+			if num, den := c.Cancelled(x, mostCancelled); den.HasRoot() {
+				return d.quotient(d.plain(num), d.plain(den))
 			}
 		}
 	}
-	y := d.polynomial(num, degrees)
-	if den == nil {
-		den = []algebra.Term{{Coef: big.NewInt(1), Exp: make([]int, len(degrees)+1)}}
-	}
-	inv, err := d.to.Inv(d.polynomial(den, degrees))
+	return d.plain(x)
+}
+
+// mostCancelled is the number of terms up to which factors over the algebraic
+// numbers are cancelled.
+const mostCancelled = 60
+
+func (d *display) quotient(x, y algebra.Fraction) algebra.Fraction {
+	inv, err := d.to.Inv(y)
 	if err != nil {
 		panic(err) // a denominator is not zero
 	}
-	return d.to.Mul(y, inv)
+	return d.to.Mul(x, inv)
 }
 
+// plain is element for a quotient as the field has it.
+func (d *display) plain(x Constant) algebra.Fraction {
+	return d.quotient(d.polynomial(x.Numerator(), d.degrees(x)), d.denominator(x))
+}
+
+// denominator returns the denominator of x up to a number.
+func (d *display) denominator(x Constant) algebra.Fraction {
+	den := x.Denominator()
+	if den == nil {
+		den = []algebra.Term{{Coef: big.NewInt(1), Exp: make([]int, len(d.from.formals)+1)}}
+	}
+	return d.polynomial(den, d.degrees(x))
+}
+
+// degrees returns the even degrees to which tangents of half angles are
+// homogenised: with u = S/C, S = sin b/2 and C = cos b/2, u^i becomes S^i C^(n-i)
+// in numerator and denominator.
+func (d *display) degrees(x Constant) []int {
+	degrees := make([]int, len(d.from.formals))
+	for i, f := range d.from.formals {
+		if f.kind == halfTangentFormal {
+			degrees[i] = (d.from.DegreeIn(x, i) + 1) &^ 1
+		}
+	}
+	return degrees
+}
+
+// polynomial returns 2^(n/2) times a polynomial, n the sum of the degrees.
 func (d *display) polynomial(terms []algebra.Term, degrees []int) algebra.Fraction {
 	f := d.to
-	sum := f.Zero()
-	for _, t := range terms {
-		y := f.FromRat(algebra.RatFromBigInt(t.Coef))
+	if d.root == nil && slices.Max(append(degrees, 0)) == 0 {
+		return f.FromTerms(d.renamed(terms))
+	}
+	parts := make([]algebra.Fraction, len(terms))
+	for k, t := range terms {
+		exp := make([]int, len(d.vars)+1)
+		for i, formal := range d.from.formals {
+			if formal.kind != halfTangentFormal {
+				exp[d.images[i]+1] = t.Exp[i+1]
+			}
+		}
+		y := f.FromTerms([]algebra.Term{{Coef: t.Coef, Exp: exp}})
 		if d.root != nil {
 			y = f.Mul(y, d.root[t.Exp[0]])
 		}
 		for i, formal := range d.from.formals {
-			e := t.Exp[i+1]
 			if formal.kind != halfTangentFormal {
-				y = f.Mul(y, power(f, f.Variable(d.images[i]), e))
 				continue
 			}
-			// S^2 = (1 - cos b)/2, C^2 = (1 + cos b)/2, S C = sin b/2
-			half := f.FromRat(algebra.NewRat(1, 2))
+			// 2 S^2 = 1 - cos b, 2 C^2 = 1 + cos b, 2 S C = sin b
+			e := t.Exp[i+1]
 			cos, sin := f.Variable(d.images[i]), f.Variable(d.images[i]+1)
-			if e%2 == 1 {
-				y = f.Mul(y, f.Mul(half, sin))
-			}
-			y = f.Mul(y, power(f, f.Mul(half, f.Sub(f.One(), cos)), e/2))
-			y = f.Mul(y, power(f, f.Mul(half, f.Add(f.One(), cos)), (degrees[i]-e)/2))
+			y = f.Mul(y, power(f, sin, e%2))
+			y = f.Mul(y, power(f, f.Sub(f.One(), cos), e/2))
+			y = f.Mul(y, power(f, f.Add(f.One(), cos), (degrees[i]-e)/2))
 		}
-		sum = f.Add(sum, y)
+		parts[k] = y
 	}
-	return sum
+	return f.Sum(parts)
+}
+
+// renamed returns terms free of the root and of tangents in the variables of the
+// display.
+func (d *display) renamed(terms []algebra.Term) []algebra.Term {
+	out := make([]algebra.Term, len(terms))
+	for k, t := range terms {
+		exp := make([]int, len(d.vars)+1)
+		for i := range d.from.formals {
+			exp[d.images[i]+1] = t.Exp[i+1]
+		}
+		out[k] = algebra.Term{Coef: t.Coef, Exp: exp}
+	}
+	return out
 }
 
 func power(f *algebra.FunctionField, x algebra.Fraction, n int) algebra.Fraction {

@@ -88,6 +88,7 @@ func NewConstants(names ...string) *Constants {
 func (c *Constants) build() *algebra.FunctionField {
 	names := make([]string, len(c.formals))
 	values := make([]func(uint) algebra.Ball, len(c.formals))
+	number := c.numbers()
 	for i, f := range c.formals {
 		switch f.kind {
 		case symbolFormal:
@@ -96,12 +97,12 @@ func (c *Constants) build() *algebra.FunctionField {
 			names[i], values[i] = "pi", algebra.Pi
 		case expFormal:
 			names[i] = fmt.Sprintf("exp#%d", i)
-			if c.IsNumber(f.arg) {
+			if number[i] {
 				values[i] = func(prec uint) algebra.Ball { return c.Enclose(f.arg, prec+16).Exp(prec) }
 			}
 		case halfTangentFormal:
 			names[i] = fmt.Sprintf("tan#%d", i)
-			if c.IsNumber(f.arg) {
+			if number[i] {
 				values[i] = func(prec uint) algebra.Ball {
 					sin, cos := c.Enclose(f.arg, prec+16).MulPow2(-1).SinCos(prec)
 					return sin.Quo(cos, prec)
@@ -110,6 +111,37 @@ func (c *Constants) build() *algebra.FunctionField {
 		}
 	}
 	return algebra.NewFunctionField(names, values)
+}
+
+// numbers tells which formals stand for numbers: pi, and functions of what is
+// free of symbols.
+func (c *Constants) numbers() []bool {
+	number := make([]bool, len(c.formals))
+	for i, f := range c.formals {
+		number[i] = f.kind != symbolFormal
+	}
+	for changed := true; changed; {
+		changed = false
+		for i, f := range c.formals {
+			if !number[i] || f.kind == piFormal {
+				continue
+			}
+			parts := []Constant{f.arg}
+			if f.arg.HasRoot() {
+				if surd, ok := c.Surd(); ok {
+					parts = append(parts, surd)
+				}
+			}
+			for j := range c.formals {
+				for _, x := range parts {
+					if number[i] && !number[j] && c.Uses(x, j) {
+						number[i], changed = false, true
+					}
+				}
+			}
+		}
+	}
+	return number
 }
 
 // growth is the error of a constant that is not in the field: it carries the
@@ -189,6 +221,9 @@ func (c *Constants) SymbolsIn(elements ...Constant) []string {
 	used := make([]bool, len(c.formals))
 	var visit func(x Constant)
 	visit = func(x Constant) {
+		if surd, ok := c.Surd(); ok && x.HasRoot() {
+			visit(surd)
+		}
 		for i, f := range c.formals {
 			if !used[i] && c.Uses(x, i) {
 				used[i] = true

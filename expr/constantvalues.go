@@ -318,15 +318,28 @@ func (c *Constants) cosPi(r algebra.Rat, at Pos) (Constant, error) {
 		}
 		return c.NthRoot(c.Mul(half, c.Add(c.One(), double)), 2, at)
 	}
-	if a, b, ok := splitFraction(r, den); ok && den%2 == 0 && den%4 != 2 || ok && den%15 == 0 {
-		ca, sa, err := c.cosSinPi(a, at)
-		if err != nil {
-			return ca, err
-		}
-		cb, sb, err := c.cosSinPi(b, at)
-		return c.Sub(c.Mul(ca, cb), c.Mul(sa, sb)), err
+	// A sum of angles with smaller denominators; where the denominator is twice an
+	// odd number, by the complement, whose denominator is that.
+	turned := den%4 == 2
+	if turned {
+		r, den = algebra.NewRat(1, 2).Sub(r), den/2
 	}
-	return c.cosine(r, at)
+	a, b, ok := splitFraction(r, den)
+	if !ok {
+		if turned {
+			r = algebra.NewRat(1, 2).Sub(r)
+		}
+		return c.cosine(r, at)
+	}
+	ca, sa, err := c.cosSinPi(a, at)
+	if err != nil {
+		return ca, err
+	}
+	cb, sb, err := c.cosSinPi(b, at)
+	if turned {
+		return c.Add(c.Mul(sa, cb), c.Mul(ca, sb)), err
+	}
+	return c.Sub(c.Mul(ca, cb), c.Mul(sa, sb)), err
 }
 
 // splitFraction writes r, with the denominator d, as a sum of fractions with

@@ -10,7 +10,6 @@ import (
 	"sort"
 	"strconv"
 	"strings"
-	"unicode"
 
 	"example.org/closedform/algebra"
 )
@@ -21,6 +20,8 @@ type GoOptions struct {
 	Func    string // default "Response", and the type of its result is FuncState
 	// Doc holds lines for the comment at the top, such as the model.
 	Doc []string
+	// Conditions holds what the model divides by, for functions with symbols.
+	Conditions *Conditions
 }
 
 // GoSource writes a Go function that evaluates the named functions at a time,
@@ -29,6 +30,15 @@ type GoOptions struct {
 // for all functions; polynomials in time are in Horner's form. Free constants
 // become an array argument. It panics when the variables or origins of the
 // functions differ.
+//
+// Symbols become the fields of a struct FuncParams, the first argument, whose
+// method Validate returns an error for a field that is not a finite number and
+// for a condition or an assumption that does not hold; the source then imports
+// errors too. It is accurate where rates coincide or nearly do: images are
+// expanded in Newton's basis and evaluated by divided differences of the
+// exponential (A. McCurdy, K. C. Ng, B. N. Parlett, Accurate computation of
+// divided differences of the exponential function, Math. Comp. 43, 1984), entire
+// functions of the square of a frequency, and exponentials of block matrices.
 func GoSource(ctx context.Context, names []string, fs []Function, constants []string, opt GoOptions) ([]byte, error) {
 	if opt.Package == "" {
 		opt.Package = "response"
@@ -50,6 +60,11 @@ func GoSource(ctx context.Context, names []string, fs []Function, constants []st
 	if len(names) != len(fs) {
 		panic(fmt.Sprintf("expr: Go source of %d functions with %d names", len(fs), len(names)))
 	}
+	for _, f := range fs {
+		if len(f.Parameters()) > 0 {
+			return symbolSource(ctx, names, fs, constants, opt)
+		}
+	}
 	if len(fs) == 0 || fs[0].over().field() == nil {
 		return goSource[algebra.Rat](ctx, names, fs, constants, opt)
 	}
@@ -62,9 +77,6 @@ func goSource[E any](ctx context.Context, names []string, fs []Function, constan
 		x, ok := f.over().(*overField[E])
 		if !ok || f.variable != fs[0].variable || len(g.fs) > 0 && !x.sameOrigin(g.fs[0]) {
 			panic("expr: Go source of functions in different times or over different fields")
-		}
-		if names := f.Parameters(); len(names) > 0 {
-			return nil, Errorf(NeedsAssumption, Pos{}, "the symbol %s has no value", names[0])
 		}
 		g.k = x.k
 		g.fs = append(g.fs, x)
@@ -398,40 +410,18 @@ func (g *goWriter[E]) file(fs []Function, bodies []string) string {
 	if len(fs) > 0 {
 		variable = fs[0].variable
 	}
-	line("// Package %s evaluates a closed-form response.", g.opt.Package)
-	for i, d := range g.opt.Doc {
-		if i == 0 {
-			line("//")
-		}
-		line("//\t%s", inert(d))
-	}
-	line("package %s\n", g.opt.Package)
+	goHead(line, g.opt)
 	all := strings.Join(bodies, " ")
 	used := g.factors(all)
 	if len(used) > 0 {
 		line("import \"math\"\n")
 	}
 	line("// %s holds the values of the states at one time.", state)
-	line("type %s struct {", state)
 	fields := goNames(g.names)
-	for i, f := range fields {
-		line("%s float64 // %s", f, inert(g.names[i]))
-	}
-	line("}\n")
+	goStruct(line, state, fields, g.names)
 	line("// %s returns the states at the time %s:", g.opt.Func, inert(variable))
 	line("//")
-	for i, f := range fs {
-		formula := f.String()
-		if len(formula) > mostComment {
-			formula = fmt.Sprintf("(a formula of %d characters)", len(formula))
-		}
-		for j, l := range wrap(inert(g.names[i]+" = "+formula), 96) {
-			if j > 0 {
-				l = "    " + l
-			}
-			line("//\t%s", l)
-		}
-	}
+	goFormulas(line, g.names, fs)
 	g.warn(fields, line)
 	arg := ""
 	if n := len(g.constants); n > 0 {
@@ -513,79 +503,15 @@ func (g *goWriter[E]) times(x float64) string {
 
 // usesName tells whether an identifier occurs in an expression.
 func usesName(src, name string) bool {
-	for i := strings.Index(src, name); i >= 0; {
-		end := i + len(name)
-		if end == len(src) || !isNamePart(rune(src[end])) {
-			return true
-		}
-		next := strings.Index(src[end:], name)
-		if next < 0 {
+	for at := 0; ; {
+		i := strings.Index(src[at:], name)
+		if i < 0 {
 			return false
 		}
-		i = end + next
+		start, end := at+i, at+i+len(name)
+		if (start == 0 || !isNamePart(rune(src[start-1]))) && (end == len(src) || !isNamePart(rune(src[end]))) {
+			return true
+		}
+		at = start + 1
 	}
-	return false
-}
-
-// inert keeps a text on its line: what does not print is escaped, and so is the
-// plus sign of what could be taken for a build constraint.
-func inert(s string) string {
-	s = strings.ReplaceAll(s, "+build", `\+build`)
-	var b strings.Builder
-	for _, r := range s {
-		if unicode.IsPrint(r) {
-			b.WriteRune(r)
-		} else {
-			b.WriteString(strings.Trim(strconv.QuoteRune(r), "'"))
-		}
-	}
-	return b.String()
-}
-
-// wrap breaks a text at blanks into lines of about the given width.
-func wrap(s string, width int) []string {
-	var lines []string
-	for len(s) > width {
-		i := strings.LastIndex(s[:width], " ")
-		if i <= 0 {
-			if i = strings.Index(s[width:], " "); i < 0 {
-				break
-			}
-			i += width
-		}
-		lines = append(lines, s[:i])
-		s = s[i+1:]
-	}
-	return append(lines, s)
-}
-
-// goNames turns names into exported Go identifiers without collisions.
-func goNames(names []string) []string {
-	used := map[string]bool{}
-	out := make([]string, len(names))
-	for i, name := range names {
-		var b strings.Builder
-		upper := true
-		for _, r := range name {
-			switch {
-			case !unicode.IsLetter(r) && !unicode.IsDigit(r):
-				upper = true
-			case upper:
-				b.WriteRune(unicode.ToUpper(r))
-				upper = false
-			default:
-				b.WriteRune(r)
-			}
-		}
-		id := b.String()
-		if first := []rune(id + "0")[0]; !unicode.IsUpper(first) {
-			id = "X" + id
-		}
-		for n := 2; used[id]; n++ {
-			id = fmt.Sprintf("%s_%d", strings.TrimRight(id, "_0123456789"), n)
-		}
-		used[id] = true
-		out[i] = id
-	}
-	return out
 }

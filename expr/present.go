@@ -305,8 +305,8 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 //	e^(ht) (a(t) cosh wt + b(t) root sinh wt)        for the sign 1
 //
 // and 1/root in place of root where over is set; or for d > 0 the sum of
-// (u + v r) e^((h + r) t) over r = +-w. Where the sign of d is not decided, over
-// is set, and either sign will do.
+// (u + v r) e^((h + r) t) over r = +-w. Where the sign of d is not decided, either
+// sign will do: both are even functions of w.
 type quadraticPart[E any] struct {
 	h, c    E
 	root    Node
@@ -324,10 +324,7 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 	q := quadraticPart[E]{h: h}
 	q.sign, q.decided = w.weakSign(d)
 	if !q.decided {
-		q.sign = 1
-		if k.Negative(d) {
-			q.sign = -1
-		}
+		q.sign = w.typicalSign(d)
 	}
 	size := d
 	if q.sign < 0 {
@@ -351,24 +348,31 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 	}
 	// b root = (b root^2)/root
 	_, number := k.Rational(q.square)
-	if over := q.b.Scale(q.square); !q.decided || !number && w.simpler(over, q.b) {
+	if over := q.b.Scale(q.square); !number && w.simpler(over, q.b) {
 		q.b, q.over = over, true
 	}
 	return q
 }
 
 // simpler tells whether the coefficients of p are written shorter than those of
-// q.
+// q; of long ones the size decides.
 func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
 	size := func(p algebra.Poly[E]) int {
 		n := 0
 		for _, c := range p.Coefs() {
-			n += len(w.Node(c).String())
+			if bits := bitLen(w.k, c); bits > longCoefficient {
+				n += bits
+			} else {
+				n += len(w.Node(c).String())
+			}
 		}
 		return n
 	}
 	return size(p) < size(q)
 }
+
+// longCoefficient is the size in bits of what counts as long.
+const longCoefficient = 400
 
 // times returns x root as one quotient.
 func (w presenter[E]) times(x E, root Node) Node {

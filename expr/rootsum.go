@@ -2,6 +2,7 @@ package expr
 
 import (
 	"context"
+	"errors"
 	"strconv"
 
 	"example.org/closedform/algebra"
@@ -32,6 +33,25 @@ func (env Env[E]) sumImage(n Node, order *int) (Image[E], error) {
 			return f, err
 		}
 		return f.Scale(env.K.FromInt(-1)), nil
+	case Product:
+		return env.multiple(v.Factors, order)
+	case Quotient:
+		if hasRootSum(v.Den) {
+			break
+		}
+		f, err := env.sumImage(v.Num, order)
+		if err != nil {
+			return f, err
+		}
+		c, err := env.constant(v.Den)
+		if err != nil {
+			return f, err
+		}
+		inv, err := env.K.Inv(c)
+		if err != nil {
+			return f, Errorf(Singular, v.Den.Pos(), "division by zero: %s vanishes", Quote(v.Den.String()))
+		}
+		return f.Scale(inv), nil
 	case Sum:
 		sum := ZeroImage(env.K)
 		for _, t := range v.Terms {
@@ -47,6 +67,38 @@ func (env Env[E]) sumImage(n Node, order *int) (Image[E], error) {
 		return sum, nil
 	}
 	return Image[E]{}, Errorf(OutsideClass, n.Pos(), "a sum over named roots stands alone or in a sum")
+}
+
+// multiple returns the image of a sum over roots times constants.
+func (env Env[E]) multiple(factors []Node, order *int) (Image[E], error) {
+	c := env.K.One()
+	var sum Node
+	for _, f := range factors {
+		if hasRootSum(f) {
+			if sum != nil {
+				return Image[E]{}, Errorf(OutsideClass, f.Pos(), "a product of sums over named roots")
+			}
+			sum = f
+			continue
+		}
+		x, err := env.constant(f)
+		if err != nil {
+			return Image[E]{}, err
+		}
+		c = env.K.Mul(c, x)
+	}
+	f, err := env.sumImage(sum, order)
+	return f.Scale(c), err
+}
+
+// constant reads a factor of a sum over roots.
+func (env Env[E]) constant(n Node) (E, error) {
+	x, err := env.Scalar(n)
+	var e *Error
+	if errors.As(err, &e) && e.Kind == OutsideClass && !isIrrational(err) {
+		return x, Errorf(OutsideClass, n.Pos(), "a sum over named roots is multiplied by constants only")
+	}
+	return x, err
 }
 
 func beyondOrder(l Limits, at Pos) *Error {

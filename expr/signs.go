@@ -43,6 +43,9 @@ func (c *Constants) signOf(x Constant, weak bool) (int, bool) {
 		t, too := c.signOf(den, false)
 		return s * t, ok && too
 	}
+	if sign, ok := c.assumedSign(x); ok {
+		return sign, true
+	}
 	r, factors, err := c.Factors(context.Background(), x)
 	if err != nil {
 		return 0, false
@@ -59,6 +62,30 @@ func (c *Constants) signOf(x Constant, weak bool) (int, bool) {
 		}
 	}
 	return sign, true
+}
+
+// assumedSign returns the sign of x where x is an assumed expression times a
+// square.
+func (c *Constants) assumedSign(x Constant) (int, bool) {
+	for _, a := range c.assumed.list {
+		if a.kind != isPositive || a.p.HasRoot() {
+			continue
+		}
+		r, factors, err := c.Factors(context.Background(), c.quotient(x, a.p))
+		if err != nil {
+			continue
+		}
+		if !slices.ContainsFunc(factors, func(f algebra.Power) bool { return f.Exp%2 != 0 || !c.onlyIn(f.Base, a.p) }) {
+			return r.Sign(), true
+		}
+	}
+	return 0, false
+}
+
+// onlyIn tells whether p is a factor of an expression that does not vanish.
+func (c *Constants) onlyIn(p, whole Constant) bool {
+	_, factors, err := c.Factors(context.Background(), whole)
+	return err == nil && slices.ContainsFunc(factors, func(f algebra.Power) bool { return c.Equal(f.Base, p) })
 }
 
 // factorNotZero tells whether an irreducible polynomial is known not to vanish.
@@ -101,9 +128,15 @@ func (c *Constants) polynomialSign(p Constant, weak bool, depth int) (int, bool)
 			return r.Sign(), true
 		}
 	}
+	// What is known of single symbols may be enough, and the steps replace some of
+	// it.
 	known := c.knowledge(depth == 0)
-	q, ok := known.apply(p)
-	if ok {
+	if _, symbolic := c.Surd(); !symbolic || !p.HasRoot() {
+		if sign, ok := c.termwiseSign(p, &signKnowledge{c: c, state: known.plain}, weak); ok {
+			return sign, true
+		}
+	}
+	if q, ok := known.apply(p); ok {
 		if sign, ok := c.termwiseSign(q, known, weak); ok {
 			return sign, true
 		}
@@ -178,7 +211,8 @@ next:
 // has put an expression in the place of one.
 type signKnowledge struct {
 	c     *Constants
-	state []int
+	plain []int // before the steps
+	state []int // after them
 	steps []signStep
 }
 
@@ -214,6 +248,7 @@ func (c *Constants) knowledge(exponentials bool) *signKnowledge {
 			known = append(known, a)
 		}
 	}
+	k.plain = slices.Clone(k.state)
 	replaced := map[int]bool{}
 	for _, a := range known {
 		p, ok := k.apply(a.p)

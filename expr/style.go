@@ -18,6 +18,8 @@ type style[E any] interface {
 	Sign(x E) (int, bool)
 	// weakSign is Sign for numbers that may be 0 as well: 1 says x >= 0.
 	weakSign(x E) (int, bool)
+	// typicalSign is a sign to expect where none is decided, never 0.
+	typicalSign(x E) int
 	// Compare is a total order of the elements.
 	Compare(x, y E) int
 	// approximate returns a number for the order of terms.
@@ -42,6 +44,7 @@ func (rationalStyle) Node(x algebra.Rat) Node              { return Num(x) }
 func (rationalStyle) Content(x ...algebra.Rat) algebra.Rat { return contentOfRats(x...) }
 func (rationalStyle) Sign(x algebra.Rat) (int, bool)       { return x.Sign(), true }
 func (rationalStyle) weakSign(x algebra.Rat) (int, bool)   { return x.Sign(), true }
+func (rationalStyle) typicalSign(x algebra.Rat) int        { return x.Sign() }
 func (rationalStyle) Compare(x, y algebra.Rat) int         { return x.Compare(y) }
 func (rationalStyle) approximate(x algebra.Rat) float64    { return x.Float64() }
 func (rationalStyle) sqrt(x algebra.Rat) (algebra.Rat, Node) {
@@ -77,6 +80,28 @@ func (c *Constants) approximate(x Constant) float64 {
 		return float64(sign)
 	}
 	return -1
+}
+
+// typicalSign is the sign for symbols that all have the value 1/2.
+func (c *Constants) typicalSign(x Constant) int {
+	values := make([]Constant, len(c.formals))
+	for i, f := range c.formals {
+		values[i] = c.FromRat(algebra.NewRat(1, 2))
+		if f.kind == piFormal {
+			values[i] = c.Variable(i)
+		}
+	}
+	if !x.HasRoot() {
+		if y, err := c.Map(x, c.FunctionField, Constant{}, values); err == nil {
+			if sign, ok := c.FunctionField.Sign(y); ok && sign != 0 {
+				return sign
+			}
+		}
+	}
+	if c.Negative(x) {
+		return -1
+	}
+	return 1
 }
 
 // sqrt takes the squares out of x.
@@ -153,11 +178,14 @@ func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E]) []Node {
 	case 2:
 		h, d := quadraticRoots(k, p)
 		sign, decided := w.weakSign(d)
+		if !decided {
+			sign = w.typicalSign(d)
+		}
 		if sign < 0 {
 			d = k.Neg(d)
 		}
 		c, root := w.sqrt(d)
-		if !decided || sign >= 0 {
+		if sign >= 0 {
 			return []Node{w.surd(h, k.Neg(c), root), w.surd(h, c, root)}
 		}
 		root = Mul(root, Sym("i"))

@@ -105,8 +105,8 @@ func ExampleResponse_When() {
 	equal, _ := response.When(ctx, "ka = ke")
 	fmt.Println(equal.State("body"))
 	// Output:
-	// ka*D/(ka - ke)*exp(-ke*t) - ka*D/(ka - ke)*exp(-ka*t) [ka != ke]
-	// ke*D*t*exp(-ke*t)
+	// D*ka/(ka - ke)*exp(-ke*t) - D*ka/(ka - ke)*exp(-ka*t) [ka != ke]
+	// D*ke*t*exp(-ke*t)
 }
 
 // Assumptions choose real forms and spare conditions.
@@ -225,7 +225,7 @@ func ExampleResponse_GoSource() {
 // With symbols the function takes its parameters from a struct. The formulas
 // divide by ka - ke; the code is right, and accurate, for equal rates as well.
 func ExampleResponse_GoSource_symbols() {
-	model, _ := linsys.Read("x' = -ka*x; y' = ka*x - ke*y; x(0) = D; y(0) = 0")
+	model, _ := linsys.Read("x' = -ka*x; y' = ka*x - ke*y; x(0) = 1; y(0) = 0")
 	response, _ := model.ClosedForm(context.Background())
 	src, _ := response.GoSource(context.Background(), linsys.GoOptions{Func: "Oral"})
 	_, rest, _ := strings.Cut(string(src), "// OralParams")
@@ -238,13 +238,12 @@ func ExampleResponse_GoSource_symbols() {
 	// type OralParams struct {
 	// 	Ka float64 // ka
 	// 	Ke float64 // ke
-	// 	D  float64 // D
 	// }
 	//
 	// // Oral returns the states at the time t for parameters that are valid:
 	// //
-	// //	x = D*exp(-ka*t)
-	// //	y = ka*D/(ka - ke)*exp(-ke*t) - ka*D/(ka - ke)*exp(-ka*t)
+	// //	x = exp(-ka*t)
+	// //	y = ka/(ka - ke)*exp(-ke*t) - ka/(ka - ke)*exp(-ka*t)
 	// //
 	// // Where rates of these formulas coincide, or nearly do, the code still holds and
 	// // needs no case distinction.
@@ -253,8 +252,8 @@ func ExampleResponse_GoSource_symbols() {
 	// 	rate2 := -p.Ke
 	// 	diff1 := oralDivided(t, rate1, rate2)
 	// 	return OralState{
-	// 		X: p.D * diff1[0],
-	// 		Y: p.D * p.Ka * diff1[1],
+	// 		X: diff1[0],
+	// 		Y: p.Ka * diff1[1],
 	// 	}
 	// }
 }
