@@ -27,8 +27,10 @@
 //
 // A ring is a value of type [Ring], a field one of type [Field]: [Q] is the
 // field of rational numbers, [NewExtension] makes the field K[s]/(p) of a field
-// K, and of that another one if need be. Elements are bare data ([Rat],
-// [Poly]), and the domain adds, multiplies and inverts them. A [Poly] or
+// K, and of that another one if need be; [NewFunctionField] makes Q(a)(x1, ...,
+// xn), the rational functions in named variables, some of which may stand for
+// numbers such as pi, over a real algebraic number a. Elements are bare data
+// ([Rat], [Poly], [Fraction]), and the domain adds, multiplies and inverts them. A [Poly] or
 // [Matrix] carries the ring of its entries; that two operands have the same one
 // is the caller's promise. Functions that divide take a Field. [Scalars] is
 // what a field must offer beyond that to hold the coefficients of a model.
@@ -64,9 +66,12 @@
 //
 // # Limits
 //
-// Polynomials are dense and in one variable; fields have characteristic 0.
-// Factors and roots are found over Q only. Over other fields elimination is
-// plain and coefficients may grow. Memory is the only bound on the size of
+// Polynomials are dense and in one variable, save for the numerators and
+// denominators of a [FunctionField], which are sparse and in several; fields have
+// characteristic 0. Over fields other than Q elimination is plain and
+// coefficients may grow; operations of a FunctionField on too large operands
+// panic with a *[LimitError], which [CatchLimit] turns into an error. Otherwise
+// memory is the only bound on the size of
 // numbers, save for text: [ParseRat] reads up to 65536 bytes and exponents of
 // up to five digits. [SqrtParts] finds the squares of primes below 2^16.
 //
@@ -89,6 +94,11 @@
 // Mathematik 40 (1982). Roots: O. Aberth, Iteration methods for finding all
 // zeros of a polynomial simultaneously, Math. Comp. 27 (1973), certified by
 // B. Smith, Error bounds for zeros of a polynomial based upon Gerschgorin's
-// theorems, J. ACM 17 (1970). Balls: J. van der Hoeven, Ball arithmetic,
+// theorems, J. ACM 17 (1970). Several variables: W. Brown, On Euclid's algorithm
+// and the computation of polynomial greatest common divisors, J. ACM 18 (1971);
+// R. Zippel, Probabilistic algorithms for sparse polynomials, EUROSAM 1979;
+// P. Wang, An improved multivariate polynomial factoring algorithm, Math.
+// Comp. 32 (1978). Algebraic numbers: B. Trager, Algebraic factoring and rational
+// function integration, SYMSAC 1976. Balls: J. van der Hoeven, Ball arithmetic,
 // Logical Approaches to Barriers in Computing and Complexity, 2010.
 package algebra

@@ -26,8 +26,9 @@
 // [Parse] and [ParseModel] read text into trees, [Node], and place every error
 // in it. [Env.Elementary] takes a tree to a sum of elementary terms t^n e^(at)
 // (c cos bt + s sin bt), [Elementary], and its method Image to the canonical
-// form. A [Function] is an image over the rational numbers with the name of its
-// variable; most users need no other type. [Function.At] gives digits, each of
+// form. A [Function] is an image with the name of its variable, over the rational
+// numbers or over a field [Constants] of numbers and symbols; most users need no
+// other type. [Function.At] gives digits, each of
 // them proven, and a [Bundle] the values of several functions at once.
 // [Function.Node] chooses the way a function is written; [LaTeX], [MathML] and
 // the String methods of nodes write any tree, and [GoSource] writes functions
@@ -36,8 +37,8 @@
 // # The text form
 //
 // What String writes, Parse reads as the same tree or one that is written the
-// same. ParseFunction reads the text of a function as the same function, unless
-// a square root occurs in it or its origin is not 0.
+// same. ParseFunction reads the text of a function as the same function. What is
+// beyond it are forms with two square roots of expressions in symbols.
 //
 //	model     = { [ equation | "independent" name ] ( newline | ";" ) }
 //	equation  = expr "=" expr
@@ -67,13 +68,14 @@
 // line and column (in characters) of the term at fault, its message says what
 // to do. Of the kinds this package itself uses Syntax, UnknownFunction,
 // OutsideClass, Singular, SideConditions (a free constant without a value),
-// LimitExceeded and Cancelled. [Limits] bounds what a text may ask for, so that
+// NeedsAssumption (a symbol without one), LimitExceeded and Cancelled. [Limits] bounds what a text may ask for, so that
 // a slip such as 10^10^10 costs an error and not the machine. Work that can
 // take long has a context, whose end is an Error of kind Cancelled.
 //
-// Coefficients and rates are rational numbers so far: other symbols, pi,
-// irrational square roots, step and impulse are read into trees, but not into
-// functions.
+// Coefficients and rates are numbers and symbols. pi, roots of numbers, a square
+// root of an expression in symbols, and e^a, cos(b), sin(b) of constants are
+// exact: numbers of a field that grows until it holds them ([Constants], [Grow]).
+// step and impulse are read into trees, but not into functions.
 //
 // Nodes, images and functions are immutable, and safe for concurrent use.
 // Names may hold anything: whatever they are, LaTeX, markup and Go source stay

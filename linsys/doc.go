@@ -8,8 +8,8 @@
 // from matrices ([FromMatrix], [FromMatrices]). Equations may be of any order
 // and implicit in the highest derivatives; algebraic relations between the
 // states are allowed. The input f is a sum of products of polynomials,
-// exponentials, sines and cosines. Coefficients and data are rational numbers,
-// read exactly (0.35 is 7/20).
+// exponentials, sines and cosines. Coefficients and data are numbers, read exactly
+// (0.35 is 7/20), pi and roots among them, and symbols: names without a value.
 //
 // [Model.ClosedForm] returns a [Response]: every state as an [expr.Function],
 // the transient part (complementary function) and the steady part (particular
@@ -19,10 +19,20 @@
 //
 // Outside the class are nonlinear models, coefficients that depend on time,
 // inputs such as 1/t or exp(t^2). They get an [Error] whose kind and place say
-// what is at fault. Symbols, pi, irrational roots, switched inputs and
-// boundary conditions get one as well, of kind [expr.OutsideClass]; so does what
-// brings in constants such as e^2 or cos(1): a phase angle, or exponential and
-// oscillating inputs with data at a time other than 0.
+// what is at fault. Switched inputs and boundary conditions get one as well, of
+// kind [expr.OutsideClass].
+//
+// # Symbols
+//
+// A response with symbols is right identically in them: the images it is held in
+// have no exceptional cases but those of the model, such as a mass that is 0. The
+// formulas it is written in may have: [Response.Conditions] returns both kinds.
+// [Response.With] and [Response.Substitute] give symbols values, numbers or
+// expressions, through the images, and so are right where a formula is not;
+// [Response.When] presents an excluded case afresh. [Model.Assume] takes
+// inequalities that spare conditions and choose real forms; where the sign of a
+// square root's argument stays open, the form that is written holds for either,
+// and [Response.Remarks] says so.
 //
 // # Method
 //
