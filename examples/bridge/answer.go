@@ -66,6 +66,9 @@ func answer(ctx context.Context, req request) (object, error) {
 		return nil, err
 	}
 	o.add("conditions", append(append([]string{}, ofModel...), ofFormulas...))
+	if remarks := r.Remarks(); len(remarks) > 0 {
+		o.add("remarks", remarks)
+	}
 	return o, nil
 }
 

@@ -409,3 +409,39 @@ func TestDeterministic(t *testing.T) {
 		require.Equal(t, first, exchange(t, plain, request))
 	}
 }
+
+// Symbols stay in the formulas; set gives values through the images, in the
+// excluded cases of the formulas too.
+func TestSymbols(t *testing.T) {
+	chain := "x' = -ka*x\ny' = ka*x - ke*y\nx(0) = D\ny(0) = 0"
+	r, line := ask(t, fields{"model": chain, "at": []string{"1"}, "set": fields{"ka": "1", "ke": 1, "D": "exp(1)"}, "digits": 30})
+	require.Nil(t, r.Error, line)
+	require.Equal(t, "D*ka/(ka - ke)*exp(-ke*t) - D*ka/(ka - ke)*exp(-ka*t)", r.Solution["y"].Text)
+	require.Contains(t, line, `"conditions":["ka != ke"]`)
+	require.Contains(t, line, `"values":[{"t":"1","x":"1.00000000000000000000000000000","y":"1.00000000000000000000000000000"}]`)
+
+	r, line = ask(t, fields{"model": chain, "assume": []string{"ka > ke > 0"}})
+	require.Nil(t, r.Error, line)
+	require.Contains(t, line, `"conditions":[]`)
+
+	oscillator := "m*x'' + k*x = F\nx(0) = 0\nx'(0) = 0"
+	r, line = ask(t, fields{"model": oscillator, "want": []string{"text", "modes"}})
+	require.Nil(t, r.Error, line)
+	require.Contains(t, line, `"conditions":["m != 0","k != 0"],"remarks":["the formula holds for either sign of k/m:`)
+	require.Contains(t, line, `{"factor":"s^2 + k/m","multiplicity":1,"roots":[{"exact":"sqrt(k/m)*i"},{"exact":"-sqrt(k/m)*i"}]}`)
+
+	for _, c := range []struct {
+		set     fields
+		kind    string
+		message string
+	}{
+		{fields{"m": 0, "k": 1, "F": 1}, "singular", "m != 0"},
+		{fields{"m": 1, "F": 1}, "needs an assumption", "k has no value"},
+		{fields{"q": 1}, "outside the class of inputs", "q"},
+	} {
+		r, line := ask(t, fields{"model": oscillator, "at": []string{"1"}, "set": c.set})
+		require.NotNil(t, r.Error, line)
+		require.Equal(t, c.kind, r.Error.Kind)
+		require.Contains(t, r.Error.Message, c.message)
+	}
+}

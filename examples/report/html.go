@@ -53,6 +53,7 @@ type htmlPage struct {
 	Digits                                     int
 	Proof, From, To, Why, Caution              string
 	Oscillates                                 bool
+	Conditions, Symbols                        []string
 	Plots                                      []htmlPlot
 }
 
@@ -64,6 +65,7 @@ func (r *report) html() (string, error) {
 		Equations: r.equations(m.Equations()), Definitions: r.equations(m.Definitions()), Sides: r.equations(m.SideConditions()),
 		Constants: r.response.Constants(), Variable: formula(expr.Sym(m.Variable())), Digits: valueDigits,
 		Solution: r.functions(r.response.State), Transient: r.functions(r.response.Transient), Steady: r.functions(r.response.Steady),
+		Conditions: r.conditions, Symbols: r.response.Parameters(),
 		Proof: r.proofText(), Caution: caution, Oscillates: oscillates(r.modes),
 	}
 	last := 0

@@ -28,7 +28,7 @@ func (r *report) latex() string {
 	if list := m.SideConditions(); len(list) > 0 {
 		w.line("and the side conditions")
 		w.inline(list)
-	} else if !r.general() {
+	} else if len(r.response.Constants()) == 0 {
 		w.line("There are no side conditions, and the equations leave no constant free.")
 	} else {
 		w.line("There are no side conditions: the solution is the general one, with the free constants $%s$. It has no values and no plots.",
@@ -37,6 +37,12 @@ func (r *report) latex() string {
 	r.latexModes(w)
 	w.line(`\section*{Response}`)
 	w.functions(r, r.response.State)
+	if len(r.conditions) > 0 {
+		w.line("These formulas hold for $%s$.", strings.Join(mapped(r.conditions, conditionLaTeX), "$, $"))
+	}
+	if names := r.response.Parameters(); len(names) > 0 {
+		w.line("The symbols $%s$ have no values; there are no plots.", strings.Join(mapped(names, expr.LaTeXName), "$, $"))
+	}
 	w.line(`\section*{Transient part}`)
 	w.line("The complementary function: what the modes contribute.")
 	w.functions(r, r.response.Transient)
@@ -201,6 +207,16 @@ func (w *texWriter) functions(r *report, of func(string) expr.Function) {
 		w.equation(expr.Sym(name), of(name).Node())
 	}
 	w.endEquations()
+}
+
+// conditionLaTeX writes a condition such as k1 != k2, and one in words as it is.
+func conditionLaTeX(s string) string {
+	list, err := expr.ParseRelations(s, unlimited)
+	if err != nil || len(list) != 1 {
+		return `\text{` + s + `}`
+	}
+	sign := map[string]string{"!=": `\neq`, ">=": `\geq`, ">": ">"}[list[0].Op]
+	return expr.LaTeX(list[0].Left) + " " + sign + " " + expr.LaTeX(list[0].Right)
 }
 
 func (r *report) latexModes(w texWriter) {

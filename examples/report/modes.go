@@ -20,6 +20,7 @@ type modeRow struct {
 	exact        exactRoot
 	re, im       string // decimals; im is not negative
 	sigma, omega float64
+	symbolic     string // the exact eigenvalue where it holds symbols
 }
 
 // modeRows returns the rows of the table of modes.
@@ -29,6 +30,16 @@ func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 		for _, x := range m.Roots {
 			row := modeRow{factor: i + 1, factorNode: m.Factor, multiplicity: m.Multiplicity}
 			var err error
+			if !x.IsNumber() {
+				row.symbolic = x.String()
+				if m.Degree <= 2 {
+					if row.exact, err = newExactRoot(row.symbolic, false); err != nil {
+						return nil, err
+					}
+				}
+				rows = append(rows, row)
+				continue
+			}
 			if row.re, row.im, err = roots.Decimals(ctx, x, rootDigits); err != nil {
 				return nil, err
 			}
@@ -88,6 +99,8 @@ var unlimited = expr.Limits{Text: math.MaxInt32, Bits: math.MaxInt32, Terms: mat
 // decimal writes the eigenvalue, or the pair.
 func (m modeRow) decimal() string {
 	switch {
+	case m.symbolic != "":
+		return ""
 	case m.omega == 0:
 		return m.re
 	case m.sigma == 0:
@@ -123,6 +136,8 @@ func (m modeRow) period() string {
 // remark says what the numbers mean.
 func (m modeRow) remark() string {
 	switch {
+	case m.symbolic != "":
+		return "depends on the symbols"
 	case m.sigma > 0:
 		return "grows"
 	case m.sigma == 0 && m.omega > 0:

@@ -30,13 +30,15 @@ type report struct {
 	response *linsys.Response
 	goSource []byte
 	modes    []modeRow
-	window   window
-	values   []valueRow
-	curves   []curve
-	short    *shortener // shared by the files, so that they use the same names
+	// conditions are those of the model, then those of the formulas.
+	conditions []string
+	window     window
+	values     []valueRow
+	curves     []curve
+	short      *shortener // shared by the files, so that they use the same names
 }
 
-// general tells whether constants are free: then there are no values.
+// general tells whether constants or symbols are free: then there are no values.
 func (r *report) general() bool { return len(r.response.Constants())+len(r.response.Parameters()) > 0 }
 
 // valueRow holds the states at one time.
@@ -65,6 +67,11 @@ func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error)
 	if r.goSource, err = r.response.GoSource(ctx, linsys.GoOptions{Package: "response"}); err != nil {
 		return nil, err
 	}
+	ofModel, ofFormulas, err := r.response.Conditions(ctx)
+	if err != nil {
+		return nil, err
+	}
+	r.conditions = append(ofModel, ofFormulas...)
 	if r.modes, err = modeRows(ctx, r.response.Modes()); err != nil {
 		return nil, err
 	}

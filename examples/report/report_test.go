@@ -254,6 +254,19 @@ func TestValuesOfBuiltInModel(t *testing.T) {
 	}
 }
 
+// With symbols there are formulas and conditions, and no values.
+func TestSymbols(t *testing.T) {
+	dir, printed, err := runOn(t, "m*x'' + k*x = F\nx(0) = 0\nx'(0) = 0\n")
+	require.NoError(t, err)
+	page := read(t, dir, "report.html")
+	checkHTML(t, page)
+	checkTeX(t, dir)
+	require.Contains(t, page, "<code>m != 0</code>, <code>k != 0</code>")
+	require.Contains(t, page, "depends on the symbols")
+	require.Contains(t, read(t, dir, "report.tex"), `$m \neq 0$, $k \neq 0$`)
+	require.Contains(t, printed, "none: the symbols F, k, m have none")
+}
+
 func TestGeneralSolution(t *testing.T) {
 	dir, printed, err := runOn(t, "x'''' + 4x'' + 2x = 3\ny' = -x + cos(t)\n")
 	require.NoError(t, err)

@@ -94,7 +94,7 @@ func (r *report) summary(w io.Writer, dir string, files []written) error {
 			line("", "and %d more", len(r.modes)-mostModes)
 			break
 		}
-		s := m.decimal()
+		s := m.decimal() + m.symbolic
 		if m.sigma != 0 {
 			s += ", time constant " + m.timeConstant()
 		}
@@ -112,9 +112,15 @@ func (r *report) summary(w io.Writer, dir string, files []written) error {
 	} else {
 		line("proof", "does not hold")
 	}
-	if r.general() {
+	switch {
+	case len(r.response.Parameters()) > 0:
+		line("values", "none: the symbols %s have none", some(r.response.Parameters(), 8))
+		for _, c := range r.conditions {
+			line("holds for", "%s", c)
+		}
+	case r.general():
 		line("values", "none: without side conditions the solution is general, with %s", some(r.response.Constants(), 8))
-	} else {
+	default:
 		end := r.values[len(r.values)-1]
 		largest, at := -1.0, 0
 		for i, v := range end.values {
