@@ -245,7 +245,7 @@ func (d *display) element(x Constant) algebra.Fraction {
 
 // mostCancelled is the number of terms up to which factors over the algebraic
 // numbers are cancelled.
-const mostCancelled = 60
+const mostCancelled = 24
 
 func (d *display) quotient(x, y algebra.Fraction) algebra.Fraction {
 	inv, err := d.to.Inv(y)

@@ -20,19 +20,26 @@ type localPart[E any] struct {
 func (f Image[E]) local(i int) localPart[E] {
 	pp := f.den[i]
 	l := algebra.NewExtension[E](f.k, pp.p, "z")
-	// p(L + h) = h q(h); with Q the other factors, the series is N/(q^e Q) h^-e.
+	// p(L + h) = h q(h); with Q the other factors, the series is N/(q^e Q) h^-e. One
+	// factor is divided by after another, so that what cancels does so early.
 	series := func(p algebra.Poly[E], skip int) []algebra.Poly[E] {
 		return taylor(l, p, skip, pp.e)
 	}
-	d := []algebra.Poly[E]{l.One()}
+	one := append([]algebra.Poly[E]{l.One()}, make([]algebra.Poly[E], pp.e-1)...)
+	g := series(f.num, 0)
 	for j, other := range f.den {
 		skip := 0
 		if j == i {
 			skip = 1
 		}
-		d = mulSeries(l, d, powSeries(l, series(other.p, skip), other.e, pp.e), pp.e)
+		inv := divSeries(l, one, series(other.p, skip), pp.e)
+		for range other.e {
+			g = mulSeries(l, g, inv, pp.e)
+		}
 	}
-	g := divSeries(l, series(f.num, 0), d, pp.e)
+	for len(g) < pp.e {
+		g = append(g, l.Zero())
+	}
 	c := make([]algebra.Poly[E], pp.e)
 	fact := f.k.One()
 	for k := range c {
@@ -120,20 +127,6 @@ func mulSeries[E any](l *algebra.Extension[E], a, b []algebra.Poly[E], n int) []
 	}
 	for len(out) > 0 && out[len(out)-1].IsZero() {
 		out = out[:len(out)-1]
-	}
-	return out
-}
-
-// powSeries returns the first n coefficients of a^e, e >= 1.
-func powSeries[E any](l *algebra.Extension[E], a []algebra.Poly[E], e, n int) []algebra.Poly[E] {
-	out := []algebra.Poly[E]{l.One()}
-	for ; e > 0; e >>= 1 {
-		if e&1 == 1 {
-			out = mulSeries(l, out, a, n)
-		}
-		if e > 1 {
-			a = mulSeries(l, a, a, n)
-		}
 	}
 	return out
 }

@@ -357,18 +357,22 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 // simpler tells whether the coefficients of p are written shorter than those of
 // q; of long ones the size decides.
 func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
-	size := func(p algebra.Poly[E]) int {
-		n := 0
+	size := func(p algebra.Poly[E]) (bits int) {
 		for _, c := range p.Coefs() {
-			if bits := bitLen(w.k, c); bits > longCoefficient {
-				n += bits
-			} else {
-				n += len(w.Node(c).String())
-			}
+			bits += bitLen(w.k, c)
+		}
+		return bits
+	}
+	length := func(p algebra.Poly[E]) (n int) {
+		for _, c := range p.Coefs() {
+			n += len(w.Node(c).String())
 		}
 		return n
 	}
-	return size(p) < size(q)
+	if a, b := size(p), size(q); max(a, b) > longCoefficient {
+		return a < b
+	}
+	return length(p) < length(q)
 }
 
 // longCoefficient is the size in bits of what counts as long.

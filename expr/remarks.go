@@ -8,8 +8,9 @@ func (f Function) Remarks() []string {
 	return f.over().remarks()
 }
 
-func (f *overField[E]) remarks() []string {
-	var out []string
+func (f *overField[E]) remarks() (out []string) {
+	var limit error
+	defer catchLimit(&limit) // what is too long to be written needs no remark
 	w := presenter[E]{k: f.k, style: styleOf(f.k)}
 	for _, m := range f.images() {
 		for i, pp := range m.den {

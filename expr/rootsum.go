@@ -3,6 +3,7 @@ package expr
 import (
 	"context"
 	"errors"
+	"slices"
 	"strconv"
 
 	"example.org/closedform/algebra"
@@ -232,6 +233,13 @@ func (r rootBody[E]) outside(n Node) error {
 }
 
 func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
+	if _, isCall := n.(Call); isCall && !r.mentions(n) {
+		x, err := r.env.Scalar(n)
+		if err != nil {
+			return nil, err
+		}
+		return []rootTerm[E]{{c: r.l.FromBase(x)}}, nil
+	}
 	switch v := n.(type) {
 	case Number:
 		return []rootTerm[E]{{c: r.l.FromBase(r.env.K.FromRat(v.Val))}}, nil
@@ -323,6 +331,11 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		return []rootTerm[E]{{exps: 1, c: r.l.One()}}, nil
 	}
 	return nil, r.outside(n)
+}
+
+// mentions tells whether the root or the time occurs in n.
+func (r rootBody[E]) mentions(n Node) bool {
+	return slices.ContainsFunc(Names(n), func(name string) bool { return name == r.root || name == r.env.Variable })
 }
 
 func (r rootBody[E]) readProduct(factors []Node) ([]rootTerm[E], error) {

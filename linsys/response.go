@@ -218,6 +218,10 @@ func (r *Response) Conditions(ctx context.Context) (model, formula []string, err
 	for _, list := range [][]expr.Function{r.states, r.transient, r.steady} {
 		for _, f := range list {
 			c, err := f.Conditions(ctx)
+			var e *Error
+			if errors.As(err, &e) && e.Kind == expr.LimitExceeded {
+				return m.Strings(), []string{"the formulas are too long to be written"}, nil
+			}
 			if err != nil {
 				return nil, nil, wrapCancel(err)
 			}
