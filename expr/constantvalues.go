@@ -12,7 +12,7 @@ func (c *Constants) Exp(x Constant, at Pos) (Constant, error) {
 	if c.IsZero(x) {
 		return c.One(), nil
 	}
-	coefs, _, err := c.combine(x, expFormal, at)
+	coefs, _, err := c.combine(x, expFormal)
 	if err != nil {
 		return Constant{}, err
 	}
@@ -33,7 +33,7 @@ func (c *Constants) Exp(x Constant, at Pos) (Constant, error) {
 // Cos returns cos x. The error may be a growth. At a rational multiple of pi the
 // sine is not taken into the field.
 func (c *Constants) Cos(x Constant, at Pos) (Constant, error) {
-	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	coefs, turns, err := c.combine(x, halfTangentFormal)
 	if err != nil {
 		return Constant{}, err
 	}
@@ -49,7 +49,7 @@ func (c *Constants) Cos(x Constant, at Pos) (Constant, error) {
 // Sin returns sin x. The error may be a growth. At a rational multiple of pi the
 // cosine is not taken into the field.
 func (c *Constants) Sin(x Constant, at Pos) (Constant, error) {
-	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	coefs, turns, err := c.combine(x, halfTangentFormal)
 	if err != nil {
 		return Constant{}, err
 	}
@@ -67,7 +67,7 @@ func (c *Constants) CosSin(x Constant, at Pos) (cos, sin Constant, err error) {
 	if c.IsZero(x) {
 		return c.One(), c.Zero(), nil
 	}
-	coefs, turns, err := c.combine(x, halfTangentFormal, at)
+	coefs, turns, err := c.combine(x, halfTangentFormal)
 	if err != nil {
 		return cos, sin, err
 	}
@@ -118,13 +118,15 @@ func (c *Constants) power(x Constant, n int64) (Constant, error) {
 	return out, nil
 }
 
-// mostMultiple bounds the multiples of an exponent or an angle.
-const mostMultiple = 200
+// mostMultiple bounds the multiples and the parts of another exponent or angle as
+// which one is taken; beyond, as for the angles 0.7853 and 1.2341, it counts as
+// independent.
+const mostMultiple = 64
 
-// combine writes x as a combination with integer coefficients of the arguments
-// of the formals of one kind, and for angles of a rational multiple of pi. Where
-// that needs another formal, or finer ones, the error is a growth.
-func (c *Constants) combine(x Constant, kind formalKind, at Pos) (coefs []int64, turns algebra.Rat, err error) {
+// combine writes x as a combination with small integer coefficients of the
+// arguments of the formals of one kind, and for angles of a rational multiple of
+// pi. Where that needs another formal, or finer ones, the error is a growth.
+func (c *Constants) combine(x Constant, kind formalKind) (coefs []int64, turns algebra.Rat, err error) {
 	var places []int
 	var args []Constant
 	for i, f := range c.formals {
@@ -137,7 +139,15 @@ func (c *Constants) combine(x Constant, kind formalKind, at Pos) (coefs []int64,
 		places, args = append(places, pi), append(args, c.Variable(pi))
 	}
 	coefs = make([]int64, len(c.formals))
-	r, ok := c.linear(x, args)
+	r, ok := c.multiple(x, args)
+	if !ok {
+		r, ok = c.linear(x, args)
+	}
+	for j, i := range places {
+		if ok && i != pi && !isSmall(r[j]) {
+			ok = false
+		}
+	}
 	if !ok {
 		if kind == halfTangentFormal && pi >= 0 {
 			x = c.withoutMultiple(x, pi)
@@ -150,26 +160,39 @@ func (c *Constants) combine(x Constant, kind formalKind, at Pos) (coefs []int64,
 			turns = r[j]
 			continue
 		}
-		n, integer := r[j].Int64()
-		if integer {
-			if coefs[i] = n; abs(n) > mostMultiple {
-				return nil, turns, Errorf(LimitExceeded, at, "a multiple of more than %d of another exponent or angle", mostMultiple)
-			}
+		if n, integer := r[j].Int64(); integer {
+			coefs[i] = n
 			continue
 		}
 		if finer == nil {
 			finer = append(finer, c.formals...)
 		}
 		d := algebra.RatFromBigInt(r[j].Den())
-		if n, small := d.Int64(); !small || n > mostMultiple {
-			return nil, turns, Errorf(LimitExceeded, at, "a fraction with a denominator of more than %d of another exponent or angle", mostMultiple)
-		}
 		finer[i].arg = c.Mul(c.FromRat(d.Inv()), finer[i].arg)
 	}
 	if finer != nil {
 		return nil, turns, &growth{c.refined(finer)}
 	}
 	return coefs, turns, nil
+}
+
+// isSmall tells whether numerator and denominator are at most mostMultiple.
+func isSmall(r algebra.Rat) bool {
+	n, okN := algebra.RatFromBigInt(r.Num()).Int64()
+	d, okD := algebra.RatFromBigInt(r.Den()).Int64()
+	return okN && okD && abs(n) <= mostMultiple && d <= mostMultiple
+}
+
+// multiple returns r with x = r[j] args[j], for one j, where a small r[j] does it.
+func (c *Constants) multiple(x Constant, args []Constant) ([]algebra.Rat, bool) {
+	for j, y := range args {
+		if q, ok := c.Rational(c.quotient(x, y)); ok && isSmall(q) {
+			r := make([]algebra.Rat, len(args))
+			r[j] = q
+			return r, true
+		}
+	}
+	return nil, false
 }
 
 // withoutMultiple returns x without its term in pi alone.
@@ -233,8 +256,8 @@ func (c *Constants) refined(finer []formal) *Constants {
 	})
 }
 
-// linear returns rational numbers r with x = r[0] args[0] + r[1] args[1] + ...,
-// for args that are independent over Q.
+// linear returns rational numbers r with x = r[0] args[0] + r[1] args[1] + ...;
+// args that depend on those before them have the coefficient 0.
 func (c *Constants) linear(x Constant, args []Constant) ([]algebra.Rat, bool) {
 	all := append(append([]Constant(nil), args...), x)
 	_, den := c.Parts(c.Content(all...))
@@ -260,12 +283,12 @@ func (c *Constants) linear(x Constant, args []Constant) ([]algebra.Rat, bool) {
 	if err != nil {
 		panic(err) // the context does not end
 	}
-	if k := len(ech.Pivots); k != len(args) || k > 0 && ech.Pivots[k-1] == len(args) {
-		return nil, false
-	}
 	r := make([]algebra.Rat, len(args))
-	for i := range r {
-		r[i] = ech.Rows.At(i, len(args))
+	for i, p := range ech.Pivots {
+		if p == len(args) {
+			return nil, false
+		}
+		r[p] = ech.Rows.At(i, len(args))
 	}
 	return r, true
 }

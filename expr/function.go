@@ -39,6 +39,7 @@ type exact interface {
 	parameters() []string
 	exclude(ctx context.Context, l *Conditions) error
 	remarks() []string
+	decimal(ctx context.Context, variable string, form DecimalForm) (Node, error)
 	simplest(ctx context.Context) (exact, error)
 	mapped(ctx context.Context, to *Constants, m *mapping) (exact, error)
 	digits(ctx context.Context, t *big.Rat, digits int) (string, error)

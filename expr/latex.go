@@ -165,6 +165,18 @@ func (l latex) number(x algebra.Rat) piece {
 	return piece{`\frac{` + x.Num().String() + "}{" + x.Den().String() + "}", precProduct}
 }
 
+func (latex) decimal(mantissa, exponent string) piece {
+	if exponent == "" {
+		return piece{mantissa, precAtom}
+	}
+	if mantissa != "1" {
+		mantissa += ` \cdot `
+	} else {
+		mantissa = ""
+	}
+	return piece{mantissa + `10^{` + strings.TrimPrefix(exponent, "+") + "}", precProduct}
+}
+
 func (latex) symbol(name string) piece { return piece{LaTeXName(name), precAtom} }
 
 func (l latex) value(name string, order int, at string) piece {

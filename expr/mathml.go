@@ -39,6 +39,18 @@ func (m mathml) number(x algebra.Rat) piece {
 	return m.quotient(piece{num, precAtom}, piece{"<mn>" + x.Den().String() + "</mn>", precAtom})
 }
 
+func (m mathml) decimal(mantissa, exponent string) piece {
+	n := piece{"<mn>" + mantissa + "</mn>", precAtom}
+	if exponent == "" {
+		return n
+	}
+	ten := m.power(piece{"<mn>10</mn>", precAtom}, piece{"<mn>" + strings.ReplaceAll(strings.TrimPrefix(exponent, "+"), "-", "−") + "</mn>", precAtom})
+	if mantissa == "1" {
+		return ten
+	}
+	return piece{n.text + "<mo>⋅</mo>" + ten.text, precProduct}
+}
+
 // markup escapes what has a meaning in MathML and HTML.
 var markup = strings.NewReplacer("&", "&amp;", "<", "&lt;", ">", "&gt;", `"`, "&quot;", "'", "&#39;")
 

@@ -2,8 +2,8 @@ package expr
 
 import "example.org/closedform/algebra"
 
-// Node is an expression tree. The set of node types is closed: Number, Symbol,
-// Value, Sum, Product, Quotient, Power, Neg, Call and RootSum. Trees are
+// Node is an expression tree. The set of node types is closed: Number, Decimal,
+// Symbol, Value, Sum, Product, Quotient, Power, Neg, Call, RootSum and Matrix. Trees are
 // immutable and may share parts.
 type Node interface {
 	// Pos returns the place of the node in the text it was read from.

@@ -99,6 +99,8 @@ func (r elementaryReader[E]) read(n Node) (Elementary[E], error) {
 	switch v := n.(type) {
 	case Number:
 		return r.constant(k.FromRat(v.Val)), nil
+	case Decimal:
+		return r.constant(k.FromRat(v.Val())), nil
 	case Symbol:
 		if v.Name == r.env.Variable {
 			t := Elementary[E]{k: k, terms: []elementaryTerm[E]{{1, k.Zero(), k.Zero(), k.One(), k.Zero()}}}
@@ -172,6 +174,8 @@ func (r elementaryReader[E]) read(n Node) (Elementary[E], error) {
 		return r.call(v)
 	case RootSum:
 		return zero, Errorf(OutsideClass, v.Pos(), "a sum over named roots is a result, not an input")
+	case Matrix:
+		return zero, Errorf(OutsideClass, v.Pos(), "a matrix has no value that is a number")
 	}
 	panic("expr: unknown node")
 }

@@ -1,5 +1,7 @@
 package expr
 
+import "slices"
+
 // Children calls visit for every child of n in source order, until it returns
 // false.
 func Children(n Node, visit func(Node) bool) {
@@ -27,5 +29,7 @@ func Children(n Node, visit func(Node) bool) {
 		each(v.Arg)
 	case RootSum:
 		each(v.Poly, v.Body)
+	case Matrix:
+		each(slices.Concat(v.Rows...)...)
 	}
 }

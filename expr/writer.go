@@ -25,7 +25,8 @@ type piece struct {
 // recursion, and where parentheses are needed, is the same for all of them.
 // A new way of writing is one file with one notation.
 type notation interface {
-	number(x algebra.Rat) piece // x >= 0
+	number(x algebra.Rat) piece              // x >= 0
+	decimal(mantissa, exponent string) piece // exponent of ten, "" for none
 	symbol(name string) piece
 	value(name string, order int, at string) piece // at is "" for the function itself
 	// sum joins terms; minus[i] tells that term i is subtracted.
@@ -36,6 +37,7 @@ type notation interface {
 	power(base, exp piece) piece
 	call(fn string, arg piece) piece
 	rootSum(v, poly string, body piece) piece
+	matrix(cells [][]string) string // in parentheses of its own
 	paren(x string) string
 	exponent() notation // the notation inside an exponent
 }
@@ -62,6 +64,9 @@ func write(n Node, w notation) piece {
 			return piece{w.neg(write(Num(v.Val.Neg()), w).text), precNeg}
 		}
 		return w.number(v.Val)
+	case Decimal:
+		mantissa, exponent, _ := strings.Cut(v.Text, "e")
+		return w.decimal(mantissa, exponent)
 	case Symbol:
 		return w.symbol(v.Name)
 	case Value:
@@ -113,6 +118,8 @@ func write(n Node, w notation) piece {
 		return w.call(v.Func, write(v.Arg, w))
 	case RootSum:
 		return w.rootSum(v.Var, write(v.Poly, w).text, write(v.Body, w))
+	case Matrix:
+		return writeMatrix(v, w)
 	}
 	panic("expr: unknown node")
 }
@@ -136,6 +143,13 @@ func (text) number(x algebra.Rat) piece {
 		return piece{x.String(), precAtom}
 	}
 	return piece{x.String(), precProduct}
+}
+
+func (text) decimal(mantissa, exponent string) piece {
+	if exponent != "" {
+		mantissa += "e" + exponent
+	}
+	return piece{mantissa, precAtom}
 }
 
 func (text) symbol(name string) piece { return piece{name, precAtom} }
