@@ -64,6 +64,9 @@ func (f *FunctionField) gcdPoly(p, q Poly[Fraction]) Poly[Fraction] {
 	}
 	a, b := f.integral(p), f.integral(q)
 	if a.Uses(1) || b.Uses(1) {
+		if !f.surd && f.coprimeModulo(p, q) {
+			return Constant[Fraction](f, f.One())
+		}
 		return euclid[Fraction](f, p, q)
 	}
 	return f.monic(gcd(a, b))
@@ -160,6 +163,9 @@ func (f *FunctionField) Compare(x, y Fraction) int {
 func (f *FunctionField) trager(ctx context.Context, p Poly[Fraction]) ([]Poly[Fraction], error) {
 	if p.Degree() == 1 {
 		return []Poly[Fraction]{p}, nil
+	}
+	if simple, err := f.irreducibleAt(ctx, p); err != nil || simple {
+		return []Poly[Fraction]{p}, err
 	}
 	for c := int64(0); ; c = nextShift(c) {
 		if err := ctx.Err(); err != nil {

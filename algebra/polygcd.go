@@ -63,6 +63,10 @@ func SquareFree[E any](f Field[E], p Poly[E]) []Factor[E] {
 	if s, ok := any(f).(squareFreer[E]); ok {
 		return s.squareFree(p)
 	}
+	return yun(f, p)
+}
+
+func yun[E any](f Field[E], p Poly[E]) []Factor[E] {
 	p = p.Monic(f)
 	dp := p.Derivative()
 	g := GCD(f, p, dp)
