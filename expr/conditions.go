@@ -276,9 +276,17 @@ func (l *Conditions) Without(m *Conditions) *Conditions {
 // Strings writes the conditions: "k1 != k2", "k != 0".
 func (l *Conditions) Strings() []string {
 	var out []string
+	signed := map[string]bool{} // not negative, and not 0 either
+	for _, p := range l.signs {
+		signed[Relation{Left: l.k.Node(p), Right: Int(0), Op: "!="}.String()] = false
+	}
 	for _, p := range l.factors {
-		r := l.k.unequal(p)
-		out = append(out, r.String())
+		s := l.k.unequal(p).String()
+		if _, ok := signed[s]; ok {
+			signed[s] = true
+			continue
+		}
+		out = append(out, s)
 	}
 	for _, p := range l.simple {
 		w := presenter[Constant]{k: l.k, style: l.k}
@@ -286,8 +294,12 @@ func (l *Conditions) Strings() []string {
 		out = append(out, "the roots of "+w.poly(p, Sym(l.k.FreeName("s", "z"))).String()+" are distinct")
 	}
 	for _, p := range l.signs {
-		r := Relation{Left: l.k.Node(p), Right: Int(0), Op: ">="}
-		out = append(out, r.String())
+		n := l.k.Node(p)
+		op := ">="
+		if signed[Relation{Left: n, Right: Int(0), Op: "!="}.String()] {
+			op = ">"
+		}
+		out = append(out, Relation{Left: n, Right: Int(0), Op: op}.String())
 	}
 	slices.Sort(out)
 	return out

@@ -25,7 +25,7 @@ func (f *overField[E]) remarks() (out []string) {
 			if q.sign < 0 {
 				even, odd, evenNot, oddNot = evenNot, oddNot, even, odd
 			}
-			s := "the formula holds for either sign of " + w.Node(q.square).String() +
+			s := "the formula holds for either sign of " + w.expanded(q.square).String() +
 				": with r its square root, " + even + "(r*t) and " + odd + "(r*t)/r become " +
 				evenNot + " and " + oddNot + " of the root of its absolute value where it is negative, and 1 and t where it is 0"
 			if !slices.Contains(out, s) {

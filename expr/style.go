@@ -11,6 +11,8 @@ import (
 type style[E any] interface {
 	// Node writes x.
 	Node(x E) Node
+	// expanded writes x term by term where it is a polynomial.
+	expanded(x E) Node
 	// Content returns the common factor that is taken out of a sum, without a
 	// sign, 1 for zeros.
 	Content(x ...E) E
@@ -40,6 +42,7 @@ func styleOf[E any](k algebra.Scalars[E]) style[E] {
 // rationalStyle is the style of Q.
 type rationalStyle struct{}
 
+func (rationalStyle) expanded(x algebra.Rat) Node          { return Num(x) }
 func (rationalStyle) Node(x algebra.Rat) Node              { return Num(x) }
 func (rationalStyle) Content(x ...algebra.Rat) algebra.Rat { return contentOfRats(x...) }
 func (rationalStyle) Sign(x algebra.Rat) (int, bool)       { return x.Sign(), true }
