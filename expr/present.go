@@ -178,6 +178,11 @@ func (w presenter[E]) perTime(rate Node) Node {
 		if _, number := v.Den.(Number); !number {
 			return Div(Mul(v.Num, w.time), v.Den)
 		}
+	case Product:
+		if c, ok := v.Factors[0].(Number); ok && !c.Val.IsInt() {
+			top := append([]Node{Num(algebra.RatFromBigInt(c.Val.Num()))}, v.Factors[1:]...)
+			return Quotient{Num: Mul(append(top, w.time)...), Den: Num(algebra.RatFromBigInt(c.Val.Den()))}
+		}
 	}
 	return Mul(rate, w.time)
 }
