@@ -58,7 +58,11 @@ func (text) matrix(cells [][]string) string { return "[" + joinCells(cells, ", "
 const mostMatrixColumns = 10
 
 func (latex) matrix(cells [][]string) string {
-	body := joinCells(cells, " & ", ` \\ `)
+	row := ` \\ `
+	if body := joinCells(cells, "", ""); strings.Contains(body, `\frac`) {
+		row = ` \\[2pt] ` // fractions are higher than a line
+	}
+	body := joinCells(cells, " & ", row)
 	if len(cells) > 0 && len(cells[0]) > mostMatrixColumns {
 		return `\left(\begin{array}{` + strings.Repeat("c", len(cells[0])) + "} " + body + ` \end{array}\right)`
 	}

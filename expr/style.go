@@ -170,29 +170,3 @@ func NodeOf[E any](k algebra.Scalars[E], x E) Node { return styleOf(k).Node(x) }
 func PolyNodeOf[E any](k algebra.Scalars[E], p algebra.Poly[E], v Node) Node {
 	return presenter[E]{k: k, style: styleOf(k)}.poly(p, v)
 }
-
-// RootNodes writes the roots of a monic irreducible polynomial of degree 1 or 2,
-// nil for others: the lesser real root first, of a pair the upper one.
-func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E]) []Node {
-	w := presenter[E]{k: k, style: styleOf(k)}
-	switch p.Degree() {
-	case 1:
-		return []Node{w.Node(k.Neg(p.Coef(0)))}
-	case 2:
-		h, d := quadraticRoots(k, p)
-		sign, decided := w.weakSign(d)
-		if !decided {
-			sign = w.typicalSign(d)
-		}
-		if sign < 0 {
-			d = k.Neg(d)
-		}
-		c, root := w.sqrt(d)
-		if sign >= 0 {
-			return []Node{w.surd(h, k.Neg(c), root), w.surd(h, c, root)}
-		}
-		root = Mul(root, Sym("i"))
-		return []Node{w.surd(h, c, root), w.surd(h, k.Neg(c), root)}
-	}
-	return nil
-}

@@ -170,6 +170,20 @@ func ExampleFromMatrices() {
 	// u = 1/2*cos(sqrt(2)*t) + 1/2*cos(2*t)
 }
 
+// Matrices may hold symbols.
+func ExampleFromTextMatrices() {
+	model, err := linsys.FromTextMatrices([]string{"x", "y"},
+		[][][]string{{{"k", "0"}, {"-k", "2*k"}}, {{"1", "0"}, {"0", "1"}}}, nil, [][]string{{"A", "0"}})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	response, _ := model.ClosedForm(context.Background())
+	fmt.Println(response.State("y"))
+	// Output:
+	// A*exp(-k*t) - A*exp(-2*k*t)
+}
+
 // Where no radicals exist, roots are named by their polynomial.
 func ExampleResponse_Modes() {
 	model, _ := linsys.Read("y''' = y' + y; y(0) = 0; y'(0) = 0; y''(0) = 1")

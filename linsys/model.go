@@ -99,6 +99,79 @@ func FromMatrix(names []string, a [][]*big.Rat, f []string, y0 []*big.Rat) (*Mod
 // the values of q, q', ..., q^(m-1) at t = 0, or is nil for the general
 // solution. f and names are as in [FromMatrix].
 func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]*big.Rat) (*Model, error) {
+	nodes := make([][][]expr.Node, len(coefs))
+	for k, a := range coefs {
+		var err error
+		if nodes[k], err = numberRows(a, fmt.Sprintf("matrix %d", k)); err != nil {
+			return nil, err
+		}
+	}
+	values, err := numberRows(initial, "the initial values")
+	if err != nil {
+		return nil, err
+	}
+	return fromMatrices(names, nodes, f, values)
+}
+
+// FromTextMatrices is [FromMatrices] for entries and initial values as text: exact
+// numbers such as "0.35" or "sqrt(2)", and expressions in symbols such as "k1 +
+// k2".
+func FromTextMatrices(names []string, coefs [][][]string, f []string, initial [][]string) (*Model, error) {
+	nodes := make([][][]expr.Node, len(coefs))
+	for k, a := range coefs {
+		var err error
+		if nodes[k], err = textRows(a, fmt.Sprintf("matrix %d", k)); err != nil {
+			return nil, err
+		}
+	}
+	values, err := textRows(initial, "the initial values")
+	if err != nil {
+		return nil, err
+	}
+	return fromMatrices(names, nodes, f, values)
+}
+
+// numberRows returns rows of numbers as trees, nil for nil.
+func numberRows(rows [][]*big.Rat, of string) ([][]expr.Node, error) {
+	if rows == nil {
+		return nil, nil
+	}
+	out := make([][]expr.Node, len(rows))
+	for i, row := range rows {
+		for _, x := range row {
+			if x == nil {
+				return nil, expr.Errorf(expr.WrongShape, expr.Pos{}, "row %d of %s has an entry that is nil", i+1, of)
+			}
+			out[i] = append(out[i], expr.Num(algebra.RatFromBig(x)))
+		}
+	}
+	return out, nil
+}
+
+// textRows returns rows of texts as trees, nil for nil.
+func textRows(rows [][]string, of string) ([][]expr.Node, error) {
+	if rows == nil {
+		return nil, nil
+	}
+	out := make([][]expr.Node, len(rows))
+	for i, row := range rows {
+		for j, text := range row {
+			n, err := expr.Parse(text, expr.Limits{})
+			if e, ok := err.(*Error); ok {
+				in := *e
+				in.Message = fmt.Sprintf("row %d, column %d of %s: %s", i+1, j+1, of, e.Message)
+				return nil, &in
+			}
+			if err != nil {
+				return nil, err
+			}
+			out[i] = append(out[i], n)
+		}
+	}
+	return out, nil
+}
+
+func fromMatrices(names []string, coefs [][][]expr.Node, f []string, initial [][]expr.Node) (*Model, error) {
 	shape := func(format string, args ...any) error {
 		return expr.Errorf(expr.WrongShape, expr.Pos{}, format, args...)
 	}
@@ -119,11 +192,6 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 			if len(row) != n {
 				return nil, shape("row %d of matrix %d has %d entries where %d are due", i+1, k, len(row), n)
 			}
-			for _, x := range row {
-				if x == nil {
-					return nil, shape("row %d of matrix %d has an entry that is nil", i+1, k)
-				}
-			}
 		}
 	}
 	if len(names) != n || (f != nil && len(f) != n) || (initial != nil && len(initial) != len(coefs)-1) {
@@ -138,11 +206,27 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 		}
 		seen[name] = true
 	}
+	// withoutStates returns an error if a state or the time stands in a tree.
+	withoutStates := func(n expr.Node, what string, time bool) (err error) {
+		each(n, func(n expr.Node) {
+			if name, _, ok := b.functionOf(n); ok && seen[name] && name != "pi" && (name != "t" || !time) {
+				kind := "the state "
+				if name == "t" {
+					kind = "the time "
+				}
+				err = expr.Errorf(expr.OutsideClass, n.Pos(), "%s%s stands in %s", kind, expr.Quote(name), what)
+			}
+		})
+		return err
+	}
 	for i := range n {
 		var terms []expr.Node
 		for k := len(coefs) - 1; k >= 0; k-- {
 			for j := range n {
-				terms = append(terms, expr.Mul(expr.Num(algebra.RatFromBig(coefs[k][i][j])), expr.Derivative(names[j], k)))
+				if err := withoutStates(coefs[k][i][j], "a matrix, whose entries are constants", false); err != nil {
+					return nil, err
+				}
+				terms = append(terms, expr.Mul(coefs[k][i][j], expr.Derivative(names[j], k)))
 			}
 		}
 		right := expr.Int(0)
@@ -151,12 +235,7 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 			if right, err = expr.Parse(f[i], b.limits); err != nil {
 				return nil, inInput(err, i)
 			}
-			each(right, func(n expr.Node) {
-				if name, _, ok := b.functionOf(n); ok && seen[name] && name != "t" && name != "pi" {
-					err = expr.Errorf(expr.OutsideClass, n.Pos(), "the state %s stands in an input, which is a function of t alone", expr.Quote(name))
-				}
-			})
-			if err != nil {
+			if err := withoutStates(right, "an input, which is a function of t alone", true); err != nil {
 				return nil, inInput(err, i)
 			}
 		}
@@ -167,12 +246,7 @@ func FromMatrices(names []string, coefs [][][]*big.Rat, f []string, initial [][]
 			return nil, shape("the initial values of order %d are %d where %d are due", k, len(values), n)
 		}
 		for j, x := range values {
-			if x == nil {
-				return nil, shape("an initial value of order %d is nil", k)
-			}
-			b.statements = append(b.statements, expr.Equation{
-				Left: expr.ValueAt(names[j], k, algebra.Rat{}), Right: expr.Num(algebra.RatFromBig(x)),
-			})
+			b.statements = append(b.statements, expr.Equation{Left: expr.ValueAt(names[j], k, algebra.Rat{}), Right: x})
 		}
 	}
 	if err := b.build(); err != nil {

@@ -10,9 +10,6 @@ import (
 
 // answer derives the response that a request asks for.
 func answer(ctx context.Context, req request) (object, error) {
-	if req.want["working"] {
-		return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the working is not written out yet; leave it out of want")
-	}
 	m, err := linsys.Read(req.model)
 	if err != nil {
 		return nil, err
@@ -52,6 +49,13 @@ func answer(ctx context.Context, req request) (object, error) {
 		}
 		o.add("modes", list)
 	}
+	if req.want["working"] {
+		steps, err := r.Working(ctx)
+		if err != nil {
+			return nil, err
+		}
+		o.add("working", working(steps))
+	}
 	if req.at != nil {
 		list, err := values(ctx, valued, req)
 		if err != nil {
@@ -88,6 +92,18 @@ func forms(req request, r *linsys.Response, of func(state string) expr.Function)
 			o.add("mathml", expr.MathML(n))
 		}
 		out.add(name, o)
+	}
+	return out
+}
+
+// working returns the steps of the derivation in every form.
+func working(steps []linsys.Step) []object {
+	out := []object{}
+	for _, s := range steps {
+		out = append(out, object{
+			{"kind", s.Kind}, {"title", s.Title}, {"text", s.String()}, {"latex", s.LaTeX()}, {"html", s.HTML()},
+			{"verified", append([]string{}, s.Verified...)},
+		})
 	}
 	return out
 }

@@ -445,3 +445,25 @@ func TestSymbols(t *testing.T) {
 		require.Contains(t, r.Error.Message, c.message)
 	}
 }
+
+func TestWorking(t *testing.T) {
+	r, line := ask(t, fields{"model": "x'' + 4*x = 8*cos(2*t)\nx(0) = 1\nx'(0) = 0", "want": []string{"working"}})
+	require.Nil(t, r.Error, line)
+	var answer struct {
+		Working []struct {
+			Kind, Title, Text, Latex, HTML string
+			Verified                       []string
+		}
+	}
+	require.NoError(t, json.Unmarshal([]byte(line), &answer))
+	var kinds []string
+	for _, s := range answer.Working {
+		kinds = append(kinds, s.Kind)
+		require.NotEmpty(t, s.Title)
+		require.NotEmpty(t, s.Text)
+		require.NotEmpty(t, s.Latex)
+		require.Contains(t, s.HTML, "<math")
+	}
+	require.Contains(t, kinds, "trial")
+	require.Contains(t, line, "resonance")
+}
