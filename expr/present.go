@@ -82,7 +82,11 @@ func (w presenter[E]) image(f Image[E]) Node {
 		case 2:
 			terms = append(terms, w.quadratic(f.local(i)))
 		default:
-			terms = append(terms, w.named(f, i))
+			named := w.named(f, i)
+			if n := w.biquadratic(f, i); n != nil && len(n.String()) <= max(mostBiquadratic, 2*len(named.String())) {
+				named = n
+			}
+			terms = append(terms, named)
 		}
 	}
 	return Add(terms...)
