@@ -250,6 +250,12 @@ func Div(num, den Node) Node {
 	if q, ok := num.(Quotient); ok {
 		return Div(q.Num, Mul(q.Den, den))
 	}
+	if q, ok := den.(Quotient); ok {
+		if isNumber(q.Num, 1) {
+			return Mul(num, q.Den)
+		}
+		return Div(Mul(num, q.Den), q.Num)
+	}
 	if n, ok := num.(Neg); ok {
 		return Negate(Div(n.X, den))
 	}

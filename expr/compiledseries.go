@@ -172,7 +172,7 @@ func (c *compiler[E]) roundSeries(g *rateGroup, s *rateSeries) error {
 			reach[r] = math.Hypot(mostFloat(steps[r].Re), mostFloat(steps[r].Im)) * (1 + 1e-12)
 		}
 		balls := make([][]algebra.ComplexBall, len(c.images))
-		err = inParallel(len(balls), func(i int) error {
+		err = InParallel(len(balls), func(i int) error {
 			balls[i] = c.seriesBalls(x.terms[i], x.rates, steps, shift, prec)
 			for q, b := range balls[i] {
 				u, _ := b.Re.Mid().Float64()

@@ -152,6 +152,9 @@ func (c *Constants) combine(x Constant, kind formalKind) (coefs []int64, turns a
 		if kind == halfTangentFormal && pi >= 0 {
 			x = c.withoutMultiple(x, pi)
 		}
+		if kind == halfTangentFormal && c.Negative(x) {
+			x = c.Neg(x)
+		}
 		return nil, turns, &growth{c.with(formal{kind: kind, arg: x})}
 	}
 	var finer []formal

@@ -46,7 +46,7 @@ func expand[E any](ctx context.Context, k algebra.Scalars[E], images []Image[E],
 		}
 	}
 	x.terms = make([][]series, len(images))
-	err := inParallel(len(images), func(i int) (err error) {
+	err := InParallel(len(images), func(i int) (err error) {
 		x.terms[i], err = x.image(images[i], dens[i])
 		return err
 	})
@@ -100,7 +100,7 @@ func (x *expander[E]) prime(p *prime[E]) (*expandedPrime[E], error) {
 		q.rates = append(q.rates, len(x.rates))
 		x.rates = append(x.rates, rate{at: at, paired: roots.Conjugate(r) != r})
 	}
-	err = inParallel(len(q.rates), func(i int) error {
+	err = InParallel(len(q.rates), func(i int) error {
 		r := &x.rates[first+i]
 		r.powers = algebra.NewPowers(r.at, x.degree, x.prec)
 		return x.ctx.Err()
@@ -138,7 +138,7 @@ next:
 	for i, pp := range den {
 		n := pp.e
 		all := make([][]algebra.ComplexBall, len(d.primes[i].rates))
-		err := inParallel(len(all), func(r int) error {
+		err := InParallel(len(all), func(r int) error {
 			// p(L + h) = h q(h), and the part at L is N/(q^e Q) h^-e.
 			at := x.rates[d.primes[i].rates[r]].powers
 			product := []algebra.ComplexBall{one}
@@ -195,7 +195,7 @@ func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, err
 	// The parts of e^(Lt), and of twice its conjugate for a pair: the sum is a dot
 	// product of real numbers.
 	re, im := make([]algebra.Ball, len(x.rates)), make([]algebra.Ball, len(x.rates))
-	err := inParallel(len(x.rates), func(i int) error {
+	err := InParallel(len(x.rates), func(i int) error {
 		r := x.rates[i]
 		e := r.at.Re.Mul(t, prec).Exp(prec)
 		if r.paired {
@@ -211,7 +211,7 @@ func (x *expansion) at(ctx context.Context, t algebra.Ball) ([]algebra.Ball, err
 		return nil, err
 	}
 	out := make([]algebra.Ball, len(x.terms))
-	err = inParallel(len(out), func(i int) error {
+	err = InParallel(len(out), func(i int) error {
 		coefs := make([]algebra.Ball, 0, 2*len(x.terms[i]))
 		exps := make([]algebra.Ball, 0, 2*len(x.terms[i]))
 		for _, s := range x.terms[i] {

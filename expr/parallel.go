@@ -9,10 +9,10 @@ import (
 // which a second core pays.
 var parallelLeast = 12
 
-// inParallel calls work for 0, ..., n-1, on two cores if there are enough of
+// InParallel calls work for 0, ..., n-1, on two cores if there are enough of
 // them, and returns the error of the least index. The calls must not depend on
 // each other.
-func inParallel(n int, work func(i int) error) error {
+func InParallel(n int, work func(i int) error) error {
 	if n < parallelLeast || runtime.GOMAXPROCS(0) < 2 {
 		for i := range n {
 			if err := work(i); err != nil {

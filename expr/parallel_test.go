@@ -8,7 +8,7 @@ import (
 func TestInParallel(t *testing.T) {
 	for _, n := range []int{0, 1, parallelLeast - 1, parallelLeast, 101} {
 		done := make([]int, n)
-		if err := inParallel(n, func(i int) error { done[i]++; return nil }); err != nil {
+		if err := InParallel(n, func(i int) error { done[i]++; return nil }); err != nil {
 			t.Fatal(err)
 		}
 		for i, d := range done {
@@ -18,7 +18,7 @@ func TestInParallel(t *testing.T) {
 		}
 	}
 	first, second := errors.New("first"), errors.New("second")
-	err := inParallel(100, func(i int) error {
+	err := InParallel(100, func(i int) error {
 		switch i {
 		case 31:
 			return first

@@ -3,9 +3,10 @@ package expr
 import "example.org/closedform/algebra"
 
 // RootNodes writes the roots of a monic irreducible polynomial of degree 1 or 2,
-// nil for others: the lesser real root first, of a pair the upper one.
-func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E]) []Node {
-	return RootValues(k, p, algebra.Monomial[E](k, k.One(), 1), Sym("i"))
+// nil for others: the lesser real root first, of a pair the upper one; unit stands
+// for the imaginary unit.
+func RootNodes[E any](k algebra.Scalars[E], p algebra.Poly[E], unit Node) []Node {
+	return RootValues(k, p, algebra.Monomial[E](k, k.One(), 1), unit)
 }
 
 // RootValues writes a(z) at the roots z of a monic irreducible polynomial p of

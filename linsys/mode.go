@@ -13,6 +13,7 @@ func (a *answerOver[E]) modes(ctx context.Context) ([]Mode, error) {
 	var out []Mode
 	constants, _ := any(a.k).(*expr.Constants)
 	s := expr.Sym(constants.FreeName("s", "z"))
+	unit := expr.Sym(constants.FreeName("i", "j"))
 	for i, f := range a.solution.modes.Factors() {
 		mode := Mode{Factor: expr.PolyNodeOf(a.k, f.P, s), Degree: f.P.Degree(), Multiplicity: f.Mult}
 		symbolic := false
@@ -40,7 +41,7 @@ func (a *answerOver[E]) modes(ctx context.Context) ([]Mode, error) {
 				r.number = &numbers[j]
 				r.text = numbers[j].String
 			case f.P.Degree() <= 2:
-				r.text = func() string { return expr.RootNodes(a.k, f.P)[j].String() }
+				r.text = func() string { return expr.RootNodes(a.k, f.P, unit)[j].String() }
 			default:
 				r.text = func() string { return fmt.Sprintf("root(%d, %s)", j+1, mode.Factor) }
 			}

@@ -156,18 +156,20 @@ func prove[E any](ctx context.Context, k algebra.Scalars[E], eqs, conditions []l
 		}
 		return "0", nil
 	}
-	for _, eq := range eqs {
-		v, err := verdict(func(s substitution[E], h bool) (string, bool) {
-			r := s.residual(eq, h)
+	p.Residuals = make([]string, len(eqs))
+	err := expr.InParallel(len(eqs), func(i int) (err error) {
+		defer catchLimit(&err)
+		p.Residuals[i], err = verdict(func(s substitution[E], h bool) (string, bool) {
+			r := s.residual(eqs[i], h)
 			if r.IsZero() {
 				return "0", true
 			}
 			return "(" + r.String() + ")/(" + s.d.String() + ")", false
 		})
-		if err != nil {
-			return p, err
-		}
-		p.Residuals = append(p.Residuals, v)
+		return err
+	})
+	if err != nil {
+		return p, err
 	}
 	for _, c := range conditions {
 		v, err := verdict(func(s substitution[E], h bool) (string, bool) {
