@@ -124,6 +124,9 @@ func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constan
 	if !symbolic || slices.ContainsFunc(l.simple, p.Equal) {
 		return nil
 	}
+	if isBinomial(l.k, p) { // s^n - a has repeated roots for a = 0 only
+		return l.Exclude(ctx, p.Coef(0))
+	}
 	if p.Degree() <= mostDiscriminant && size <= mostCoefficients {
 		of := NewConditions(l.k)
 		if err := of.Exclude(ctx, resultant[Constant](l.k, p, p.Derivative())); err != nil {
@@ -137,6 +140,16 @@ func (l *Conditions) excludeRepeated(ctx context.Context, p algebra.Poly[Constan
 	}
 	l.simple = append(l.simple, p)
 	return nil
+}
+
+// isBinomial tells whether p = s^n + c.
+func isBinomial(k *Constants, p algebra.Poly[Constant]) bool {
+	for i := 1; i < p.Degree(); i++ {
+		if !k.IsZero(p.Coef(i)) {
+			return false
+		}
+	}
+	return true
 }
 
 // Join returns the conditions of both lists, which are over the same field.

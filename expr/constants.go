@@ -349,6 +349,9 @@ func (c *Constants) WithoutRoot() (*Constants, bool) {
 			return nil, false
 		}
 	}
+	if slices.ContainsFunc(c.assumed.list, func(a assumption) bool { return a.p.HasRoot() }) {
+		return nil, false
+	}
 	g := *c
 	g.shown = &sharedDisplay{}
 	g.generators, g.table = nil, nil

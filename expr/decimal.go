@@ -225,7 +225,16 @@ func (w *decimalWriter[E]) term(part localPart[E], roots *algebra.RootSet, r int
 		}
 		u := &decimalNumber{c.Re.MulPow2(1), exact(cosines, i)}
 		v := &decimalNumber{c.Im.MulPow2(1).Neg(), exact(sines, i)}
-		if w.doubtful(u.ball) {
+		if degree == 2 { // c(s) = x + y s is (x + y h) + y (s - h)
+			mean := k.Neg(exactQuo[E](k, part.p.Coef(1), 2))
+			if k.IsZero(k.Add(coef(k, part.c[i], 0), k.Mul(coef(k, part.c[i], 1), mean))) {
+				u = nil
+			}
+			if k.IsZero(coef(k, part.c[i], 1)) {
+				v = nil
+			}
+		}
+		if u != nil && w.doubtful(u.ball) {
 			zero, err := w.imaginary(part, roots, r, part.c[i])
 			if err != nil {
 				return t, err
@@ -234,7 +243,7 @@ func (w *decimalWriter[E]) term(part localPart[E], roots *algebra.RootSet, r int
 				u = nil
 			}
 		}
-		if w.doubtful(v.ball) {
+		if v != nil && w.doubtful(v.ball) {
 			zero, err := w.isReal(part, roots, r, part.c[i])
 			if err != nil {
 				return t, err

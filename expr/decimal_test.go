@@ -82,3 +82,12 @@ func TestDecimalErrors(t *testing.T) {
 	assert.Equal(t, `1.2 \cdot 10^{-7}`, expr.LaTeX(expr.Decimal{Text: "1.2e-7"}))
 	assert.True(t, strings.Contains(expr.MathML(expr.Decimal{Text: "1.2e-7"}), "<mn>−7</mn>"))
 }
+
+// A phase that is exactly 0 or a quarter turn is no phase.
+func TestDecimalOfOneOscillation(t *testing.T) {
+	for src, want := range map[string]string{"exp(-t)*sin(2*t)/2": "0.5*exp(-t)*sin(2*t)", "exp(-t)*cos(2*t)/2": "0.5*exp(-t)*cos(2*t)"} {
+		n, err := function(t, src).Decimal(context.Background(), expr.DecimalForm{Amplitude: true})
+		require.NoError(t, err)
+		assert.Equal(t, want, n.String())
+	}
+}

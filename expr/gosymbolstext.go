@@ -14,6 +14,7 @@ import (
 // more than once becomes a variable; until all uses are known it is a mark in
 // the text.
 type goBody struct {
+	terms  int               // of the elements written so far
 	fields map[string]string // the names of symbols in Go
 	values []goValue
 	place  map[string]int // of a text among the values
@@ -172,8 +173,9 @@ func (p goProduct) String() string {
 	return p.size()
 }
 
-// mostSource bounds the terms in the expressions of a generated function.
-const mostSource = 50000
+// mostSource bounds the terms in the expressions of a generated function: about
+// 200 kB of source.
+const mostSource = 8000
 
 // element writes an element of a field: numerator and denominator in factors,
 // so that differences that are factors do not cancel, and what is free of
@@ -189,8 +191,8 @@ func (b *goBody) element(k *Constants, x Constant) (goProduct, error) {
 		v, err := (&goWriter[Constant]{k: k}).float(x)
 		return goNumber(v), err
 	}
-	if x.Size() > mostSource {
-		return goProduct{}, Errorf(LimitExceeded, Pos{}, "a coefficient of the source has %d terms", x.Size())
+	if b.terms += x.Size(); b.terms > mostSource {
+		return goProduct{}, Errorf(LimitExceeded, Pos{}, "Go source with more than %d terms in the symbols", mostSource)
 	}
 	d := k.shown.get(k)
 	num, den := d.to.Parts(d.element(x))

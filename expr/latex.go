@@ -204,8 +204,11 @@ func (latex) product(factors []piece) string {
 	var b strings.Builder
 	for i, f := range factors {
 		if i > 0 {
-			if f.text[0] >= '0' && f.text[0] <= '9' || strings.HasPrefix(f.text, `\frac`) {
+			switch {
+			case f.text[0] >= '0' && f.text[0] <= '9' || strings.HasPrefix(f.text, `\frac`):
 				b.WriteString(` \cdot`)
+			case strings.HasPrefix(f.text, `\mathrm`) || strings.HasPrefix(factors[i-1].text, `\mathrm`):
+				b.WriteString(` \,`) // names of several letters stand apart
 			}
 			b.WriteByte(' ')
 		}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math/big"
+	"slices"
 
 	"example.org/closedform/algebra"
 )
@@ -304,6 +305,14 @@ func (f Function) Substitute(ctx context.Context, values map[string]Node) (out F
 			if v, ok := values[name]; ok {
 				relevant[name] = v
 			}
+		}
+	}
+	for name, v := range relevant {
+		if v == nil {
+			return f, Errorf(Syntax, Pos{}, "%s has the value nil", Quote(name))
+		}
+		if slices.Contains(Names(v), f.variable) {
+			return f, Errorf(OutsideClass, Pos{}, "the value of %s depends on %s", Quote(name), f.variable)
 		}
 	}
 	if len(relevant) == 0 {

@@ -132,7 +132,7 @@ func (c *Constants) polynomialSign(p Constant, weak bool, depth int) (int, bool)
 	// it.
 	known := c.knowledge(depth == 0)
 	if _, symbolic := c.Surd(); !symbolic || !p.HasRoot() {
-		if sign, ok := c.termwiseSign(p, &signKnowledge{c: c, state: known.plain}, weak); ok {
+		if sign, ok := c.termwiseSign(p, &signKnowledge{c: c, state: known.plain, nonzero: known.plainNonzero}, weak); ok {
 			return sign, true
 		}
 	}
@@ -191,7 +191,7 @@ next:
 			if e == 0 {
 				continue
 			}
-			nonzero = nonzero && known.state[i] == isKnownPositive
+			nonzero = nonzero && (known.state[i] == isKnownPositive || e%2 == 0 && known.nonzero != nil && known.nonzero[i])
 			if known.state[i] == isUnknown && e%2 == 1 {
 				return 0, false
 			}
@@ -212,8 +212,11 @@ next:
 type signKnowledge struct {
 	c     *Constants
 	plain []int // before the steps
-	state []int // after them
-	steps []signStep
+	// plainNonzero tells which symbols are assumed not to be 0; nonzero is that
+	// where no step has replaced a symbol.
+	plainNonzero, nonzero []bool
+	state                 []int // after them
+	steps                 []signStep
 }
 
 type signStep struct {
@@ -238,11 +241,16 @@ func (c *Constants) knowledge(exponentials bool) *signKnowledge {
 	}
 	level := map[assumptionKind]int{isPositive: isKnownPositive, notNegative: isKnownNotNegative}
 	var known []assumption
+	k.plainNonzero = make([]bool, len(c.formals))
 	for _, a := range c.assumed.list {
+		i := c.plainVariable(a.p)
 		if a.kind == notZero {
+			if i >= 0 {
+				k.plainNonzero[i] = true
+			}
 			continue
 		}
-		if i := c.plainVariable(a.p); i >= 0 {
+		if i >= 0 {
 			k.state[i] = max(k.state[i], level[a.kind])
 		} else {
 			known = append(known, a)

@@ -3,17 +3,19 @@ package linsys
 import (
 	"context"
 	"fmt"
+	"slices"
 
 	"example.org/closedform/algebra"
 	"example.org/closedform/expr"
 )
 
 // modes returns the modes with their roots where these are numbers.
-func (a *answerOver[E]) modes(ctx context.Context) ([]Mode, error) {
+func (a *answerOver[E]) modes(ctx context.Context, states []string) ([]Mode, error) {
 	var out []Mode
 	constants, _ := any(a.k).(*expr.Constants)
 	s := expr.Sym(constants.FreeName("s", "z"))
-	unit := expr.Sym(constants.FreeName("i", "j"))
+	units := slices.DeleteFunc([]string{"i", "j", "iota"}, func(name string) bool { return slices.Contains(states, name) })
+	unit := expr.Sym(constants.FreeName(append(units, "imaginary")...))
 	for i, f := range a.solution.modes.Factors() {
 		mode := Mode{Factor: expr.PolyNodeOf(a.k, f.P, s), Degree: f.P.Degree(), Multiplicity: f.Mult}
 		symbolic := false

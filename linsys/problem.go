@@ -96,7 +96,8 @@ func mapProblem[E, F any](p *problemOver[E], k algebra.Scalars[F], to func(E) (F
 type answer interface {
 	functions(variable string, constants []string) (states, transient, steady []expr.Function)
 	constants() int
-	modes(ctx context.Context) ([]Mode, error)
+	modes(ctx context.Context, states []string) ([]Mode, error)
+	asProblem() problem
 	proofs() []Proof
 	conditions(ctx context.Context) (*expr.Conditions, error)
 	substitute(ctx context.Context, m *Model, names []string, values map[string]expr.Node) (answer, []string, error)
@@ -131,6 +132,8 @@ func (a *answerOver[E]) functions(variable string, constants []string) (states, 
 	}
 	return function(a.base, a.free), function(a.complementary, a.free), function(a.particular, nil)
 }
+
+func (a *answerOver[E]) asProblem() problem { return a.problemOver }
 
 func (a *answerOver[E]) constants() int { return len(a.free) }
 

@@ -53,7 +53,7 @@ func (m *Model) respond(ctx context.Context, over answer, constants []string) (r
 	r = &Response{model: m, over: over, constants: constants}
 	r.states, r.transient, r.steady = over.functions(m.variable, constants)
 	r.bundle = expr.NewBundle(r.states...)
-	r.modes, err = over.modes(ctx)
+	r.modes, err = over.modes(ctx, m.names)
 	return r, err
 }
 
@@ -277,7 +277,10 @@ func (r *Response) With(values map[string]*big.Rat) (*Response, error) {
 // symbol nor a free constant, are errors.
 func (r *Response) Substitute(ctx context.Context, values map[string]expr.Node) (*Response, error) {
 	known := append(append(slices.Clone(r.constants), r.model.Parameters()...), r.Parameters()...)
-	for name := range values {
+	for name, v := range values {
+		if v == nil {
+			return nil, expr.Errorf(expr.Syntax, expr.Pos{}, "%s has the value nil", expr.Quote(name))
+		}
 		if !slices.Contains(known, name) {
 			return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "%s is neither a symbol nor a free constant of the response", expr.Quote(name))
 		}
@@ -287,6 +290,9 @@ func (r *Response) Substitute(ctx context.Context, values map[string]expr.Node) 
 	}
 	for name, v := range values {
 		for _, inner := range expr.Names(v) {
+			if inner == r.model.variable || slices.Contains(r.model.names, inner) {
+				return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the value of %s holds %s, which is a state or the time; use another name", expr.Quote(name), expr.Quote(inner))
+			}
 			if _, given := values[inner]; !given && slices.Contains(r.constants, inner) {
 				return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the value of %s holds %s, which is a free constant of the response; use another name", expr.Quote(name), inner)
 			}
@@ -296,7 +302,21 @@ func (r *Response) Substitute(ctx context.Context, values map[string]expr.Node) 
 	if err != nil {
 		return nil, wrapCancel(err)
 	}
-	return r.model.respond(ctx, over, constants)
+	return r.model.defining(values, over).respond(ctx, over, constants)
+}
+
+// defining returns the model with definitions of the symbols that have values.
+func (m *Model) defining(values map[string]expr.Node, over answer) *Model {
+	out := *m
+	for _, name := range m.Parameters() {
+		if v, ok := values[name]; ok {
+			eq := expr.Equation{Left: expr.Sym(name), Right: v}
+			out.statements = append(slices.Clip(out.statements), eq)
+			out.defined = append(slices.Clip(out.defined), eq)
+		}
+	}
+	out.problem = over.asProblem()
+	return &out
 }
 
 // When returns the response in a special case, equations among the symbols such
