@@ -49,6 +49,11 @@ func (b *builder) build() (err error) {
 			if b.dependsOnState(side) {
 				return expr.Errorf(expr.OutsideClass, r.Pos, "%s is about a state or time; assumptions are on symbols", expr.Quote(r.String()))
 			}
+			for _, name := range expr.Names(side) {
+				if _, defined := b.definitions[name]; defined {
+					return expr.Errorf(expr.OutsideClass, r.Pos, "%s has a value in the model; assumptions are on symbols", expr.Quote(name))
+				}
+			}
 		}
 		if k, err = k.Assume(r, b.limits); err != nil {
 			return err

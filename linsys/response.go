@@ -190,7 +190,8 @@ func (r *Response) At(ctx context.Context, t *big.Rat, digits int) ([]string, er
 func (r *Response) Transient(name string) expr.Function { return r.transient[r.index(name)] }
 
 // Steady returns the particular integral in a state: what has the rates of the
-// input, as the method of undetermined coefficients gives it.
+// input, as the method of undetermined coefficients gives it. It is 0 where there
+// is no input, also where the transient part tends to a constant.
 func (r *Response) Steady(name string) expr.Function { return r.steady[r.index(name)] }
 
 // Constants returns the names of the free constants of a general solution.

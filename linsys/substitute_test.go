@@ -75,6 +75,15 @@ func TestAssumptionsWithRoots(t *testing.T) {
 	}
 }
 
+func TestAssumptionOnADefinedName(t *testing.T) {
+	m, err := linsys.Read("k = 3; x' = -k*x; x(0) = 1")
+	require.NoError(t, err)
+	_, err = m.Assume("k > 5")
+	var e *linsys.Error
+	require.ErrorAs(t, err, &e)
+	assert.Contains(t, e.Message, "has a value")
+}
+
 func TestSquaresAsConditions(t *testing.T) {
 	for _, c := range []struct {
 		model, assume string
