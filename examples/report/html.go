@@ -2,6 +2,8 @@ package main
 
 import (
 	_ "embed"
+	"fmt"
+	"html"
 	"html/template"
 	"strings"
 
@@ -13,107 +15,149 @@ var page string
 
 var pageTemplate = template.Must(template.New("report").Parse(page))
 
-// formula writes a formula for a browser; the writer escapes names.
-func formula(n expr.Node) template.HTML { return template.HTML(expr.MathML(n)) }
-
-// equation is an equation, or a state with a function.
-type equation struct{ Left, Right template.HTML }
-
-type htmlMode struct {
-	Factor, Exact                                     template.HTML
-	Multiplicity                                      int
-	Eigenvalue, TimeConstant, Damping, Period, Remark string
-}
-
-// htmlTable holds the values of some of the states.
-type htmlTable struct {
-	States []template.HTML
-	Rows   []htmlRow
-}
-
-type htmlRow struct {
-	Time   string
-	Values []string
-}
-
-type htmlPlot struct {
-	Name template.HTML
-	SVG  template.HTML
-}
-
-// htmlPage is what the template is filled with; it escapes all texts.
-type htmlPage struct {
-	Title, Notes, Source, ModelText            string
-	Equations, Definitions, Sides, Factors     []equation
-	Constants                                  []string
-	Modes                                      []htmlMode
-	Solution, Transient, Steady, Abbreviations []equation
-	Variable                                   template.HTML
-	Tables                                     []htmlTable
-	Digits                                     int
-	Proof, From, To, Why, Caution              string
-	Oscillates                                 bool
-	Conditions, Symbols                        []string
-	Plots                                      []htmlPlot
-}
-
 // html writes the report as one HTML file without outside resources.
 func (r *report) html() (string, error) {
-	m := r.response.Model()
-	p := htmlPage{
-		Title: r.title(), Notes: r.further(), Source: r.src.name, ModelText: strings.TrimSpace(r.src.text),
-		Equations: r.equations(m.Equations()), Definitions: r.equations(m.Definitions()), Sides: r.equations(m.SideConditions()),
-		Constants: r.response.Constants(), Variable: formula(expr.Sym(m.Variable())), Digits: valueDigits,
-		Solution: r.functions(r.response.State), Transient: r.functions(r.response.Transient), Steady: r.functions(r.response.Steady),
-		Conditions: r.conditions, Symbols: r.response.Parameters(),
-		Proof: r.proofText(), Caution: caution, Oscillates: oscillates(r.modes),
-	}
-	last := 0
-	for _, mode := range r.modes {
-		if mode.factor != last {
-			last = mode.factor
-			p.Factors = append(p.Factors, r.equation(mode.polynomial(), mode.factorNode))
-		}
-		p.Modes = append(p.Modes, htmlMode{
-			Factor: formula(mode.name()), Multiplicity: mode.multiplicity,
-			Eigenvalue: mode.decimal(), Exact: mode.exact.html, TimeConstant: mode.timeConstant(),
-			Damping: mode.damping(), Period: mode.period(), Remark: mode.remark(),
-		})
-	}
-	p.Abbreviations = r.abbreviations()
-	if !r.general() {
-		p.From, p.To, p.Why = timeText(r.window.from), timeText(r.window.to), r.window.why
-	}
-	names := r.response.States()
-	for from := 0; from < len(names) && len(r.values) > 0; from += statesPerTable {
-		to := min(len(names), from+statesPerTable)
-		var table htmlTable
-		for _, name := range names[from:to] {
-			table.States = append(table.States, formula(expr.Sym(name)))
-		}
-		for _, row := range r.values {
-			table.Rows = append(table.Rows, htmlRow{timeText(row.time), row.values[from:to]})
-		}
-		p.Tables = append(p.Tables, table)
-	}
-	for _, c := range r.curves {
-		svg, err := c.svg()
-		if err != nil {
+	w := htmlWriter{r: r}
+	for _, b := range r.document.blocks {
+		if err := w.block(b); err != nil {
 			return "", err
 		}
-		p.Plots = append(p.Plots, htmlPlot{formula(expr.Sym(c.name)), template.HTML(svg)})
 	}
 	var b strings.Builder
-	err := pageTemplate.Execute(&b, p)
+	err := pageTemplate.Execute(&b, struct {
+		Title, Notes, Source string
+		Body                 template.HTML
+	}{r.title(), r.further(), r.src.name, template.HTML(w.b.String())})
 	return b.String(), err
+}
+
+// htmlWriter writes blocks; it escapes all texts, and the writer of formulas
+// escapes names.
+type htmlWriter struct {
+	r *report
+	b strings.Builder
+}
+
+func (w *htmlWriter) line(format string, args ...any) { fmt.Fprintf(&w.b, format+"\n", args...) }
+
+func (w *htmlWriter) block(b any) error {
+	switch v := b.(type) {
+	case heading:
+		tag, number := "h2", w.r.document.numbers[v.label]
+		if v.level == 2 {
+			tag = "h3"
+		}
+		if number != "" {
+			number += "\u2002"
+		}
+		w.line(`<%s id="%s">%s%s</%[1]s>`, tag, v.label, number, html.EscapeString(v.text))
+	case paragraph:
+		class := ""
+		if v.note {
+			class = ` class="note"`
+		}
+		w.line("<p%s>%s</p>", class, w.spans(v.text))
+	case equations:
+		w.line(`<div class="wide"><table class="equations">`)
+		for _, q := range v {
+			w.line("<tr><td>%s</td><td>%s</td><td>%s</td></tr>", pieces(q.left), htmlSign(q.sign), pieces(q.right))
+		}
+		w.line("</table></div>")
+	case packed:
+		w.line(`<div class="packed">`)
+		for _, q := range v {
+			lead := ""
+			if len(q.lead) > 0 {
+				lead = w.spans(q.lead) + "\u2002"
+			}
+			w.line("<span>%s%s %s %s</span>", lead, expr.MathML(q.left), htmlSign(q.sign), expr.MathML(q.right))
+		}
+		w.line("</div>")
+	case inline:
+		list := make([]string, len(v))
+		for i, q := range v {
+			if list[i] = html.EscapeString(q.words); q.words == "" {
+				list[i] = pieces(q.left) + " " + htmlSign(q.sign) + " " + pieces(q.right)
+			}
+		}
+		w.line(`<p class="inline"><span>%s.</span></p>`, strings.Join(list, ",</span> <span>"))
+	case longNumbers:
+		w.line(`<div class="wide"><table class="equations">`)
+		for _, d := range v {
+			w.line("<tr><td>%s</td><td>=</td><td><code>%s</code></td></tr>", pieces(d.left), html.EscapeString(d.right.String()))
+		}
+		w.line("</table></div>")
+	case table:
+		w.table(v)
+	case figure:
+		svg, err := w.r.curves[v.curve].svg()
+		if err != nil {
+			return err
+		}
+		w.line("<figure id=\"%s\">\n%s\n<figcaption>Figure %s. %s</figcaption>\n</figure>", v.label, svg, w.r.document.numbers[v.label], w.spans(v.caption))
+	case listing:
+		w.line("<pre>%s</pre>", html.EscapeString(string(v)))
+	case box:
+		w.line(`<p class="caution"><strong>%s</strong> %s</p>`, html.EscapeString(v.word), html.EscapeString(v.text))
+	default:
+		panic(fmt.Sprintf("html: %T", b))
+	}
+	return nil
+}
+
+func (w *htmlWriter) table(t table) {
+	class := make([]string, len(t.columns))
+	for i, c := range t.columns {
+		if c.right {
+			class[i] = ` class="number"`
+		}
+	}
+	w.line(`<div class="wide"><table id="%s">`, t.label)
+	w.line("<caption>Table %s. %s</caption>\n<tr>", w.r.document.numbers[t.label], w.spans(t.caption))
+	for i, c := range t.columns {
+		w.line("<th%s>%s</th>", class[i], w.spans(c.head))
+	}
+	w.line("</tr>")
+	for _, row := range t.rows {
+		w.b.WriteString("<tr>")
+		for i, cell := range row {
+			fmt.Fprintf(&w.b, "<td%s>%s</td>", class[i], w.spans(cell))
+		}
+		w.line("</tr>")
+	}
+	w.line("</table></div>")
+}
+
+func (w *htmlWriter) spans(list []span) string {
+	var b strings.Builder
+	for _, s := range list {
+		switch {
+		case s.math != nil:
+			b.WriteString(expr.MathML(s.math))
+		case s.to != "":
+			fmt.Fprintf(&b, `<a href="#%s">%s</a>`, s.to, w.r.document.numbers[s.to])
+		default:
+			b.WriteString(html.EscapeString(s.words + s.number))
+		}
+	}
+	return b.String()
+}
+
+var htmlSigns = map[string]string{"!=": "≠", ">=": "≥", "<=": "≤", ">": "&gt;", "<": "&lt;"}
+
+func htmlSign(sign string) string {
+	if s, ok := htmlSigns[sign]; ok {
+		return s
+	}
+	return sign
 }
 
 // pieces writes a formula as a row of math elements between which a line may
 // end: at the top-level terms, and inside of parentheses that no line can hold.
-func pieces(n expr.Node) template.HTML {
+func pieces(n expr.Node) string {
 	var list []string
 	addPieces(&list, "", n)
-	return template.HTML(`<span class="piece">` + strings.Join(list, "</span> <span class=\"piece\">") + "</span>")
+	return `<span class="piece">` + strings.Join(list, "</span> <span class=\"piece\">") + "</span>"
 }
 
 func addPieces(list *[]string, sign string, n expr.Node) {
@@ -121,10 +165,8 @@ func addPieces(list *[]string, sign string, n expr.Node) {
 	case expr.Sum:
 		for i, t := range v.Terms {
 			s := "+ "
-			if m, ok := t.(expr.Neg); ok {
-				s, t = "− ", m.X
-			} else if m, ok := t.(expr.Number); ok && m.Val.Sign() < 0 {
-				s, t = "− ", expr.Num(m.Val.Neg())
+			if m, ok := negated(t); ok {
+				s, t = "− ", m
 			}
 			if i == 0 {
 				s = sign + strings.TrimSpace(strings.TrimPrefix(s, "+ "))
@@ -135,54 +177,18 @@ func addPieces(list *[]string, sign string, n expr.Node) {
 	case expr.Product:
 		last, isSum := v.Factors[len(v.Factors)-1].(expr.Sum)
 		if isSum && width(n) > rowWidth {
-			front := expr.Node(expr.Int(1))
+			front := ""
 			if k := len(v.Factors) - 1; k == 1 {
-				front = v.Factors[0]
+				front = expr.MathML(v.Factors[0]) + " "
 			} else if k > 1 {
-				front = expr.Product{Factors: v.Factors[:k]}
+				front = expr.MathML(expr.Product{Factors: v.Factors[:k]}) + " "
 			}
 			begin := len(*list)
 			addPieces(list, "", last)
-			(*list)[begin] = sign + expr.MathML(front) + " (" + (*list)[begin]
+			(*list)[begin] = sign + front + "(" + (*list)[begin]
 			(*list)[len(*list)-1] += ")"
 			return
 		}
 	}
 	*list = append(*list, sign+expr.MathML(n))
-}
-
-// equation writes an equation, shortened where no line can hold it.
-func (r *report) equation(left, right expr.Node) equation {
-	return equation{pieces(left), pieces(r.short.shorten(right))}
-}
-
-func (r *report) equations(list []expr.Equation) []equation {
-	var out []equation
-	for _, eq := range list {
-		out = append(out, r.equation(eq.Left, eq.Right))
-	}
-	return out
-}
-
-func (r *report) functions(of func(string) expr.Function) []equation {
-	var out []equation
-	for _, name := range r.response.States() {
-		out = append(out, r.equation(expr.Sym(name), of(name).Node()))
-	}
-	return out
-}
-
-// abbreviations returns what the names in shortened formulas stand for; long
-// numbers are text that may break anywhere.
-func (r *report) abbreviations() []equation {
-	var out []equation
-	var numbers []equation
-	for _, d := range r.short.definitions {
-		if _, isNumber := d.right.(expr.Number); isNumber {
-			numbers = append(numbers, equation{pieces(d.left), template.HTML("<code>" + d.right.String() + "</code>")})
-		} else {
-			out = append(out, equation{pieces(d.left), pieces(d.right)})
-		}
-	}
-	return append(out, numbers...)
 }

@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"regexp"
 	"sort"
 	"strings"
 	"unicode"
@@ -12,57 +13,11 @@ import (
 // latex writes the report as a LaTeX document that needs amsmath, graphicx
 // and geometry.
 func (r *report) latex() string {
-	var b strings.Builder
-	w := texWriter{b: &b, short: r.short}
-	m := r.response.Model()
-	w.line(`\section*{Model}`)
-	w.line("Equations:")
-	for _, eq := range m.Equations() {
-		w.equation(eq.Left, eq.Right)
+	w := texWriter{b: &strings.Builder{}}
+	for _, b := range r.document.blocks {
+		w.block(b)
 	}
-	w.endEquations()
-	if list := m.Definitions(); len(list) > 0 {
-		w.line("with the constants, exact as they were given,")
-		w.inline(list)
-	}
-	if list := m.SideConditions(); len(list) > 0 {
-		w.line("and the side conditions")
-		w.inline(list)
-	} else if len(r.response.Constants()) == 0 {
-		w.line("There are no side conditions, and the equations leave no constant free.")
-	} else {
-		w.line("There are no side conditions: the solution is the general one, with the free constants $%s$. It has no values and no plots.",
-			strings.Join(mapped(r.response.Constants(), expr.LaTeXName), ", "))
-	}
-	r.latexModes(w)
-	w.line(`\section*{Response}`)
-	w.functions(r, r.response.State)
-	if len(r.conditions) > 0 {
-		w.line("These formulas hold for $%s$.", strings.Join(mapped(r.conditions, conditionLaTeX), "$, $"))
-	}
-	if names := r.response.Parameters(); len(names) > 0 {
-		w.line("The symbols $%s$ have no values; there are no plots.", strings.Join(mapped(names, expr.LaTeXName), "$, $"))
-	}
-	w.line(`\section*{Transient part}`)
-	w.line("The complementary function: what the modes contribute.")
-	w.functions(r, r.response.Transient)
-	w.line(`\section*{Steady part}`)
-	w.line("The particular integral: what has the rates of the input.")
-	w.functions(r, r.response.Steady)
-	r.latexDefinitions(w)
-	r.latexValues(w)
-	r.latexProof(w)
-	r.latexPlots(w)
-	w.line("\n\\bigskip\n\\fbox{\\parbox{0.97\\linewidth}{\\textbf{Caution.} %s}}", texEscape(caution))
-	return texPreamble(r, b.String()) + b.String() + "\\end{document}\n"
-}
-
-func mapped(list []string, f func(string) string) []string {
-	out := make([]string, len(list))
-	for i, s := range list {
-		out[i] = f(s)
-	}
-	return out
+	return texPreamble(r, w.b.String()) + w.b.String() + "\\end{document}\n"
 }
 
 // texPreamble returns the document up to the first section. Characters that the
@@ -80,14 +35,22 @@ func texPreamble(r *report, body string) string {
 \setlength{\jot}{5pt}
 \setlength{\parindent}{0pt}
 \setlength{\parskip}{0.5\baselineskip}
+\setlength{\emergencystretch}{2em}
+\renewcommand{\arraystretch}{1.2}
 \makeatletter
+% A table or a figure that stays where it is.
+\newenvironment{exhibit}[1]{\par\medskip\noindent\begin{minipage}{\linewidth}\centering\def\@captype{#1}%
+  \setlength{\abovecaptionskip}{4pt}\setlength{\belowcaptionskip}{6pt}%
+  \setlength{\tabcolsep}{4pt}\renewcommand{\arraystretch}{1.25}}{\end{minipage}\par\medskip}
+% Formulas side by side.
+\newenvironment{packed}{\par\begingroup\centering\lineskiplimit=2pt\lineskip=8pt\relax}{\unskip\par\endgroup}
 `
 	b.WriteString(head)
-	title := fmt.Sprintf("\\section*{\\LARGE\\raggedright %s}\n", texEscape(r.title()))
+	title := fmt.Sprintf("{\\LARGE\\bfseries\\raggedright %s\\par}\\bigskip\n", texEscape(r.title()))
 	if s := r.further(); s != "" {
 		title += texEscape(s) + "\n"
 	}
-	title += "\nSource of the model: " + texEscape(r.src.name) + ".\n"
+	title += "\nSource of the model: " + texEscape(r.src.name) + ".\n\n"
 	seen := map[rune]bool{}
 	for _, c := range title + body {
 		if c > 0x7f {
@@ -117,6 +80,8 @@ func texEscape(s string) string {
 			b.WriteString(`\` + string(c))
 		case '^', '~':
 			b.WriteString(`\` + string(c) + `{}`)
+		case '\u00a0':
+			b.WriteByte('~')
 		case '<':
 			b.WriteString(`\textless{}`)
 		case '>':
@@ -138,30 +103,150 @@ func texEscape(s string) string {
 	return strings.ReplaceAll(b.String(), `\textquotedbl{}`, `{\char34}`)
 }
 
-// texWriter writes lines; equations are gathered into one display.
-type texWriter struct {
-	b     *strings.Builder
-	short *shortener
-	open  *bool
-}
+// texWriter writes blocks.
+type texWriter struct{ b *strings.Builder }
 
 func (w *texWriter) line(format string, args ...any) { fmt.Fprintf(w.b, format+"\n", args...) }
 
-// equation adds an equation to a display.
-func (w *texWriter) equation(left, right expr.Node) {
-	if w.open == nil {
-		w.open = new(bool)
+func (w *texWriter) block(b any) {
+	switch v := b.(type) {
+	case heading:
+		if v.level == 0 {
+			w.line(`\section*{%s}`, texEscape(v.text))
+			break
+		}
+		w.line(`%s{%s}\label{%s}`, []string{`\section`, `\subsection`}[v.level-1], texEscape(v.text), v.label)
+	case paragraph:
+		if v.note {
+			w.line("\n{\\footnotesize %s\\par}", texSpans(v.text))
+		} else {
+			w.line("\n%s", texSpans(v.text))
+		}
+	case equations:
+		w.equations(v)
+	case packed:
+		w.line(`\begin{packed}`)
+		for _, q := range v {
+			lead := ""
+			if len(q.lead) > 0 {
+				lead = texSpans(q.lead) + `\enspace `
+			}
+			w.line(`\mbox{%s$\displaystyle %s %s %s$}\qquad`, lead, expr.LaTeX(q.left), latexSign(q.sign), expr.LaTeX(q.right))
+		}
+		w.line(`\end{packed}`)
+	case inline:
+		w.inline(v)
+	case longNumbers:
+		for _, d := range v {
+			x := d.right.(expr.Number).Val
+			text := digits(x.Num().String())
+			if !x.IsInt() {
+				text += " / " + digits(x.Den().String())
+			}
+			w.line("\\begin{quote}\\raggedright\\footnotesize $%s$ = %s\\end{quote}", expr.LaTeX(d.left), text)
+		}
+	case table:
+		w.table(v)
+	case figure:
+		w.line("\\begin{exhibit}{figure}\n\\includegraphics[width=\\linewidth]{plot-%d.pdf}\n\\caption{%s}\\label{%s}\n\\end{exhibit}\n",
+			v.curve+1, texSpans(v.caption), v.label)
+	case listing:
+		w.line("\n" + `{\footnotesize\ttfamily\raggedright\parskip=0pt\relax`)
+		for line := range strings.Lines(string(v)) {
+			w.line(`\mbox{}%s\par`, texListing(line))
+		}
+		w.line("}\n")
+	case box:
+		w.line("\n\\fbox{\\parbox{0.97\\linewidth}{\\textbf{%s} %s}}\n", texEscape(v.word), texEscape(v.text))
+	default:
+		panic(fmt.Sprintf("latex: %T", b))
 	}
-	if !*w.open {
-		w.line(`\begin{align*}`)
-		*w.open = true
-	} else {
-		w.line(`\\`)
+}
+
+// texListing sets a line of a text as it is, with places where it may break.
+func texListing(line string) string {
+	var b strings.Builder
+	run := 0
+	for _, c := range strings.TrimRight(line, " \t\r\n") {
+		switch {
+		case c == ' ' || c == '\t':
+			b.WriteString(`\ `)
+			run = 0
+			continue
+		case run == 40:
+			b.WriteString(`\hspace{0pt}`)
+			run = 0
+		}
+		b.WriteString(texEscape(string(c)))
+		run++
 	}
-	leftWidth := width(left)
-	if leftWidth > rowWidth/3 {
+	return b.String()
+}
+
+func texSpans(list []span) string {
+	var b strings.Builder
+	for _, s := range list {
+		switch {
+		case s.math != nil:
+			b.WriteString("$" + expr.LaTeX(s.math) + "$")
+		case s.to != "":
+			fmt.Fprintf(&b, `\ref{%s}`, s.to)
+		case s.number != "":
+			b.WriteString(texNumber(s.number))
+		default:
+			b.WriteString(texWords(s.words))
+		}
+	}
+	return b.String()
+}
+
+// texWords writes words, with signs of formulas as such.
+func texWords(s string) string { return texSigns.Replace(texEscape(s)) }
+
+var texSigns = strings.NewReplacer("−", `$-$`, "±", `$\pm$`, "π", `$\pi$`, "≈", `$\approx$`, `\textbar{}`, "$|$")
+
+// texNumber sets a decimal number, or a pair of them, with powers of ten as such.
+func texNumber(s string) string {
+	if s == "" {
+		return ""
+	}
+	s = texPower.ReplaceAllString(s, ` \cdot 10^{$1$2}`)
+	return "$" + strings.NewReplacer("±", `\pm`, "i", `\,\mathrm{i}`).Replace(s) + "$"
+}
+
+var texPower = regexp.MustCompile(`e\+?(-?)0*([0-9]+)`)
+
+var latexSigns = map[string]string{"!=": `\neq`, ">=": `\geq`, "<=": `\leq`, "≈": `\approx`}
+
+func latexSign(sign string) string {
+	if s, ok := latexSigns[sign]; ok {
+		return s
+	}
+	return sign
+}
+
+// equations writes a display.
+func (w *texWriter) equations(list equations) {
+	w.line(`\begin{align*}`)
+	left, right := 0.0, 0.0
+	for _, q := range list {
+		left, right = max(left, width(q.left)), max(right, width(q.right))
+	}
+	for i, q := range list {
+		if i > 0 {
+			w.line(`\\`)
+		}
+		w.equation(q, left+right < rowWidth-4)
+	}
+	w.line(`\end{align*}`)
+}
+
+// equation writes a relation on one row, or where that may be too short on some.
+func (w *texWriter) equation(q relation, short bool) {
+	left, leftWidth := expr.LaTeX(q.left)+" &", width(q.left)
+	if !short && leftWidth > rowWidth/3 {
 		// The right side starts on a row of its own.
-		for i, row := range rows(left, rowWidth) {
+		for i, row := range rows(q.left, rowWidth) {
 			if i > 0 {
 				row = `\\ &\qquad {}` + row
 			} else {
@@ -170,136 +255,55 @@ func (w *texWriter) equation(left, right expr.Node) {
 			w.line("%s", row)
 		}
 		w.line(`\\`)
-		leftWidth = 0
-		left = nil
+		left, leftWidth = `&\quad {}`, 0
 	}
-	for i, row := range rows(w.short.shorten(right), rowWidth-leftWidth) {
-		switch {
-		case i > 0:
+	for i, row := range rows(q.right, rowWidth-leftWidth) {
+		if i > 0 {
 			row = `\\ &\qquad {}` + row
-		case left == nil:
-			row = `&\quad {}= ` + row
-		default:
-			row = expr.LaTeX(left) + " &= " + row
+		} else {
+			row = left + latexSign(q.sign) + " " + row
 		}
 		w.line("%s", row)
 	}
 }
 
-func (w *texWriter) endEquations() {
-	if w.open != nil && *w.open {
-		w.line(`\end{align*}`)
-		*w.open = false
-	}
-}
-
-// inline writes short equations one after the other, as text that breaks.
-func (w *texWriter) inline(list []expr.Equation) {
+// inline writes short relations one after the other, as text that breaks.
+func (w *texWriter) inline(list inline) {
 	parts := make([]string, len(list))
-	for i, eq := range list {
-		parts[i] = "$" + expr.LaTeX(eq.Left) + " = " + expr.LaTeX(w.short.shorten(eq.Right)) + "$"
+	for i, q := range list {
+		if parts[i] = texEscape(q.words); q.words == "" {
+			parts[i] = "$" + expr.LaTeX(q.left) + " " + latexSign(q.sign) + " " + expr.LaTeX(q.right) + "$"
+		}
 	}
 	w.line("\\begin{quote}\\raggedright\\renewcommand{\\baselinestretch}{1.3}\\selectfont\n%s.\n\\end{quote}", strings.Join(parts, ",\\quad\n"))
 }
 
-func (w *texWriter) functions(r *report, of func(string) expr.Function) {
-	for _, name := range r.response.States() {
-		w.equation(expr.Sym(name), of(name).Node())
-	}
-	w.endEquations()
-}
-
-// conditionLaTeX writes a condition such as k1 != k2, and one in words as it is.
-func conditionLaTeX(s string) string {
-	list, err := expr.ParseRelations(s, unlimited)
-	if err != nil || len(list) != 1 {
-		return `\text{` + s + `}`
-	}
-	sign := map[string]string{"!=": `\neq`, ">=": `\geq`, ">": ">"}[list[0].Op]
-	return expr.LaTeX(list[0].Left) + " " + sign + " " + expr.LaTeX(list[0].Right)
-}
-
-func (r *report) latexModes(w texWriter) {
-	w.line(`\section*{Modes}`)
-	if len(r.modes) == 0 {
-		w.line("The model has no modes: its states follow the input at once.")
-		return
-	}
-	w.line("The irreducible factors of the characteristic polynomial:")
-	last := 0
-	for _, m := range r.modes {
-		if m.factor != last {
-			w.equation(m.polynomial(), m.factorNode)
-			last = m.factor
-		}
-	}
-	w.endEquations()
-	oscillating := oscillates(r.modes)
-	columns, head := "lrlll", "factor & mult. & eigenvalue & exact & time constant"
-	if oscillating {
-		columns, head = columns+"ll", head+" & damping ratio & period"
-	}
-	var lines []string
-	for _, m := range r.modes {
-		exact := ""
-		if m.exact.latex != "" && len(m.exact.text) < 24 {
-			exact = "$" + m.exact.latex + "$"
-		}
-		decimal := "$" + strings.NewReplacer("±", `\pm`, "i", `\,\mathrm{i}`).Replace(m.decimal()) + "$"
-		line := fmt.Sprintf("$%s$ & %d & %s & %s & %s", expr.LaTeX(m.name()), m.multiplicity, decimal, exact, texNumber(m.timeConstant()))
-		if oscillating {
-			line += " & " + texNumber(m.damping()) + " & " + texNumber(m.period())
-		}
-		lines = append(lines, line+" & "+m.remark())
-	}
-	w.table(columns+"l", head+" & ", lines)
-	w.line(`Time constant $-1/\operatorname{Re}$, damping ratio $-\operatorname{Re}/|s|$, period $2\pi/\operatorname{Im}$ of an eigenvalue $s$, in the time unit of the model.`)
-}
-
 // table writes a table, in pieces that fit on a page.
-func (w *texWriter) table(columns, head string, lines []string) {
-	const most = 30
-	for ; len(lines) > 0; lines = lines[min(len(lines), most):] {
-		w.line("\\begin{center}\\setlength{\\tabcolsep}{4pt}\\renewcommand{\\arraystretch}{1.25}\n\\begin{tabular}{%s}\n%s \\\\ \\hline", columns, head)
-		for _, l := range lines[:min(len(lines), most)] {
-			w.line(`%s \\`, l)
-		}
-		w.line("\\end{tabular}\n\\end{center}")
-	}
-}
-
-// texNumber sets a decimal number, with its power of ten as such.
-func texNumber(s string) string {
-	if s == "" {
-		return ""
-	}
-	if m, e, ok := strings.Cut(s, "e"); ok {
-		s = m + ` \cdot 10^{` + strings.TrimPrefix(e, "+") + "}"
-	}
-	return "$" + s + "$"
-}
-
-func (r *report) latexDefinitions(w texWriter) {
-	if len(w.short.definitions) == 0 {
-		return
-	}
-	w.line(`\section*{Abbreviations}`)
-	var numbers []definition
-	for _, d := range w.short.definitions {
-		if _, isNumber := d.right.(expr.Number); isNumber {
-			numbers = append(numbers, d)
+func (w *texWriter) table(t table) {
+	columns, heads := "", make([]string, len(t.columns))
+	for i, c := range t.columns {
+		heads[i] = texSpans(c.head)
+		if c.right {
+			columns += "r"
 		} else {
-			w.equation(d.left, d.right)
+			columns += "l"
 		}
 	}
-	w.endEquations()
-	for _, d := range numbers {
-		v := d.right.(expr.Number).Val
-		text := digits(v.Num().String())
-		if !v.IsInt() {
-			text += " / " + digits(v.Den().String())
+	for from := 0; from < len(t.rows); from += rowsPerTable {
+		w.line(`\begin{exhibit}{table}`)
+		if from == 0 {
+			w.line(`\caption{%s}\label{%s}`, texSpans(t.caption), t.label)
 		}
-		w.line("\\begin{quote}\\raggedright\\footnotesize $%s$ = %s\\end{quote}", expr.LaTeX(d.left), text)
+		w.line(`\small`)
+		w.line("\\begin{tabular}{%s}\n%s \\\\ \\hline", columns, strings.Join(heads, " & "))
+		for _, row := range t.rows[from:min(len(t.rows), from+rowsPerTable)] {
+			cells := make([]string, len(row))
+			for i, cell := range row {
+				cells[i] = texSpans(cell)
+			}
+			w.line(`%s \\`, strings.Join(cells, " & "))
+		}
+		w.line("\\hline\n\\end{tabular}\n\\end{exhibit}\n")
 	}
 }
 
@@ -311,39 +315,4 @@ func digits(s string) string {
 		s = s[10:]
 	}
 	return strings.Join(append(groups, s), `\hspace{0pt}`)
-}
-
-func (r *report) latexValues(w texWriter) {
-	if len(r.values) == 0 {
-		return
-	}
-	w.line(`\section*{Values}`)
-	w.line("To %d significant digits, every one proven, the last one rounded.", valueDigits)
-	names := r.response.States()
-	for from := 0; from < len(names); from += statesPerTable {
-		to := min(len(names), from+statesPerTable)
-		head := "$" + expr.LaTeXName(r.response.Model().Variable()) + "$ & " +
-			strings.Join(mapped(names[from:to], func(s string) string { return "$" + expr.LaTeXName(s) + "$" }), " & ")
-		var lines []string
-		for _, row := range r.values {
-			lines = append(lines, texNumber(timeText(row.time))+" & "+strings.Join(mapped(row.values[from:to], texNumber), " & "))
-		}
-		w.table("l"+strings.Repeat("r", to-from), head, lines)
-	}
-}
-
-func (r *report) latexProof(w texWriter) {
-	w.line(`\section*{Proof}`)
-	w.line("%s", texEscape(r.proofText()))
-}
-
-func (r *report) latexPlots(w texWriter) {
-	if len(r.curves) == 0 {
-		return
-	}
-	w.line(`\section*{Plots}`)
-	w.line("Range of time: $%s$ from %s to %s, %s.", expr.LaTeXName(r.response.Model().Variable()), timeText(r.window.from), timeText(r.window.to), texEscape(r.window.why))
-	for i, c := range r.curves {
-		w.line("\\begin{center}\n$%s$\\\\*[2pt]\n\\includegraphics[width=\\linewidth]{plot-%d.pdf}\n\\end{center}", expr.LaTeXName(c.name), i+1)
-	}
 }

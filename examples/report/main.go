@@ -1,7 +1,7 @@
 // Report derives the response of a model and writes what goes with it into a
 // folder: report.html, report.tex with its plots, and response.go.
 //
-//	report [-o DIR] [-model FILE] [-from T] [-to T]
+//	report [-o DIR] [-model FILE] [-from T] [-to T] [-assume RELATIONS]
 //
 // The model comes from the file, or else from standard input if something is
 // piped in, or else it is the built-in one, a refrigerated container. With
@@ -43,6 +43,11 @@ func run(ctx context.Context, args []string, stdin *os.File, stdout, stderr io.W
 	var from, to rationalFlag
 	flags.Var(&from, "from", "start of plots and values, a `time` such as 0 or 1/2; default the time of the side conditions")
 	flags.Var(&to, "to", "end of plots and values, a `time`; default from the modes")
+	var assume []string
+	flags.Func("assume", "`relations` that the symbols satisfy, such as \"k1 > k2 > 0\"; may be repeated", func(s string) error {
+		assume = append(assume, s)
+		return nil
+	})
 	if err := flags.Parse(args); err != nil {
 		return err
 	}
@@ -53,7 +58,7 @@ func run(ctx context.Context, args []string, stdin *os.File, stdout, stderr io.W
 	if err != nil {
 		return err
 	}
-	rep, err := derive(ctx, src, from.value, to.value)
+	rep, err := derive(ctx, src, from.value, to.value, assume...)
 	if err != nil {
 		return src.explain(err)
 	}

@@ -3,7 +3,6 @@ package main
 import (
 	"context"
 	"fmt"
-	"html/template"
 	"math"
 	"strconv"
 
@@ -17,8 +16,8 @@ type modeRow struct {
 	factor       int // number of the factor, from 1
 	factorNode   expr.Node
 	multiplicity int
-	exact        exactRoot
-	re, im       string // decimals; im is not negative
+	exact        expr.Node // in radicals, the upper one of a pair; nil if there are none
+	re, im       string    // decimals; im is not negative
 	sigma, omega float64
 	symbolic     string // the exact eigenvalue where it holds symbols
 }
@@ -33,7 +32,7 @@ func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 			if !x.IsNumber() {
 				row.symbolic = x.String()
 				if m.Degree <= 2 {
-					if row.exact, err = newExactRoot(row.symbolic, false); err != nil {
+					if row.exact, err = expr.Parse(row.symbolic, unlimited); err != nil {
 						return nil, err
 					}
 				}
@@ -49,7 +48,7 @@ func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 				continue // the other one of a pair
 			}
 			if m.Degree <= 2 {
-				if row.exact, err = newExactRoot(x.String(), row.omega > 0); err != nil {
+				if row.exact, err = expr.Parse(x.String(), unlimited); err != nil {
 					return nil, err
 				}
 			}
@@ -65,32 +64,6 @@ func (m modeRow) name() expr.Node { return expr.Sym(fmt.Sprintf("p_%d", m.factor
 // polynomial returns the name of the factor as a polynomial in s.
 func (m modeRow) polynomial() expr.Node {
 	return expr.Value{Name: fmt.Sprintf("p_%d", m.factor), At: expr.Sym("s")}
-}
-
-// exactRoot is an eigenvalue in radicals, a pair with its two signs; all is empty
-// if there are no radicals.
-type exactRoot struct {
-	text, latex string
-	html        template.HTML
-}
-
-// newExactRoot reads the eigenvalue in its text form, the upper one of a pair.
-func newExactRoot(text string, pair bool) (exactRoot, error) {
-	n, err := expr.Parse(text, unlimited)
-	if err != nil {
-		return exactRoot{}, err
-	}
-	if !pair {
-		return exactRoot{text, expr.LaTeX(n), formula(n)}, nil
-	}
-	// The imaginary part is the last term, or all there is.
-	if s, ok := n.(expr.Sum); ok {
-		last := len(s.Terms) - 1
-		re, im := s.Terms[0], s.Terms[last]
-		return exactRoot{re.String() + " ± " + im.String(), expr.LaTeX(re) + ` \pm ` + expr.LaTeX(im),
-			formula(re) + " ± " + formula(im)}, nil
-	}
-	return exactRoot{"± " + text, `\pm ` + expr.LaTeX(n), "± " + formula(n)}, nil
 }
 
 // unlimited reads what the library itself has written.
@@ -152,13 +125,3 @@ func (m modeRow) remark() string {
 
 // short writes a number with five significant digits.
 func short(x float64) string { return strconv.FormatFloat(x+0, 'g', 5, 64) }
-
-// oscillates tells whether there is a pair among the modes.
-func oscillates(modes []modeRow) bool {
-	for _, m := range modes {
-		if m.omega > 0 {
-			return true
-		}
-	}
-	return false
-}

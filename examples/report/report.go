@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"math/big"
 	"strings"
 
@@ -35,7 +36,10 @@ type report struct {
 	window     window
 	values     []valueRow
 	curves     []curve
-	short      *shortener // shared by the files, so that they use the same names
+	steps      []linsys.Step // the working, or nil
+	noWorking  string        // why there is none
+	short      *shortener
+	document   *document
 }
 
 // general tells whether constants or symbols are free: then there are no values.
@@ -47,20 +51,29 @@ type valueRow struct {
 	values []string
 }
 
-// derive does the mathematics; nil for from or to stands for the default.
-func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error) {
+// derive does the mathematics, under assumptions on the symbols; nil for from or
+// to stands for the default.
+func derive(ctx context.Context, src source, from, to *big.Rat, assume ...string) (*report, error) {
 	m, err := linsys.Read(src.text)
 	if err != nil {
 		return nil, err
 	}
-	names := m.States()
-	if len(names) == 0 {
+	if m, err = m.Assume(assume...); err != nil {
+		var e *expr.Error
+		if errors.As(err, &e) {
+			return nil, expr.Errorf(e.Kind, expr.Pos{}, "-assume, column %d: %s", e.Pos.Column, e.Message)
+		}
+		return nil, err
+	}
+	names := append(m.States(), m.Variable())
+	if len(m.States()) == 0 {
 		return nil, &linsys.Error{Kind: expr.WrongShape, Message: "the model has no states to report on"}
 	}
 	for _, eq := range m.Definitions() {
 		names = append(names, eq.Left.String())
 	}
-	r := &report{src: src, short: newShortener(names)}
+	names = append(names, m.Parameters()...)
+	r := &report{src: src, short: newShortener(m.Variable(), names)}
 	if r.response, err = m.ClosedForm(ctx); err != nil {
 		return nil, err
 	}
@@ -75,36 +88,48 @@ func derive(ctx context.Context, src source, from, to *big.Rat) (*report, error)
 	if r.modes, err = modeRows(ctx, r.response.Modes()); err != nil {
 		return nil, err
 	}
-	if r.general() {
-		return r, nil
+	if err := r.work(ctx); err != nil {
+		return nil, err
 	}
+	if !r.general() {
+		if err := r.evaluate(ctx, from, to); err != nil {
+			return nil, err
+		}
+	}
+	r.document, err = r.compose(ctx)
+	return r, err
+}
+
+// evaluate chooses the range of time, and computes values and curves in it.
+func (r *report) evaluate(ctx context.Context, from, to *big.Rat) error {
+	m := r.response.Model()
 	var steady []expr.Node
 	for _, name := range r.response.States() {
 		steady = append(steady, r.response.Steady(name).Node())
 	}
 	origin, err := algebra.ParseRat(m.Origin().String())
 	if err != nil {
-		return nil, expr.Errorf(expr.OutsideClass, expr.Pos{}, "the side conditions hold at the time %s; a report has values and curves from a rational time on", m.Origin())
+		return expr.Errorf(expr.OutsideClass, expr.Pos{}, "the side conditions hold at the time %s; a report has values and curves from a rational time on", m.Origin())
 	}
 	if r.window, err = chooseWindow(r.modes, inputFrequencies(steady, m.Variable()), origin.Big(), from, to); err != nil {
-		return nil, err
+		return err
 	}
 	for _, share := range []string{"0", "1/100", "1/20", "1/10", "1/5", "1/2", "3/4", "1"} {
 		x, _ := algebra.ParseRat(share)
 		row := valueRow{time: r.window.at(x.Big())}
 		if row.values, err = r.response.At(ctx, row.time, valueDigits); err != nil {
-			return nil, err
+			return err
 		}
 		r.values = append(r.values, row)
 	}
 	for _, name := range r.response.States() {
 		c, err := sample(ctx, name, r.response.State(name), r.window)
 		if err != nil {
-			return nil, err
+			return err
 		}
 		r.curves = append(r.curves, c)
 	}
-	return r, nil
+	return nil
 }
 
 // title is the first sentence of the notes.

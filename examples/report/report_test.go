@@ -68,6 +68,7 @@ func checkHTML(t *testing.T, page string) {
 	d := xml.NewDecoder(strings.NewReader(page))
 	d.Entity = xml.HTMLEntity
 	depth := 0
+	var ids, targets []string
 	for {
 		tok, err := d.Token()
 		if err == io.EOF {
@@ -79,13 +80,22 @@ func checkHTML(t *testing.T, page string) {
 			depth++
 			require.NotContains(t, []string{"script", "link", "img", "image", "iframe", "object"}, e.Name.Local)
 			for _, a := range e.Attr {
-				require.NotContains(t, []string{"src", "href"}, a.Name.Local)
+				require.NotEqual(t, "src", a.Name.Local)
+				if a.Name.Local == "href" {
+					require.True(t, strings.HasPrefix(a.Value, "#"), "a place in the page, not %s", a.Value)
+					targets = append(targets, a.Value[1:])
+				}
+				if a.Name.Local == "id" {
+					require.NotContains(t, ids, a.Value)
+					ids = append(ids, a.Value)
+				}
 			}
 		case xml.EndElement:
 			depth--
 		}
 	}
 	require.Zero(t, depth)
+	require.Subset(t, ids, targets)
 	require.NotContains(t, page, "@import")
 }
 
@@ -125,12 +135,38 @@ func checkTeX(t *testing.T, dir string) {
 		t.Log("pdflatex is not installed: the document is not compiled")
 		return
 	}
-	cmd := exec.Command("pdflatex", "-interaction=nonstopmode", "-halt-on-error", "-no-shell-escape", "report.tex")
-	cmd.Dir = dir
-	out, err := cmd.CombinedOutput()
-	require.NoError(t, err, "%s", out)
+	var out []byte
+	for range 2 { // the second time with the references
+		cmd := exec.Command("pdflatex", "-interaction=nonstopmode", "-halt-on-error", "-no-shell-escape", "report.tex")
+		cmd.Dir = dir
+		var err error
+		out, err = cmd.CombinedOutput()
+		require.NoError(t, err, "%s", out)
+	}
 	require.NotRegexp(t, `Overfull \\hbox \([0-9]{2,}`, string(out), "formulas must break")
+	require.NotContains(t, string(out), "undefined")
 	require.FileExists(t, filepath.Join(dir, "report.pdf"))
+	checkNumbers(t, dir)
+}
+
+// checkNumbers checks that LaTeX counts headings, tables and figures as the page
+// does.
+func checkNumbers(t *testing.T, dir string) {
+	t.Helper()
+	page := read(t, dir, "report.html")
+	labels := regexp.MustCompile(`\\newlabel\{((?:sec|tab|fig):[^}]*)\}\{\{([^}]*)\}`).FindAllStringSubmatch(read(t, dir, "report.aux"), -1)
+	require.NotEmpty(t, labels)
+	for _, m := range labels {
+		label, number := m[1], m[2]
+		at := strings.Index(page, `id="`+label+`"`)
+		require.Positive(t, at, label)
+		want := map[string]string{"sec": ">" + number + "\u2002", "tab": "<caption>Table " + number + ". ", "fig": "<figcaption>Figure " + number + ". "}[label[:3]]
+		begin := strings.Index(page[at:], want)
+		require.GreaterOrEqual(t, begin, 0, "%s is %s", label, number)
+		if label[:3] != "fig" { // a figure holds a drawing with names of its own
+			require.NotContains(t, page[at+1:at+begin], " id=", label)
+		}
+	}
 }
 
 // checkGo builds and runs response.go in a module of its own, and compares it
@@ -261,9 +297,10 @@ func TestSymbols(t *testing.T) {
 	page := read(t, dir, "report.html")
 	checkHTML(t, page)
 	checkTeX(t, dir)
-	require.Contains(t, page, "<code>m != 0</code>, <code>k != 0</code>")
+	require.Regexp(t, `hold for</p>\n<p class="inline">.*<mi>m</mi>.*≠.*<mn>0</mn>.*,.*<mi>k</mi>.*≠`, page)
+	require.Contains(t, page, "Remark: ")
 	require.Contains(t, page, "depends on the symbols")
-	require.Contains(t, read(t, dir, "report.tex"), `$m \neq 0$, $k \neq 0$`)
+	require.Contains(t, read(t, dir, "report.tex"), "$m \\neq 0$,\\quad\n$k \\neq 0$")
 	require.Contains(t, printed, "none: the symbols F, k, m have none")
 }
 
@@ -299,7 +336,7 @@ func TestLongFormulas(t *testing.T) {
 	checkTeX(t, dir)
 	src := read(t, dir, "report.tex")
 	require.Contains(t, src, `N_{1}(z) &= `)
-	require.Contains(t, src, `A_{1}`)
+	require.Contains(t, src, `K_{1}`)
 }
 
 func TestOverwritingIsTold(t *testing.T) {
@@ -377,4 +414,5 @@ func TestWindows(t *testing.T) {
 
 func TestTexEscape(t *testing.T) {
 	require.Equal(t, `\textbackslash{}a\{\}\$\&\#\%\_\^{}\~{}\textless{}\textgreater{} b`, texEscape("\\a{}$&#%_^~<>\nb"))
+	require.Equal(t, `Section~3: $-$\~{}$|$`, texWords("Section\u00a03: −~|"))
 }

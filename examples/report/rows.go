@@ -23,8 +23,10 @@ type definition struct {
 }
 
 // shortener replaces the parts of formulas that no line can hold by names:
-// polynomials in sums over roots, and long numbers. Equal parts share a name.
+// polynomials in sums over roots, long numbers, roots and coefficients. Equal
+// parts share a name.
 type shortener struct {
+	variable    string // what holds it is no coefficient
 	taken       map[string]bool
 	definitions []definition
 	names       map[string]expr.Node // by kind and text of what they stand for
@@ -33,8 +35,8 @@ type shortener struct {
 
 // newShortener returns a shortener whose names are not among those taken. Free
 // constants have no underscore, as its names do.
-func newShortener(taken []string) *shortener {
-	s := &shortener{taken: map[string]bool{}, names: map[string]expr.Node{}, counts: map[string]int{}}
+func newShortener(variable string, taken []string) *shortener {
+	s := &shortener{variable: variable, taken: map[string]bool{}, names: map[string]expr.Node{}, counts: map[string]int{}}
 	for _, name := range taken {
 		s.taken[name] = true
 	}
@@ -59,7 +61,11 @@ func (s *shortener) name(letter string, part, arg expr.Node) expr.Node {
 	s.names[key] = n
 	place := len(s.definitions)
 	s.definitions = append(s.definitions, definition{left: n})
-	if _, isNumber := part.(expr.Number); !isNumber {
+	switch v := part.(type) {
+	case expr.Number:
+	case expr.Call: // a root
+		part = expr.Call{Func: v.Func, Arg: s.shorten(v.Arg)}
+	default:
 		part = s.shorten(part)
 	}
 	s.definitions[place].right = part
@@ -79,14 +85,24 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 	case expr.Number:
 		if numberWidth(v.Val) > longNumber {
 			if v.Val.Sign() < 0 {
-				return expr.Neg{X: s.name("A", expr.Num(v.Val.Neg()), nil)}
+				return expr.Neg{X: s.name("K", expr.Num(v.Val.Neg()), nil)}
 			}
-			return s.name("A", n, nil)
+			return s.name("K", n, nil)
 		}
 	case expr.Sum:
 		return expr.Sum{Terms: each(v.Terms)}
 	case expr.Product:
-		return expr.Product{Factors: each(v.Factors)}
+		if width(n) <= rowWidth {
+			return expr.Product{Factors: each(v.Factors)}
+		}
+		out := make([]expr.Node, len(v.Factors))
+		for i, f := range v.Factors {
+			out[i] = s.shorten(f)
+			if _, isSum := out[i].(expr.Sum); isSum && width(out[i]) > rowWidth/2 && s.isCoefficient(f) {
+				out[i] = s.name("K", f, nil)
+			}
+		}
+		return expr.Product{Factors: out}
 	case expr.Quotient:
 		return expr.Quotient{Num: s.shorten(v.Num), Den: s.shorten(v.Den)}
 	case expr.Power:
@@ -94,6 +110,9 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 	case expr.Neg:
 		return expr.Neg{X: s.shorten(v.X)}
 	case expr.Call:
+		if isLongRoot(v) {
+			return s.name("R", v, nil)
+		}
 		return expr.Call{Func: v.Func, Arg: s.shorten(v.Arg)}
 	case expr.RootSum:
 		if width(n) <= rowWidth && !holdsLongNumber(n) {
@@ -105,6 +124,60 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 			poly = s.name("P", poly, z)
 		}
 		return expr.RootSum{Var: v.Var, Poly: poly, Body: s.shortenBody(v.Body, z)}
+	}
+	return n
+}
+
+// isLongRoot tells whether a square root gets a name.
+func isLongRoot(v expr.Call) bool { return v.Func == "sqrt" && width(v.Arg) > rowWidth/3 }
+
+// isCoefficient tells whether the time and the roots of sums do not occur.
+func (s *shortener) isCoefficient(n expr.Node) bool {
+	switch v := n.(type) {
+	case expr.Symbol:
+		return v.Name != s.variable
+	case expr.Value, expr.RootSum:
+		return false
+	}
+	free := true
+	expr.Children(n, func(c expr.Node) bool {
+		free = free && s.isCoefficient(c)
+		return free
+	})
+	return free
+}
+
+// roots returns n with names for long square roots, and all else as it is.
+func (s *shortener) roots(n expr.Node) expr.Node {
+	each := func(list []expr.Node) []expr.Node {
+		out := make([]expr.Node, len(list))
+		for i, x := range list {
+			out[i] = s.roots(x)
+		}
+		return out
+	}
+	switch v := n.(type) {
+	case expr.Sum:
+		return expr.Sum{Terms: each(v.Terms)}
+	case expr.Product:
+		return expr.Product{Factors: each(v.Factors)}
+	case expr.Quotient:
+		return expr.Quotient{Num: s.roots(v.Num), Den: s.roots(v.Den)}
+	case expr.Power:
+		return expr.Power{Base: s.roots(v.Base), Exp: v.Exp}
+	case expr.Neg:
+		return expr.Neg{X: s.roots(v.X)}
+	case expr.Call:
+		if isLongRoot(v) {
+			return s.name("R", v, nil)
+		}
+		return expr.Call{Func: v.Func, Arg: s.roots(v.Arg)}
+	case expr.Matrix:
+		out := expr.Matrix{}
+		for _, row := range v.Rows {
+			out.Rows = append(out.Rows, each(row))
+		}
+		return out
 	}
 	return n
 }
@@ -169,6 +242,18 @@ func width(n expr.Node) float64 {
 	switch v := n.(type) {
 	case expr.Number:
 		return numberWidth(v.Val)
+	case expr.Decimal:
+		return float64(len(v.Text))
+	case expr.Matrix:
+		total := 1.0
+		for j := range v.Rows[0] {
+			column := 0.0
+			for _, row := range v.Rows {
+				column = max(column, width(row[j]))
+			}
+			total += column + 2
+		}
+		return total
 	case expr.Symbol:
 		return nameWidth(v.Name)
 	case expr.Value:
@@ -226,7 +311,7 @@ func rows(n expr.Node, most float64) []string {
 	case expr.Sum:
 		return sumRows(v.Terms, most)
 	case expr.Neg:
-		out := rows(v.X, most-2)
+		out := rows(group(v.X), most-2)
 		out[0] = "-" + out[0]
 		return out
 	case expr.Product:
@@ -247,6 +332,28 @@ func rows(n expr.Node, most float64) []string {
 		return out
 	}
 	return []string{expr.LaTeX(n)}
+}
+
+// negated returns the expression that stands behind the minus sign of a term, if
+// it has one.
+func negated(n expr.Node) (expr.Node, bool) {
+	switch v := n.(type) {
+	case expr.Neg:
+		return group(v.X), true
+	case expr.Number:
+		if v.Val.Sign() < 0 {
+			return expr.Num(v.Val.Neg()), true
+		}
+	}
+	return nil, false
+}
+
+// group makes a sum a factor, so that it is written in parentheses.
+func group(n expr.Node) expr.Node {
+	if _, isSum := n.(expr.Sum); isSum {
+		return expr.Product{Factors: []expr.Node{n}}
+	}
+	return n
 }
 
 func factorsLaTeX(list []expr.Node) string {
@@ -274,10 +381,8 @@ func sumRows(terms []expr.Node, most float64) []string {
 	}
 	for i, t := range terms {
 		sign := "+ "
-		if v, ok := t.(expr.Neg); ok {
-			sign, t = "- ", v.X
-		} else if v, ok := t.(expr.Number); ok && v.Val.Sign() < 0 {
-			sign, t = "- ", expr.Num(v.Val.Neg())
+		if m, ok := negated(t); ok {
+			sign, t = "- ", m
 		}
 		if i == 0 {
 			sign = strings.TrimPrefix(sign, "+ ")

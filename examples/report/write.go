@@ -59,8 +59,10 @@ func (r *report) proofText() string {
 	if !p.Holds() {
 		return fmt.Sprintf("The proof does not hold. Residual of the equations: %s; of the side conditions: %s.", p.Residual(), p.Side())
 	}
-	s := fmt.Sprintf("The response was substituted into the %s as they were read. The residual, left side minus right side, is exactly 0 in every one",
-		count(len(p.Residuals), "equation", "equations"))
+	s := "The response was substituted into the equation as it was read. The residual, left side minus right side, is exactly 0"
+	if n := len(p.Residuals); n != 1 {
+		s = fmt.Sprintf("The response was substituted into the %d equations as they were read. The residual, left side minus right side, is exactly 0 in every one", n)
+	}
 	if len(p.Sides) > 0 {
 		s += fmt.Sprintf(", and the %s exactly", count(len(p.Sides), "side condition is met", "side conditions are met"))
 	}
