@@ -188,5 +188,5 @@ func TestAdjoinRefuses(t *testing.T) {
 		}
 		f = adj.Field
 	}
-	assert.Less(t, time.Since(start), time.Second)
+	assert.Less(t, time.Since(start), 5*time.Second) // with room for a busy machine
 }

@@ -502,7 +502,7 @@ func TestRootSetOfCancel(t *testing.T) {
 		if err := f(soon); !errors.Is(err, context.DeadlineExceeded) {
 			t.Errorf("%s: %v", what, err)
 		}
-		if d := time.Since(start); d > 2*time.Second { // 100 ms, with room for a busy machine and the race detector
+		if d := time.Since(start); d > 5*time.Second { // 100 ms, with room for a busy machine and the race detector
 			t.Errorf("%s: cancelled after %v", what, d)
 		}
 	}

@@ -147,11 +147,42 @@ func ExampleGoSource() {
 	// // Level returns the states at the time t:
 	// //
 	// //	level = 1 - exp(-t/5)*cos(2*t)
+	// //
+	// // Error: for 0 <= t <= 30 every value differs from the exact one by at most
+	// //
+	// //	Level  1.1e-15, or 6.7e-16 of its largest value there
+	// //
+	// // given that math.Exp is within 2 units in the last place, and math.Sin, math.Cos and
+	// // math.Sincos within 4 units of 2^-53.
 	// func Level(t float64) LevelState {
 	// 	e2 := math.Exp(-0.2 * t)
 	// 	c2 := math.Cos(2 * t)
 	// 	return LevelState{
 	// 		Level: 1 - e2*c2,
+	// 	}
+	// }
+	//
+	// // LevelValues returns the states at all times, in dst as far as it has room.
+	// func LevelValues(dst []LevelState, times []float64) []LevelState {
+	// 	dst = dst[:0]
+	// 	for _, t := range times {
+	// 		dst = append(dst, Level(t))
+	// 	}
+	// 	return dst
+	// }
+	//
+	// // LevelRates returns the derivatives of the states at the time t.
+	// //
+	// // Error: for 0 <= t <= 30 every value differs from the exact one by at most
+	// //
+	// //	Level  2.3e-15, or 1.5e-15 of its largest value there
+	// //
+	// // given the same of package math as for Level.
+	// func LevelRates(t float64) LevelState {
+	// 	e2 := math.Exp(-0.2 * t)
+	// 	s2, c2 := math.Sincos(2 * t)
+	// 	return LevelState{
+	// 		Level: e2 * (0.2*c2 + 2*s2),
 	// 	}
 	// }
 }

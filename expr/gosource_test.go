@@ -1,6 +1,7 @@
 package expr_test
 
 import (
+	"context"
 	"fmt"
 	"go/ast"
 	"go/format"
@@ -10,6 +11,7 @@ import (
 	"go/types"
 	"math"
 	"math/big"
+	"regexp"
 	"strconv"
 	"strings"
 	"testing"
@@ -77,7 +79,7 @@ func goValues(t *testing.T, file *ast.File, at float64, constants ...float64) ma
 	out := map[string]float64{}
 	for _, d := range file.Decls {
 		f, ok := d.(*ast.FuncDecl)
-		if !ok {
+		if !ok || strings.HasSuffix(f.Name.Name, "Values") || strings.HasSuffix(f.Name.Name, "Rates") {
 			continue
 		}
 		for _, s := range f.Body.List {
@@ -142,7 +144,8 @@ func TestGoSourceValues(t *testing.T) {
 func TestGoSourceConstants(t *testing.T) {
 	body := func(src string) string {
 		s := string(goSource(t, []string{"x"}, []expr.Function{function(t, src)}, nil, expr.GoOptions{}))
-		return s[strings.LastIndex(s, "func "):]
+		s, _, _ = strings.Cut(s[strings.Index(s, "func "):], "\n// ResponseValues")
+		return s
 	}
 	for _, c := range []struct{ src, want string }{
 		{"7", "func Response(_ float64) ResponseState {\n\treturn ResponseState{\n\t\tX: 7,\n\t}\n}\n"},
@@ -234,12 +237,89 @@ func TestGoSourceOptions(t *testing.T) {
 	f := []expr.Function{function(t, "exp(-t) + 1")}
 	for _, opt := range []expr.GoOptions{
 		{Package: "func"}, {Package: "a b"}, {Package: "_"}, {Package: "x\nimport \"os\""}, {Package: "1a"},
-		{Func: "func"}, {Func: "x.y"}, {Func: "f()"}, {Func: "_"}, {Func: "init"}, {Func: "main"}, {Func: "math"}, {Func: "float64"},
+		{Func: "func"}, {Func: "x.y"}, {Func: "f()"}, {Func: "_"}, {Func: "init"}, {Func: "main"}, {Func: "math"}, {Func: "float64"}, {Func: "append"},
 	} {
 		_, err := expr.GoSource(t.Context(), []string{"x"}, f, nil, opt)
 		assert.Equal(t, expr.Syntax, faultOf(t, err).kind, "%+v", opt)
 	}
-	for _, opt := range []expr.GoOptions{{Package: "main"}, {Func: "t"}, {Func: "e1"}, {Func: "tau"}, {Func: "c"}, {Package: "math"}, {Func: "é"}, {Func: "string"}, {Func: "X"}} {
-		checkGo(t, goSource(t, []string{"x"}, f, nil, opt))
+	for _, opt := range []expr.GoOptions{{Package: "main"}, {Func: "t"}, {Func: "e1"}, {Func: "tau"}, {Func: "c"}, {Package: "math"}, {Func: "é"}, {Func: "string"}, {Func: "X"}, {Func: "dst"}, {Func: "times"}, {Func: "p1"}, {Func: "ResponseRates"}, {Func: "testing"}} {
+		file := checkGo(t, goSource(t, []string{"x"}, f, nil, opt))
+		var names []string
+		for _, d := range file.Decls {
+			if d, ok := d.(*ast.FuncDecl); ok {
+				names = append(names, d.Name.Name)
+			}
+		}
+		if opt.Func == "" {
+			opt.Func = "Response"
+		}
+		assert.Equal(t, []string{opt.Func, opt.Func + "Values", opt.Func + "Rates"}, names)
+	}
+}
+
+// The test file is formatted, the same every time, and its names are legal.
+func TestGoTest(t *testing.T) {
+	fs := make([]expr.Function, len(hostileNames))
+	for i := range fs {
+		fs[i] = function(t, fmt.Sprintf("%d*exp(-t)", i+1))
+	}
+	fs[0] = function(t, "exp(-t) + sin(2*t)/3")
+	for name, want := range map[string]string{"": "TestResponseExact", "é": "TestÉExact", "_x": "Test_xExact", "Test": "TestTestExact", "ß": "Test_ßExact"} {
+		opt := expr.GoOptions{Func: name, Doc: hostileNames}
+		src, err := expr.GoTest(t.Context(), hostileNames, fs, nil, opt)
+		require.NoError(t, err)
+		file, err := parser.ParseFile(token.NewFileSet(), "response_test.go", src, 0)
+		require.NoError(t, err, "%s", src)
+		assert.NotNil(t, file.Scope.Lookup(want), want)
+		formatted, err := format.Source(src)
+		require.NoError(t, err)
+		require.Equal(t, string(formatted), string(src))
+		again, err := expr.GoTest(t.Context(), hostileNames, fs, nil, opt)
+		require.NoError(t, err)
+		require.Equal(t, string(src), string(again))
+	}
+	_, err := expr.GoTest(t.Context(), []string{"x"}, fs[:1], nil, expr.GoOptions{Func: "testing"})
+	assert.Equal(t, expr.Syntax, faultOf(t, err).kind)
+	_, err = expr.GoTest(t.Context(), []string{"x"}, []expr.Function{function(t, "k*t")}, nil, expr.GoOptions{})
+	assert.Equal(t, expr.NeedsAssumption, faultOf(t, err).kind)
+	_, err = expr.GoTest(t.Context(), nil, nil, nil, expr.GoOptions{})
+	require.NoError(t, err)
+	ctx, cancel := context.WithCancel(t.Context())
+	cancel()
+	_, err = expr.GoTest(ctx, hostileNames, fs, nil, expr.GoOptions{})
+	assert.Equal(t, expr.Cancelled, faultOf(t, err).kind)
+}
+
+// Exact values stand in comments where they are short and not what the constant
+// says by itself.
+func TestGoSourceExactValues(t *testing.T) {
+	for _, c := range []struct{ src, want, not string }{
+		{"exp(-t/3)/7", "// 0.3333333333333333 is 1/3, 0.14285714285714285 is 1/7.", ""},
+		{"exp(-t/10)*3/8 - 5", "", " is "},
+		{"cos(sqrt(2)*t)*sqrt(3)", "1.4142135623730951 is sqrt(2)", ""},
+		{"sin(sqrt(2)*t)/sqrt(2)", "0.7071067811865476 is ", ""},
+		{"exp(-t/7)*(cos(pi*t)/3 + t*sin(pi*t)/exp(1))", "3.141592653589793 is pi", ""},
+		{"exp(sqrt(3)*t)*sin(t)/sqrt(6) + sqrt(5)*t*exp(-sqrt(3)*t)", "1.7320508075688772 is sqrt(3)", ""},
+		{"exp(-pi*t) + pi^2", "9.869604401089358 is pi^2, 3.141592653589793 is pi.", ""},
+		{"exp(-(1 + sqrt(5))*t/2) + exp(-(1 - sqrt(5))*t/2)", "1.618033988749895 is ", ""},
+		{"sumroots(z, z^3 - z - 1, exp(z*t))", "1.324717957244746 is root(1, z^3 - z - 1)", ""},
+		{"exp(-123456789012345678901234567890123/1000000000000000000000000000000001*t)", "", "123456789012345678901234567890123/1000000000000000000000000000000001."},
+	} {
+		src := string(goSource(t, []string{"x"}, []expr.Function{function(t, c.src)}, nil, expr.GoOptions{}))
+		_, body, _ := strings.Cut(src, "func Response(")
+		body = strings.ReplaceAll(body, "\n\t// ", " ")
+		body = strings.Replace(body, "{ ", "{\n\t// ", 1)
+		assert.Contains(t, body, c.want, "%s", src)
+		for _, m := range regexp.MustCompile(`([0-9.e+-]+) is ([^,]*?)(?:, |\.\n)`).FindAllStringSubmatch(body, -1) {
+			if strings.Contains(m[2], "root(") {
+				continue
+			}
+			x, err := strconv.ParseFloat(m[1], 64)
+			require.NoError(t, err)
+			assert.Equal(t, x, floatAt(t, function(t, m[2]), new(big.Rat)), "%s", m[0])
+		}
+		if c.not != "" {
+			assert.NotContains(t, body, c.not)
+		}
 	}
 }

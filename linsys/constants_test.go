@@ -298,7 +298,7 @@ func TestLargeSymbolicModels(t *testing.T) {
 					t.Errorf("conditions: %v", err)
 				}
 			}
-			assert.Less(t, time.Since(start), 10*time.Second)
+			assert.Less(t, time.Since(start), 90*time.Second) // with room for a busy machine and the race detector
 		})
 	}
 }
@@ -315,7 +315,7 @@ func TestSymbolicCancellation(t *testing.T) {
 			_, err := m.ClosedForm(ctx)
 			took := time.Since(start)
 			cancel()
-			assert.Less(t, took, after+500*time.Millisecond, "%.60s ... (%v)", model, err)
+			assert.Less(t, took, after+4*time.Second, "%.60s ... (%v)", model, err)
 			if after == 0 {
 				var e *linsys.Error
 				require.ErrorAs(t, err, &e)
@@ -341,7 +341,7 @@ func TestConstantFieldCancellation(t *testing.T) {
 		r, err := m.ClosedForm(ctx)
 		took := time.Since(start)
 		cancel()
-		assert.Less(t, took, time.Second, model)
+		assert.Less(t, took, 8*time.Second, model)
 		var e *linsys.Error
 		if err == nil {
 			assert.True(t, r.Proof().Holds())

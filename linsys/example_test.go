@@ -227,11 +227,42 @@ func ExampleResponse_GoSource() {
 	// // Response returns the states at the time t:
 	// //
 	// //	x = exp(-t)*cos(2*t)
+	// //
+	// // Error: for 0 <= t <= 5 every value differs from the exact one by at most
+	// //
+	// //	X  1.1e-15, or 1.1e-15 of its largest value there
+	// //
+	// // given that math.Exp is within 2 units in the last place, and math.Sin, math.Cos and
+	// // math.Sincos within 4 units of 2^-53.
 	// func Response(t float64) ResponseState {
 	// 	e1 := math.Exp(-t)
 	// 	c1 := math.Cos(2 * t)
 	// 	return ResponseState{
 	// 		X: e1 * c1,
+	// 	}
+	// }
+	//
+	// // ResponseValues returns the states at all times, in dst as far as it has room.
+	// func ResponseValues(dst []ResponseState, times []float64) []ResponseState {
+	// 	dst = dst[:0]
+	// 	for _, t := range times {
+	// 		dst = append(dst, Response(t))
+	// 	}
+	// 	return dst
+	// }
+	//
+	// // ResponseRates returns the derivatives of the states at the time t.
+	// //
+	// // Error: for 0 <= t <= 5 every value differs from the exact one by at most
+	// //
+	// //	X  1.9e-15, or 1.4e-15 of its largest value there
+	// //
+	// // given the same of package math as for Response.
+	// func ResponseRates(t float64) ResponseState {
+	// 	e1 := math.Exp(-t)
+	// 	s1, c1 := math.Sincos(2 * t)
+	// 	return ResponseState{
+	// 		X: e1 * (-c1 - 2*s1),
 	// 	}
 	// }
 }

@@ -184,7 +184,7 @@ func TestFactorCancelled(t *testing.T) {
 	start := time.Now()
 	_, _, err = FactorZ(ctx, p)
 	require.ErrorIs(t, err, context.DeadlineExceeded)
-	require.Less(t, time.Since(start), time.Second)
+	require.Less(t, time.Since(start), 5*time.Second)
 }
 
 // countdown is a context that is cancelled when it has been asked often enough.

@@ -162,7 +162,7 @@ func TestGCDCancelledOnTheWay(t *testing.T) {
 			_, err := GCD(ctx, p, q)
 			require.ErrorIs(t, err, context.DeadlineExceeded)
 			// The promise is 100 ms; the race detector and a busy machine get a factor.
-			require.Less(t, time.Since(start)-after, time.Second)
+			require.Less(t, time.Since(start)-after, 5*time.Second)
 		})
 	}
 }
