@@ -276,22 +276,6 @@ func isNumber(x Node, n int64) bool {
 	return ok && v.Val.Equal(algebra.RatFromInt(n))
 }
 
-// PolyNode returns the polynomial over Q in the variable v, highest power first.
-func PolyNode(p algebra.Poly[algebra.Rat], v Node) Node {
-	var terms []Node
-	for i := p.Degree(); i >= 0; i-- {
-		c := p.Coef(i)
-		switch {
-		case c.IsZero():
-		case i == 0:
-			terms = append(terms, signedNum(c))
-		default:
-			terms = append(terms, Mul(Num(c), Pow(v, i)))
-		}
-	}
-	return Add(terms...)
-}
-
 // signedNum returns c with its sign as a Neg, so that sums print differences.
 func signedNum(c algebra.Rat) Node {
 	if c.Sign() < 0 {

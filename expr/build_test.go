@@ -43,8 +43,8 @@ func TestBuild(t *testing.T) {
 		{"first power", expr.Pow(x, 1), "x"},
 		{"power", expr.Pow(expr.Add(x, y), 3), "(x + y)^3"},
 		{"derivatives", expr.Add(expr.Derivative("x", 0), expr.Derivative("x", 2), expr.ValueAt("x", 1, algebra.NewRat(-1, 2))), "x + x'' + x'(-1/2)"},
-		{"zero polynomial", expr.PolyNode(algebra.Poly[algebra.Rat]{}, x), "0"},
-		{"polynomial", expr.PolyNode(algebra.PolyFromInts(-1, 0, 1, -3), x), "-3*x^3 + x^2 - 1"},
+		{"zero polynomial", expr.PolyNodeOf(algebra.Q, algebra.Poly[algebra.Rat]{}, x), "0"},
+		{"polynomial", expr.PolyNodeOf(algebra.Q, algebra.PolyFromInts(-1, 0, 1, -3), x), "-3*x^3 + x^2 - 1"},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			assert.Equal(t, c.want, c.n.String())

@@ -393,6 +393,19 @@ func (g *Constants) carry(c *Constants, values []Constant) {
 		}
 		return y
 	}
+	g.take(c, to)
+	g.table = c.table
+	g.FunctionField = g.build()
+	if root, ok := c.Root(); ok {
+		g.FunctionField = g.FunctionField.WithRoot(root)
+	}
+	if isSurd {
+		g.FunctionField = g.FunctionField.WithSurd(surd)
+	}
+}
+
+// take maps the formals of g, and the generators and assumptions of c into g.
+func (g *Constants) take(c *Constants, to func(Constant) Constant) {
 	for i, f := range g.formals {
 		g.formals[i].arg = to(f.arg)
 	}
@@ -403,14 +416,6 @@ func (g *Constants) carry(c *Constants, values []Constant) {
 	g.assumed = c.assumed.mapped(to)
 	for _, x := range c.implied {
 		g.implied = append(g.implied, to(x))
-	}
-	g.table = c.table
-	g.FunctionField = g.build()
-	if root, ok := c.Root(); ok {
-		g.FunctionField = g.FunctionField.WithRoot(root)
-	}
-	if isSurd {
-		g.FunctionField = g.FunctionField.WithSurd(surd)
 	}
 }
 
@@ -428,20 +433,10 @@ func (c *Constants) adjoin(h generator, adj algebra.Adjunction) *Constants {
 		}
 		return y
 	}
-	for i, f := range c.formals {
-		g.formals[i].arg = to(f.arg)
-	}
-	for _, old := range c.generators {
-		old.arg, old.value = to(old.arg), to(old.value)
-		g.generators = append(g.generators, old)
-	}
+	g.take(c, to)
 	h.arg, h.value = to(h.arg), adj.New
 	h.degree = adj.Field.Degree() / c.Degree()
 	g.generators = append(g.generators, h)
-	g.assumed = c.assumed.mapped(to)
-	for _, x := range c.implied {
-		g.implied = append(g.implied, to(x))
-	}
 	g.FunctionField = adj.Field
 	root, _ := adj.Field.Root()
 	g.FunctionField = g.build().WithRoot(root)

@@ -74,13 +74,6 @@ func (s *shortener) name(letter string, part, arg expr.Node) expr.Node {
 
 // shorten returns n with names for what is too long.
 func (s *shortener) shorten(n expr.Node) expr.Node {
-	each := func(list []expr.Node) []expr.Node {
-		out := make([]expr.Node, len(list))
-		for i, x := range list {
-			out[i] = s.shorten(x)
-		}
-		return out
-	}
 	switch v := n.(type) {
 	case expr.Number:
 		if numberWidth(v.Val) > longNumber {
@@ -89,11 +82,9 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 			}
 			return s.name("K", n, nil)
 		}
-	case expr.Sum:
-		return expr.Sum{Terms: each(v.Terms)}
 	case expr.Product:
 		if width(n) <= rowWidth {
-			return expr.Product{Factors: each(v.Factors)}
+			break
 		}
 		out := make([]expr.Node, len(v.Factors))
 		for i, f := range v.Factors {
@@ -103,17 +94,10 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 			}
 		}
 		return expr.Product{Factors: out}
-	case expr.Quotient:
-		return expr.Quotient{Num: s.shorten(v.Num), Den: s.shorten(v.Den)}
-	case expr.Power:
-		return expr.Power{Base: s.shorten(v.Base), Exp: v.Exp}
-	case expr.Neg:
-		return expr.Neg{X: s.shorten(v.X)}
 	case expr.Call:
 		if isLongRoot(v) {
 			return s.name("R", v, nil)
 		}
-		return expr.Call{Func: v.Func, Arg: s.shorten(v.Arg)}
 	case expr.RootSum:
 		if width(n) <= rowWidth && !holdsLongNumber(n) {
 			return n
@@ -125,7 +109,7 @@ func (s *shortener) shorten(n expr.Node) expr.Node {
 		}
 		return expr.RootSum{Var: v.Var, Poly: poly, Body: s.shortenBody(v.Body, z)}
 	}
-	return n
+	return within(n, s.shorten)
 }
 
 // isLongRoot tells whether a square root gets a name.
@@ -149,10 +133,18 @@ func (s *shortener) isCoefficient(n expr.Node) bool {
 
 // roots returns n with names for long square roots, and all else as it is.
 func (s *shortener) roots(n expr.Node) expr.Node {
+	if v, ok := n.(expr.Call); ok && isLongRoot(v) {
+		return s.name("R", v, nil)
+	}
+	return within(n, s.roots)
+}
+
+// within returns n with f of its parts; values and sums over roots stay.
+func within(n expr.Node, f func(expr.Node) expr.Node) expr.Node {
 	each := func(list []expr.Node) []expr.Node {
 		out := make([]expr.Node, len(list))
 		for i, x := range list {
-			out[i] = s.roots(x)
+			out[i] = f(x)
 		}
 		return out
 	}
@@ -162,16 +154,13 @@ func (s *shortener) roots(n expr.Node) expr.Node {
 	case expr.Product:
 		return expr.Product{Factors: each(v.Factors)}
 	case expr.Quotient:
-		return expr.Quotient{Num: s.roots(v.Num), Den: s.roots(v.Den)}
+		return expr.Quotient{Num: f(v.Num), Den: f(v.Den)}
 	case expr.Power:
-		return expr.Power{Base: s.roots(v.Base), Exp: v.Exp}
+		return expr.Power{Base: f(v.Base), Exp: v.Exp}
 	case expr.Neg:
-		return expr.Neg{X: s.roots(v.X)}
+		return expr.Neg{X: f(v.X)}
 	case expr.Call:
-		if isLongRoot(v) {
-			return s.name("R", v, nil)
-		}
-		return expr.Call{Func: v.Func, Arg: s.roots(v.Arg)}
+		return expr.Call{Func: v.Func, Arg: f(v.Arg)}
 	case expr.Matrix:
 		out := expr.Matrix{}
 		for _, row := range v.Rows {

@@ -154,11 +154,6 @@ func (s *accumulator) addProduct(a, b int64) {
 	s.w2 += uint64(int64(hi)>>63) + carry
 }
 
-// subProduct subtracts a b.
-func (s *accumulator) subProduct(a, b int64) {
-	s.addProduct(-a, b) // |a| < 2^63
-}
-
 // isZero reports whether the sum is 0.
 func (s *accumulator) isZero() bool { return s.w0|s.w1|s.w2 == 0 }
 
