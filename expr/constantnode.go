@@ -436,32 +436,7 @@ func (d *display) product(p algebra.Fraction) (algebra.Rat, []factorNode) {
 		sums = append(sums, factorNode{d.sum(f.Base), -1, f.Exp})
 	}
 	sort.SliceStable(names, func(i, j int) bool { return d.before(names[i].variable, names[j].variable) })
-	c, names = d.joinRoots(c, names)
 	return c, append(names, sums...)
-}
-
-// joinRoots writes the product of square roots of integers as one.
-func (d *display) joinRoots(c algebra.Rat, factors []factorNode) (algebra.Rat, []factorNode) {
-	radicand := algebra.RatFromInt(1)
-	count := 0
-	var out []factorNode
-	for _, f := range factors {
-		if f.variable >= 0 && f.exp == 1 {
-			if g := d.vars[f.variable].generator; g != nil && g.q == 2 {
-				if r, ok := d.from.Rational(g.arg); ok {
-					radicand = radicand.Mul(r)
-					count++
-					continue
-				}
-			}
-		}
-		out = append(out, f)
-	}
-	if count < 2 {
-		return c, factors
-	}
-	outer, m := algebra.SqrtParts(radicand)
-	return c.Mul(outer), append([]factorNode{{sqrtNode(m), -1, 1}}, out...)
 }
 
 // before puts square roots and pi before symbols, and functions last.
@@ -547,8 +522,7 @@ func (d *display) sum(p algebra.Fraction) Node {
 			}
 		}
 		sort.SliceStable(factors, func(i, j int) bool { return d.before(factors[i].variable, factors[j].variable) })
-		c, factors := d.joinRoots(algebra.RatFromBigInt(t.Coef), factors)
-		nodes := []Node{Num(c)}
+		nodes := []Node{Num(algebra.RatFromBigInt(t.Coef))}
 		for _, f := range factors {
 			nodes = append(nodes, Pow(f.base, f.exp))
 		}
