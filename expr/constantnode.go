@@ -361,9 +361,18 @@ func (d *display) write(y algebra.Fraction) Node {
 				exponent = d.from.Add(exponent, d.from.Mul(n, d.vars[f.variable].arg))
 				continue
 			}
-			out = append(out, Pow(f.base, f.exp))
+			out = append(out, powerNode(f.base, f.exp))
 		}
 		return out
+	}
+	if c.Sign() < 0 { // b - a rather than -(a - b)
+		for i, f := range top {
+			if s, ok := f.base.(Sum); ok && f.exp%2 == 1 && 2*negatedIn(s) >= len(s.Terms) {
+				top[i].base = negatedSum(s)
+				c = c.Neg()
+				break
+			}
+		}
 	}
 	above, below := collect(top, 1), collect(bottom, -1)
 	if !d.from.IsZero(exponent) {
@@ -371,7 +380,7 @@ func (d *display) write(y algebra.Fraction) Node {
 	}
 	if len(below) == 0 {
 		if len(above) == 1 && c.Equal(algebra.RatFromInt(-1)) {
-			if sum, ok := above[0].(Sum); ok && slices.ContainsFunc(sum.Terms, isNegated) {
+			if sum, ok := above[0].(Sum); ok && negatedIn(sum) > 0 {
 				return negatedSum(sum)
 			}
 		}
@@ -386,9 +395,30 @@ func (d *display) write(y algebra.Fraction) Node {
 	return Div(n, m)
 }
 
+// powerNode returns base^n for n >= 1: of the root 2^(1/3) the square 2^(2/3).
+func powerNode(base Node, n int) Node {
+	if p, ok := base.(Power); ok && n > 1 {
+		if e, ok := p.Exp.(Number); ok {
+			e.Val = e.Val.Mul(algebra.RatFromInt(int64(n)))
+			return Power{Base: p.Base, Exp: e}
+		}
+	}
+	return Pow(base, n)
+}
+
 func isNegated(n Node) bool {
 	_, ok := n.(Neg)
 	return ok
+}
+
+// negatedIn counts the terms that are subtracted.
+func negatedIn(s Sum) (n int) {
+	for _, t := range s.Terms {
+		if isNegated(t) {
+			n++
+		}
+	}
+	return n
 }
 
 // negatedSum returns -(a - b + ...) as a sum, positive terms first.
@@ -488,17 +518,23 @@ func (d *display) variable(p algebra.Fraction) int {
 	return at
 }
 
-// ordered returns the terms by falling degree, positive ones first among equals.
+// ordered returns the terms by falling degree in what are no algebraic numbers,
+// rational ones before the others: 2 + sqrt(3).
 func (d *display) ordered(p algebra.Fraction) []algebra.Term {
 	terms := p.Numerator()
-	degree := func(t algebra.Term) int {
+	degree := func(t algebra.Term, roots bool) int {
 		n := 0
-		for _, e := range t.Exp {
-			n += e
+		for i, e := range t.Exp[1:] {
+			if (d.vars[i].generator != nil) == roots {
+				n += e
+			}
 		}
 		return n
 	}
-	sort.SliceStable(terms, func(i, j int) bool { return degree(terms[i]) > degree(terms[j]) })
+	sort.SliceStable(terms, func(i, j int) bool {
+		a, b := degree(terms[i], false), degree(terms[j], false)
+		return a > b || a == b && degree(terms[i], true) < degree(terms[j], true)
+	})
 	return terms
 }
 
@@ -524,7 +560,7 @@ func (d *display) sum(p algebra.Fraction) Node {
 		sort.SliceStable(factors, func(i, j int) bool { return d.before(factors[i].variable, factors[j].variable) })
 		nodes := []Node{Num(algebra.RatFromBigInt(t.Coef))}
 		for _, f := range factors {
-			nodes = append(nodes, Pow(f.base, f.exp))
+			nodes = append(nodes, powerNode(f.base, f.exp))
 		}
 		if !d.from.IsZero(exponent) {
 			nodes = append(nodes, Apply("exp", d.from.Node(exponent)))

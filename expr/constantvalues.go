@@ -305,8 +305,8 @@ func (c *Constants) cosSinPi(r algebra.Rat, at Pos) (cos, sin Constant, err erro
 	return cos, sin, err
 }
 
-// cosPi returns cos(r pi): in radicals where the denominator of r is a product
-// of 5, 3 and a power of 2, as a named cosine otherwise.
+// cosPi returns cos(r pi): in radicals where the denominator of r is 8 or a
+// product of 5, 3 and 4, as a named cosine otherwise.
 func (c *Constants) cosPi(r algebra.Rat, at Pos) (Constant, error) {
 	den, ok := algebra.RatFromBigInt(r.Den()).Int64()
 	if !ok || den > 8*mostAlgebraic {
@@ -337,7 +337,10 @@ func (c *Constants) cosPi(r algebra.Rat, at Pos) (Constant, error) {
 		return c.Mul(c.FromRat(algebra.NewRat(1, 4)), c.Add(five, c.FromInt(3-2*num))), err
 	case den == 6:
 		return c.NthRoot(c.FromRat(algebra.NewRat(3, 4)), 2, at)
-	case den == 10 || den&(den-1) == 0: // the half of an angle
+	case den == 8 || den == 10: // the half of an angle
+		if x, ok := c.knownCosine(r); ok {
+			return x, nil
+		}
 		double, err := c.cosPi(r.Mul(algebra.RatFromInt(2)), at)
 		if err != nil {
 			return double, err
@@ -396,15 +399,12 @@ func splitFraction(r algebra.Rat, d int64) (a, b algebra.Rat, ok bool) {
 // T_q(y) - (-1)^p, r = p/q, with the Chebyshev polynomial T_q; by the square of
 // the sine where that is in the field.
 func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
-	complement := algebra.NewRat(1, 2).Sub(r)
-	for _, g := range c.generators {
-		switch {
-		case g.q == 0 && g.angle.Equal(r):
-			return g.value, nil
-		case g.q == 0 && g.angle.Equal(complement):
-			p := algebra.NewPoly[Constant](c, c.Sub(c.Mul(g.value, g.value), c.One()), c.Zero(), c.One())
-			return c.algebraic(p, cosPiBall(r), generator{angle: r}, at)
-		}
+	if x, ok := c.knownCosine(r); ok {
+		return x, nil
+	}
+	if sin, ok := c.knownCosine(algebra.NewRat(1, 2).Sub(r)); ok {
+		p := algebra.NewPoly[Constant](c, c.Sub(c.Mul(sin, sin), c.One()), c.Zero(), c.One())
+		return c.algebraic(p, cosPiBall(r), generator{angle: r}, at)
 	}
 	q, _ := algebra.RatFromBigInt(r.Den()).Int64()
 	before, chebyshev := algebra.PolyFromInts(1), algebra.PolyFromInts(0, 1)
@@ -420,6 +420,49 @@ func (c *Constants) cosine(r algebra.Rat, at Pos) (Constant, error) {
 		return Constant{}, err
 	}
 	return c.algebraic(c.overConstants(p), cosPiBall(r), generator{angle: r}, at)
+}
+
+// knownCosine returns cos(r pi) where a cosine that the field was made for gives
+// it: that of a part of the angle, or of the angle to pi.
+func (c *Constants) knownCosine(r algebra.Rat) (Constant, bool) {
+	for _, g := range c.generators {
+		if g.q > 0 {
+			continue
+		}
+		if n, ok := multipleOfTurn(r, g.angle); ok {
+			return c.chebyshev(n, g.value), true
+		}
+		if n, ok := multipleOfTurn(algebra.RatFromInt(1).Sub(r), g.angle); ok {
+			return c.Neg(c.chebyshev(n, g.value)), true
+		}
+	}
+	return Constant{}, false
+}
+
+// multipleOfTurn returns an n with cos(r pi) = cos(n a pi), if there is one.
+func multipleOfTurn(r, a algebra.Rat) (n int, ok bool) {
+	two := algebra.RatFromInt(2)
+	sum := algebra.Rat{}
+	for n = 1; ; n++ {
+		if sum = sum.Add(a); sum.Compare(two) >= 0 {
+			sum = sum.Sub(two)
+		}
+		switch {
+		case sum.Equal(r), two.Sub(sum).Equal(r):
+			return n, true
+		case sum.IsZero():
+			return 0, false
+		}
+	}
+}
+
+// chebyshev returns T_n(x): cos(nb) for x = cos(b).
+func (c *Constants) chebyshev(n int, x Constant) Constant {
+	before, value := c.One(), x
+	for range n - 1 {
+		before, value = value, c.Sub(c.Mul(c.FromInt(2), c.Mul(x, value)), before)
+	}
+	return value
 }
 
 // cosPiBall encloses cos(r pi).
@@ -478,6 +521,14 @@ func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
 	x = c.Mul(c.FromRat(algebra.RatFromBigInt(inner)), rest)
 	if c.Equal(x, c.One()) {
 		return scale, nil
+	}
+	if base, e := perfectPower(inner); e > 1 && c.Equal(rest, c.One()) { // 36^(1/3) is (6^(1/3))^2
+		y, err := c.NthRoot(c.FromRat(algebra.RatFromBigInt(base)), q, at)
+		if err != nil {
+			return y, err
+		}
+		y, err = c.power(y, int64(e))
+		return c.Mul(scale, y), err
 	}
 	coefs := make([]Constant, q+1)
 	coefs[0], coefs[q] = c.Neg(x), c.One()
@@ -544,6 +595,21 @@ func (c *Constants) surd(x Constant, q int, at Pos) (Constant, error) {
 		return Constant{}, outside("one square root with symbols is taken, and no other roots beside it")
 	}
 	return Constant{}, &growth{c.withSurd(inner, den)}
+}
+
+// perfectPower returns n = base^e with the largest e, for n > 1.
+func perfectPower(n *big.Int) (base *big.Int, e int) {
+	base, e = n, 1
+	for p := 2; p < base.BitLen(); p++ {
+		for {
+			r, ok := exactRoot(base, p)
+			if !ok {
+				break
+			}
+			base, e = r, e*p
+		}
+	}
+	return base, e
 }
 
 // powerParts returns n = outer^q inner with an inner that is not divisible by

@@ -48,7 +48,7 @@
 //	exponent  = primary [ "^" [ sign ] exponent ]
 //	primary   = number | "(" expr ")" | call | value | "sumroots" "(" name "," expr "," expr ")"
 //	call      = function [ "^" number | superscript ] "(" expr ")"
-//	function  = "exp" | "sin" | "cos" | "sinh" | "cosh" | "sqrt" | "step" | "impulse"
+//	function  = "exp" | "sin" | "cos" | "sinh" | "cosh" | "sqrt" | "step" | "impulse" | "atan"
 //	value     = name { "'" } [ "(" expr ")" ]
 //
 // Numbers are exact, 0.35 is 7/20 and 1e-3 is 1/1000. The sign of a product may

@@ -104,7 +104,7 @@ func ExampleParse() {
 	fmt.Println(expr.LaTeX(n))
 	// Output:
 	// -k₁*x + sqrt(2)/2*sin(ω*t)^2 <nil>
-	// -k_{1} x + \frac{\sqrt{2}}{2} \sin(\omega t)^{2}
+	// -k_{1} x + \frac{\sqrt{2}}{2} \sin^{2}(\omega t)
 }
 
 func ExampleParseModel() {

@@ -96,16 +96,13 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 // roots hold exp(z*(t - c)), the function is held in the local time of c.
 func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
 	defer catchLimit(&err)
-	f, err = functionOf(n, variable, nil, limits)
-	if err == nil {
-		return f, nil
-	}
 	if s, ok := n.(Sum); ok {
-		if g, ok := sumByRoots(s, variable, limits); ok {
+		if g, ok := sumByNumbers(s, variable, limits); ok {
 			return g, nil
 		}
 	}
-	if !hasRootSum(n) {
+	f, err = functionOf(n, variable, nil, limits)
+	if err == nil || !hasRootSum(n) {
 		return f, err
 	}
 	if origin := originIn(n, variable); origin != nil {
@@ -116,19 +113,19 @@ func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) 
 	return f, err
 }
 
-// sumByRoots reads the terms of a sum in groups with the same square roots: each
-// group may be rational where all roots together are beyond the limit.
-func sumByRoots(s Sum, variable string, limits Limits) (Function, bool) {
+// sumByNumbers reads the terms of a sum in groups with the same algebraic numbers:
+// each group may be rational, while a field for the numbers of all is large.
+func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
 	var keys []string
 	groups := map[string][]Node{}
 	for _, t := range s.Terms {
-		key := strings.Join(rootsIn(t), " ")
+		key := strings.Join(numbersIn(t), " ")
 		if groups[key] == nil {
 			keys = append(keys, key)
 		}
 		groups[key] = append(groups[key], t)
 	}
-	if len(keys) < 2 {
+	if len(keys) < 2 || len(keys) == 2 && groups[""] != nil && !hasRootSum(s) {
 		return Function{}, false
 	}
 	var sum exact
@@ -146,14 +143,28 @@ func sumByRoots(s Sum, variable string, limits Limits) (Function, bool) {
 	return Function{variable, sum}, true
 }
 
-// rootsIn returns the radicands of the square roots in a tree, sorted.
-func rootsIn(n Node) []string {
+// numbersIn tells the algebraic numbers in a tree, sorted: radicands, and the
+// fractions of pi whose cosines and sines occur.
+func numbersIn(n Node) []string {
 	var out []string
+	note := func(s string) {
+		if !slices.Contains(out, s) {
+			out = append(out, s)
+		}
+	}
 	var visit func(n Node)
 	visit = func(n Node) {
-		if c, ok := n.(Call); ok && c.Func == "sqrt" {
-			if s := c.Arg.String(); !slices.Contains(out, s) {
-				out = append(out, s)
+		switch v := n.(type) {
+		case Call:
+			switch q, quotient := v.Arg.(Quotient); {
+			case v.Func == "sqrt":
+				note("sqrt " + v.Arg.String())
+			case (v.Func == "cos" || v.Func == "sin") && quotient && isOnlyPi(q.Num):
+				note("pi/" + q.Den.String())
+			}
+		case Power:
+			if e, ok := v.Exp.(Number); ok && !e.Val.IsInt() {
+				note(v.Base.String() + "^1/" + e.Val.Den().String())
 			}
 		}
 		Children(n, func(c Node) bool {
@@ -164,6 +175,12 @@ func rootsIn(n Node) []string {
 	visit(n)
 	slices.Sort(out)
 	return out
+}
+
+// isOnlyPi tells whether n is a multiple of pi.
+func isOnlyPi(n Node) bool {
+	names := Names(n)
+	return len(names) == 1 && names[0] == "pi"
 }
 
 // functionOf reads a tree in the local time of an origin, nil for 0.

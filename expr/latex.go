@@ -228,7 +228,7 @@ func (l latex) power(base, exp piece) piece {
 	return piece{l.wrap(base, precAtom) + "^{" + exp.text + "}", precPower}
 }
 
-func (l latex) call(fn string, arg piece) piece {
+func (l latex) call(fn string, arg piece, exp string) piece {
 	switch fn {
 	case "exp":
 		return piece{"e^{" + arg.text + "}", precPower}
@@ -238,6 +238,11 @@ func (l latex) call(fn string, arg piece) piece {
 		return piece{`\operatorname{step}` + l.paren(arg.text), precAtom}
 	case "impulse":
 		return piece{`\delta` + l.paren(arg.text), precAtom}
+	case "atan":
+		fn = "arctan"
+	}
+	if exp != "" {
+		return piece{`\` + fn + "^{" + exp + "}" + l.paren(arg.text), precAtom}
 	}
 	return piece{`\` + fn + l.paren(arg.text), precAtom}
 }

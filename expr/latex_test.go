@@ -36,7 +36,7 @@ func TestLaTeX(t *testing.T) {
 		{"exp(a/(b*c))", `e^{a/(b c)}`},
 		{"2*exp(-t)*cos(3*t)", `2 e^{-t} \cos(3 t)`},
 		{"sin(t/2)", `\sin\left(\frac{t}{2}\right)`},
-		{"sin^2(t)", `\sin(t)^{2}`},
+		{"sin^2(t)", `\sin^{2}(t)`},
 		{"sinh(t) + cosh(t)", `\sinh(t) + \cosh(t)`},
 		{"sqrt(3)*t/2", `\frac{\sqrt{3} t}{2}`},
 		{"step(t - 2)*impulse(t)", `\operatorname{step}(t - 2) \delta(t)`},

@@ -146,7 +146,7 @@ func (m mathml) power(base, exp piece) piece {
 	return piece{"<msup>" + mrow(m.wrap(base, precAtom)) + mrow(exp.text) + "</msup>", precPower}
 }
 
-func (m mathml) call(fn string, arg piece) piece {
+func (m mathml) call(fn string, arg piece, exp string) piece {
 	switch fn {
 	case "exp":
 		return piece{"<msup><mi>e</mi>" + mrow(arg.text) + "</msup>", precPower}
@@ -154,8 +154,14 @@ func (m mathml) call(fn string, arg piece) piece {
 		return piece{"<msqrt>" + arg.text + "</msqrt>", precAtom}
 	case "impulse":
 		fn = "δ"
+	case "atan":
+		fn = "arctan"
 	}
-	return piece{mrow("<mi>"+fn+"</mi>", "<mo>\u2061</mo>", m.paren(arg.text)), precAtom} // function application
+	name := "<mi>" + fn + "</mi>"
+	if exp != "" {
+		name = "<msup>" + name + exp + "</msup>"
+	}
+	return piece{mrow(name, "<mo>\u2061</mo>", m.paren(arg.text)), precAtom} // function application
 }
 
 func (m mathml) rootSum(v, poly string, body piece) piece {

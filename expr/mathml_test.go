@@ -66,7 +66,7 @@ func TestMathML(t *testing.T) {
 		{"2*3", "2⋅3"},
 		{"(a+b)*c", "(a+b)" + times + "c"},
 		{"exp(-t/2)", "e−t/2"},
-		{"sin(t)^2", "sin" + apply + "(t)2"},
+		{"sin(t)^2", "sin2" + apply + "(t)"},
 		{"sqrt(2)", "2"},
 		{"impulse(t)", "δ" + apply + "(t)"},
 		{"x''(0)", "x″(0)"},

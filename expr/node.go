@@ -71,7 +71,7 @@ type Neg struct {
 }
 
 // Call is a function of the fixed vocabulary applied to its argument: exp, sin,
-// cos, sinh, cosh, sqrt, step, impulse.
+// cos, sinh, cosh, sqrt, step, impulse, and atan in the phase of sines and cosines.
 type Call struct {
 	place
 	Func string
@@ -90,5 +90,5 @@ type RootSum struct {
 // functions is the vocabulary of Call.
 var functions = map[string]bool{
 	"exp": true, "sin": true, "cos": true, "sinh": true, "cosh": true,
-	"sqrt": true, "step": true, "impulse": true,
+	"sqrt": true, "step": true, "impulse": true, "atan": true,
 }

@@ -26,11 +26,8 @@ func (f *overField[E]) node(variable string) (n Node) {
 			n = Sym("(too long to be written: " + e.What + ")")
 		}
 	}()
-	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin, root: "z"}
+	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin}
 	w.time = w.timeNode()
-	if w.root = f.field().FreeName("z", "r"); w.root == variable {
-		w.root = f.field().FreeName("r", "q")
-	}
 	var terms []Node
 	for _, t := range f.free {
 		n := w.image(t.Image)
@@ -58,6 +55,17 @@ func (w presenter[E]) timeNode() Node {
 	return Add(w.variable, signed(Negate(w.Node(w.origin))))
 }
 
+// freeName returns the first of the names that neither a symbol nor the variable
+// has.
+func (w presenter[E]) freeName(names ...string) string {
+	c, _ := any(w.k).(*Constants)
+	name := c.FreeName(names...)
+	if v, ok := w.variable.(Symbol); ok && v.Name == name {
+		return c.FreeName(names[1:]...)
+	}
+	return name
+}
+
 // presenter turns the local parts of images into trees.
 type presenter[E any] struct {
 	k algebra.Scalars[E]
@@ -65,10 +73,13 @@ type presenter[E any] struct {
 	time     Node // t, or t - t0
 	variable Node
 	origin   E
-	root     string // the name of roots
+	form     Form
 }
 
-func (w presenter[E]) image(f Image[E]) Node {
+func (w presenter[E]) image(f Image[E]) Node { return w.sum(f, f.local) }
+
+// sum presents the sum of the parts of an image, which local returns.
+func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 	order := make([]int, len(f.den))
 	for i := range order {
 		order[i] = i
@@ -78,18 +89,31 @@ func (w presenter[E]) image(f Image[E]) Node {
 	for _, i := range order {
 		switch f.den[i].p.Degree() {
 		case 1:
-			terms = append(terms, w.linear(f.local(i)))
+			terms = append(terms, w.linear(local(i)))
 		case 2:
-			terms = append(terms, w.quadratic(f.local(i)))
+			terms = append(terms, w.quadratic(local(i)))
 		default:
-			named := w.named(f, i)
-			if n := w.biquadratic(f, i); n != nil && len(n.String()) <= max(mostBiquadratic, 2*len(named.String())) {
-				named = n
-			}
-			terms = append(terms, named)
+			terms = append(terms, w.ofHighDegree(f, i))
 		}
 	}
 	return Add(terms...)
+}
+
+// ofHighDegree presents the part of a prime of degree 3 or more in the way of
+// least effort: in radicals, in cosines of fractions of pi, as a sum over
+// frequencies or over roots.
+func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
+	part := f.local(i)
+	best := w.frequencies(f, i)
+	if best == nil {
+		best = w.named(f, i)
+	}
+	for _, form := range []func(localPart[E]) Node{w.split, w.inCosines} {
+		if n := form(part); n != nil {
+			best = easier(best, n)
+		}
+	}
+	return best
 }
 
 // before orders factors for reading: degree 1 and 2 before the others, then by
@@ -194,6 +218,9 @@ func (w presenter[E]) perTime(rate Node) Node {
 // scaled returns P(t) times the factors, with the rational content of P in
 // front.
 func (w presenter[E]) scaled(p algebra.Poly[E], factors ...Node) Node {
+	if p.Degree() == 0 {
+		return Mul(append([]Node{w.Node(p.Coef(0))}, factors...)...)
+	}
 	content, prim := w.contentOf(p, w.time)
 	return Mul(append([]Node{w.Node(content), prim}, factors...)...)
 }
@@ -276,6 +303,9 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 			return w.scaled(b, append([]Node{root}, factors...)...)
 		}
 		content, prim := w.contentOf(b, w.time)
+		if b.Degree() == 0 {
+			content, prim = b.Coef(0), Int(1)
+		}
 		n := w.Node(content)
 		if last := len(factors) - 1; isNumber(n, 1) && isNumber(prim, 1) {
 			factors[last] = Div(factors[last], root)
@@ -301,7 +331,7 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 	if minus, _ := w.writtenSign(q.a); minus {
 		sign = w.k.Neg(sign)
 	}
-	return shorter(
+	return easier(
 		Mul(w.Node(content), exp, Add(w.scaled(q.a.Scale(inv), cos), odd(q.b.Scale(inv), sin))),
 		Mul(w.Node(sign), exp, Add(w.scaled(q.a.Scale(sign), cos), odd(q.b.Scale(sign), sin))),
 	)
@@ -363,8 +393,8 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 	return q
 }
 
-// simpler tells whether the coefficients of p are written shorter than those of
-// q; of long ones the size decides.
+// simpler tells whether the coefficients of p take less effort than those of q;
+// of long ones the size decides.
 func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
 	size := func(p algebra.Poly[E]) (bits int) {
 		for _, c := range p.Coefs() {
@@ -372,16 +402,10 @@ func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
 		}
 		return bits
 	}
-	length := func(p algebra.Poly[E]) (n int) {
-		for _, c := range p.Coefs() {
-			n += len(w.Node(c).String())
-		}
-		return n
-	}
 	if a, b := size(p), size(q); max(a, b) > longCoefficient {
 		return a < b
 	}
-	return length(p) < length(q)
+	return w.effortOf(p) < w.effortOf(q)
 }
 
 // longCoefficient is the size in bits of what counts as long.
@@ -389,19 +413,17 @@ const longCoefficient = 400
 
 // times returns x root as one quotient.
 func (w presenter[E]) times(x E, root Node) Node {
-	n := w.Node(x)
-	if q, ok := n.(Quotient); ok {
-		return Div(Mul(q.Num, root), q.Den)
+	switch n := w.Node(x).(type) {
+	case Neg:
+		if q, ok := n.X.(Quotient); ok {
+			return Negate(Div(Mul(q.Num, root), q.Den))
+		}
+		return Mul(n, root)
+	case Quotient:
+		return Div(Mul(n.Num, root), n.Den)
+	default:
+		return Mul(n, root)
 	}
-	return Mul(n, root)
-}
-
-// shorter returns the tree with the shorter text, the first if both are equal.
-func shorter(a, b Node) Node {
-	if len(b.String()) < len(a.String()) {
-		return b
-	}
-	return a
 }
 
 // writtenSign tells whether p, not zero, is written with a minus sign in front,
@@ -465,18 +487,14 @@ func (w presenter[E]) surd(a, b E, root Node) Node {
 // roots.
 func (w presenter[E]) named(f Image[E], i int) Node {
 	pp := f.den[i]
-	z := Sym(w.root)
-	poly := w.poly(pp.p.Scale(w.inverse(w.Content(pp.p.Coefs()...))), z)
+	root := w.freeName("z", "r", "q")
+	z := Sym(root)
+	poly := w.poly(w.primitive(pp.p), z)
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
-		num, den := f.residueRatio(i)
-		if _, symbols := any(w.k).(*Constants); !symbols && len(f.den) > 1 && pp.p.Degree() <= mostDegreeAlone {
-			// The part of this factor alone, which does not know of the others: it
-			// reads the same in a response and in its transient part.
-			den = pp.p.Derivative()
-			num = f.local(i).c[0].Mul(den).Rem(w.k, pp.p)
-		}
-		return w.ratio(poly, num, den, exp)
+		num, den := w.residue(f, i)
+		minus, body := w.fraction(num, den, z, exp)
+		return sumOverRoots(root, poly, body, minus)
 	}
 	part := f.local(i)
 	var terms []Node
@@ -486,23 +504,73 @@ func (w presenter[E]) named(f Image[E], i int) Node {
 			terms = append(terms, Mul(w.Node(content), prim, w.power(k)))
 		}
 	}
-	return RootSum{Var: w.root, Poly: poly, Body: Mul(Add(terms...), exp)}
+	return sumOverRoots(root, poly, Mul(Add(terms...), exp), false)
+}
+
+// primitive returns a multiple of p without a content.
+func (w presenter[E]) primitive(p algebra.Poly[E]) algebra.Poly[E] {
+	return p.Scale(w.inverse(w.Content(p.Coefs()...)))
+}
+
+// residue returns the residue at the roots of the i-th prime, a simple one, as a
+// ratio.
+func (w presenter[E]) residue(f Image[E], i int) (num, den algebra.Poly[E]) {
+	p := f.den[i].p
+	if _, symbols := any(w.k).(*Constants); symbols || p.Degree() > mostDegreeAlone {
+		return f.residueRatio(i)
+	}
+	// The part of this factor alone, which does not know of the others: it reads
+	// the same in a response and in its transient part.
+	c := f.local(i).c[0]
+	den = p.Derivative()
+	num = c.Mul(den).Rem(w.k, p)
+	best := w.effortOfRatio(num, den)
+	// The remainders of Euclid's algorithm for p and c are c times polynomials: one
+	// of these ratios has the least degrees.
+	before, r := p, c
+	skip, t := algebra.Poly[E]{}, algebra.Constant[E](w.k, w.k.One())
+	for !r.IsZero() {
+		if cost := w.effortOfRatio(r, t); cost < best {
+			num, den, best = r, t, cost
+		}
+		q, rest := before.QuoRem(w.k, r)
+		before, r, skip, t = r, rest, t, skip.Sub(q.Mul(t))
+	}
+	return num, den
+}
+
+// effortOfRatio measures a ratio of polynomials in lowest terms.
+func (w presenter[E]) effortOfRatio(num, den algebra.Poly[E]) int {
+	z := Sym("z")
+	_, n := w.fraction(num, den, z, Int(1))
+	return effort(n)
 }
 
 // mostDegreeAlone is the degree up to which the part of a factor alone is
 // written: beyond, its coefficients are much longer than those of a ratio.
 const mostDegreeAlone = 8
 
-// ratio presents the sum over the roots of num/den times an exponential.
-func (w presenter[E]) ratio(poly Node, num, den algebra.Poly[E], exp Node) Node {
-	z := Sym(w.root)
+// sumOverRoots returns a sum over roots, negated where minus is set or the body is
+// a negation.
+func sumOverRoots(root string, poly, body Node, minus bool) Node {
+	if n, ok := body.(Neg); ok {
+		body, minus = n.X, !minus
+	}
+	sum := RootSum{Var: root, Poly: poly, Body: body}
+	if minus {
+		return Neg{X: sum}
+	}
+	return sum
+}
+
+// fraction writes num/den in z times a factor, in lowest terms and up to the sign.
+func (w presenter[E]) fraction(num, den algebra.Poly[E], z, factor Node) (minus bool, n Node) {
 	g := algebra.GCD[E](w.k, num, den)
 	num, _ = num.DivExact(w.k, g)
 	den, _ = den.DivExact(w.k, g)
-	cn, n := w.contentOf(num, z)
-	cd, d := w.contentOf(den, z)
+	cn, above := w.contentOf(num, z)
+	cd, below := w.contentOf(den, z)
 	c := w.Node(w.k.Mul(cn, w.inverse(cd)))
-	minus := false
 	if neg, ok := c.(Neg); ok {
 		c, minus = neg.X, true
 	} else if x, ok := c.(Number); ok && x.Val.Sign() < 0 {
@@ -515,9 +583,5 @@ func (w presenter[E]) ratio(poly Node, num, den algebra.Poly[E], exp Node) Node 
 	case Number:
 		top, bottom = Num(algebra.RatFromBigInt(v.Val.Num())), Num(algebra.RatFromBigInt(v.Val.Den()))
 	}
-	var sum Node = RootSum{Var: w.root, Poly: poly, Body: Div(Mul(top, n, exp), Mul(bottom, d))}
-	if minus {
-		sum = Neg{X: sum}
-	}
-	return sum
+	return minus, Div(Mul(top, above, factor), Mul(bottom, below))
 }

@@ -39,11 +39,11 @@ func TestPresentation(t *testing.T) {
 		{"sumroots(z, z^2-1, z*exp(z*t))", "exp(t) - exp(-t)"},
 		{"sumroots(z, z^2 + 2*z, (z + 1)*exp(z*t))", "1 - exp(-2*t)"},
 		{"sumroots(z, z, t*exp(t*z))", "t"},
-		{"sumroots(z, 2*z^3 - 1/3, exp(z*t)/z)", "sumroots(z, 6*z^3 - 1, exp(z*t)/z)"},
+		{"sumroots(z, 2*z^3 - z/3 - 1/3, exp(z*t)/z)", "sumroots(z, 6*z^3 - z - 1, exp(z*t)/z)"},
 		{"sumroots(z, z^3 - z - 1, t*exp(z*t))", "sumroots(z, z^3 - z - 1, t*exp(z*t))"},
-		{"sumroots(z, (z^3 - 2)*(z + 1), exp(z*t))", "exp(-t) + sumroots(z, z^3 - 2, exp(z*t))"},
+		{"sumroots(z, (z^3 - z - 2)*(z + 1), exp(z*t))", "exp(-t) + sumroots(z, z^3 - z - 2, exp(z*t))"},
 		// Slowly decaying first, then slow oscillations, named roots last.
-		{"exp(-t) + cos(2*t) + 1 + exp(t) + cos(t) + sumroots(z, z^3 - 2, exp(z*t)) + t", "exp(t) + t + 1 + cos(t) + cos(2*t) + exp(-t) + sumroots(z, z^3 - 2, exp(z*t))"},
+		{"exp(-t) + cos(2*t) + 1 + exp(t) + cos(t) + sumroots(z, z^3 - z - 2, exp(z*t)) + t", "exp(t) + t + 1 + cos(t) + cos(2*t) + exp(-t) + sumroots(z, z^3 - z - 2, exp(z*t))"},
 	} {
 		assert.Equal(t, c.want, function(t, c.src).String(), c.src)
 	}

@@ -116,7 +116,7 @@ func (r elementaryReader[E]) read(n Node) (Elementary[E], error) {
 		return r.constant(x), nil
 	case Value:
 		if v.At != nil && v.Order == 0 {
-			return zero, Errorf(UnknownFunction, v.Pos(), "%s is neither a function of the vocabulary (exp, sin, cos, sinh, cosh, sqrt, step, impulse) nor a state", Quote(v.Name))
+			return zero, Errorf(UnknownFunction, v.Pos(), "%s is neither a function of the vocabulary (exp, sin, cos, sinh, cosh, sqrt, atan, step, impulse) nor a state", Quote(v.Name))
 		}
 		return zero, Errorf(Syntax, v.Pos(), "%s stands where no derivative or value of a state can", v)
 	case Neg:
@@ -277,10 +277,16 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 	switch v.Func {
 	case "step", "impulse":
 		return zero, Errorf(OutsideClass, v.Pos(), "switched inputs (%s) are not covered", v.Func)
+	case "atan":
+		return zero, Errorf(OutsideClass, v.Pos(), "atan stands in the phase of a sine or cosine only, as in cos(%s - atan(2))", r.env.Variable)
 	case "sqrt":
 		return r.power(Power{v.place, v.Arg, Num(algebra.NewRat(1, 2))})
 	}
-	arg, err := r.read(v.Arg)
+	turned, phases := v.Arg, []phase(nil)
+	if v.Func == "cos" || v.Func == "sin" {
+		turned, phases = splitPhases(v.Arg)
+	}
+	arg, err := r.read(turned)
 	if err != nil {
 		return zero, err
 	}
@@ -306,7 +312,7 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 		}
 		acc.add(elementaryTerm[E]{0, slope, o, e, o})
 	case "cos", "sin":
-		if m, ok := k.(constantMaker[E]); ok && k.IsZero(slope) {
+		if m, ok := k.(constantMaker[E]); ok && k.IsZero(slope) && phases == nil {
 			value := m.Cos
 			if v.Func == "sin" {
 				value = m.Sin
@@ -320,6 +326,11 @@ func (r elementaryReader[E]) call(v Call) (Elementary[E], error) {
 		cos, sin, err := cosSinIn(k, rest, v.Pos())
 		if err != nil {
 			return zero, err
+		}
+		for _, p := range phases {
+			if cos, sin, err = r.turn(cos, sin, p); err != nil {
+				return zero, err
+			}
 		}
 		if v.Func == "cos" {
 			acc.add(elementaryTerm[E]{0, o, slope, cos, k.Neg(sin)})

@@ -116,8 +116,8 @@ func hasRootSum(n Node) bool {
 }
 
 // rootSum returns the image of a sum over the roots z of a square-free p of
-// terms c(z) t^k e^(zt). With the k-th coefficient C of K[s]/(p), the image of
-// the sum of C(z) e^(zt) is N/p, N = C p' mod p; a factor t is -d/ds.
+// terms c(z) t^k e^(zt), or of terms c(z) t^k cos zt and c(z) t^k sin zt for an
+// even p.
 func (env Env[E]) rootSum(v RootSum, order *int) (Image[E], error) {
 	k := env.K
 	inner := env
@@ -140,42 +140,78 @@ func (env Env[E]) rootSum(v RootSum, order *int) (Image[E], error) {
 	if *order += p.Degree(); *order > env.Limits.Degree+1 {
 		return Image[E]{}, beyondOrder(env.Limits, v.Pos())
 	}
+	p = p.Monic(k)
+	if algebra.GCD[E](k, p, p.Derivative()).Degree() > 0 {
+		return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "the polynomial of a sum over roots has a multiple root")
+	}
+	l := algebra.NewExtension[E](k, p, v.Var)
+	body, err := (rootBody[E]{env: env, l: l, root: v.Var, work: new(int)}).read(v.Body)
+	if err != nil {
+		return Image[E]{}, err
+	}
+	if slices.ContainsFunc(body, rootTerm[E].isWave) {
+		if p, body, err = env.exponentials(v, p, body); err != nil {
+			return Image[E]{}, err
+		}
+	}
+	return env.sumOverRoots(v, p, body)
+}
+
+// sumOverRoots returns the image of the sum of terms c(z) t^k e^(zt) over the
+// roots of a square-free p. With the k-th coefficient C, the image of the sum of
+// C(z) e^(zt) is N/p, N = C p' mod p; a factor t is -d/ds.
+func (env Env[E]) sumOverRoots(v RootSum, p algebra.Poly[E], terms []rootTerm[E]) (Image[E], error) {
+	k := env.K
 	factors, err := k.FactorPoly(context.Background(), p)
 	if err != nil {
 		return Image[E]{}, err
 	}
+	l := algebra.NewExtension[E](k, p, v.Var)
+	dp := l.Reduce(p.Derivative())
+	den := NewDenominator(k, factors)
+	var byPower []algebra.Poly[E]
+	for _, t := range terms {
+		if t.exps != 1 {
+			return Image[E]{}, Errorf(OutsideClass, v.Body.Pos(), "the terms of a sum over roots have the factor exp(%s*%s) once", v.Var, env.Variable)
+		}
+		if (t.n+1)*p.Degree() > env.Limits.Degree+1 {
+			return Image[E]{}, beyondOrder(env.Limits, v.Body.Pos())
+		}
+		for len(byPower) <= t.n {
+			byPower = append(byPower, l.Zero())
+		}
+		byPower[t.n] = byPower[t.n].Add(l.Mul(t.c, dp))
+	}
 	sum := ZeroImage(k)
-	for _, fac := range factors {
-		if fac.Mult > 1 {
-			return Image[E]{}, Errorf(OutsideClass, v.Poly.Pos(), "the polynomial of a sum over roots has a multiple root")
-		}
-		l := algebra.NewExtension[E](k, fac.P, v.Var)
-		b, err := (rootBody[E]{env: env, l: l, root: v.Var, work: new(int)}).read(v.Body)
-		if err != nil {
-			return Image[E]{}, err
-		}
-		dp := l.Reduce(fac.P.Derivative())
-		den := NewDenominator(k, []algebra.Factor[E]{{P: fac.P, Mult: 1}})
-		var byPower []algebra.Poly[E]
-		for _, t := range b {
-			if t.exps != 1 {
-				return Image[E]{}, Errorf(OutsideClass, v.Body.Pos(), "the terms of a sum over roots have the factor exp(%s*%s) once", v.Var, env.Variable)
-			}
-			if (t.n+1)*p.Degree() > env.Limits.Degree+1 {
-				return Image[E]{}, beyondOrder(env.Limits, v.Body.Pos())
-			}
-			for len(byPower) <= t.n {
-				byPower = append(byPower, l.Zero())
-			}
-			byPower[t.n] = l.Mul(t.c, dp)
-		}
-		part := ZeroImage(k)
-		for n := len(byPower) - 1; n >= 0; n-- { // Horner's rule
-			part = part.TimesT().Add(den.Image(byPower[n]))
-		}
-		sum = sum.Add(part)
+	for n := len(byPower) - 1; n >= 0; n-- { // Horner's rule
+		sum = sum.TimesT().Add(den.Image(byPower[n]))
 	}
 	return sum, nil
+}
+
+// exponentials takes a sum of cosines and sines over the roots w of an even P to
+// one of exponentials over z = iw: with C even, C(w) cos wt contributes C(-iz)
+// e^(zt) for both signs of w together, and w C(w) sin wt contributes -z C(-iz)
+// e^(zt). What is odd cancels.
+func (env Env[E]) exponentials(v RootSum, p algebra.Poly[E], terms []rootTerm[E]) (algebra.Poly[E], []rootTerm[E], error) {
+	k := env.K
+	for i := 1; i <= p.Degree(); i += 2 {
+		if !k.IsZero(p.Coef(i)) {
+			return p, nil, Errorf(OutsideClass, v.Poly.Pos(), "in a sum of cosines and sines over roots, %s has even powers of %s only", Quote(v.Poly.String()), v.Var)
+		}
+	}
+	out := make([]rootTerm[E], len(terms))
+	for i, t := range terms {
+		switch {
+		case t.exps != 0 || !t.isWave():
+			return p, nil, Errorf(OutsideClass, v.Body.Pos(), "the terms of a sum over roots have one factor cos(%s*%s) or sin(%s*%s) each", v.Var, env.Variable, v.Var, env.Variable)
+		case t.wave == "cos":
+			out[i] = rootTerm[E]{n: t.n, exps: 1, c: turned(k, t.c, 0)}
+		default:
+			out[i] = rootTerm[E]{n: t.n, exps: 1, c: turned(k, t.c, 1).Neg()}
+		}
+	}
+	return turned(k, p, 0).Monic(k), out, nil
 }
 
 // poly returns f as a polynomial in its variable, if it is one.
@@ -190,11 +226,15 @@ func (f Elementary[E]) poly() (algebra.Poly[E], bool) {
 	return p, true
 }
 
-// rootTerm is c t^n e^(exps z t) with c in K[z]/(p).
+// rootTerm is c t^n e^(exps z t) with c in K[z]/(p), times the cosine or sine of
+// zt that wave names.
 type rootTerm[E any] struct {
 	n, exps int
+	wave    string
 	c       algebra.Poly[E]
 }
+
+func (t rootTerm[E]) isWave() bool { return t.wave != "" }
 
 // rootBody reads the body of a sum over roots as a sum of root terms.
 type rootBody[E any] struct {
@@ -285,7 +325,7 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		if len(den) == 0 {
 			return nil, Errorf(Singular, v.Den.Pos(), "the denominator %s vanishes at the roots", Quote(v.Den.String()))
 		}
-		if len(den) != 1 || den[0].n > 0 || den[0].exps != 0 {
+		if len(den) != 1 || den[0].n > 0 || den[0].exps != 0 || den[0].isWave() {
 			return nil, r.outside(v.Den)
 		}
 		// The remainders in Euclid's algorithm grow by the length of its
@@ -325,10 +365,13 @@ func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
 		if r.l.Root().IsZero() {
 			isRate = len(arg) == 0
 		}
-		if v.Func != "exp" || !isRate {
-			return nil, r.outside(n)
+		switch {
+		case v.Func == "exp" && isRate:
+			return []rootTerm[E]{{exps: 1, c: r.l.One()}}, nil
+		case (v.Func == "cos" || v.Func == "sin") && isRate:
+			return []rootTerm[E]{{wave: v.Func, c: r.l.One()}}, nil
 		}
-		return []rootTerm[E]{{exps: 1, c: r.l.One()}}, nil
+		return nil, r.outside(n)
 	}
 	return nil, r.outside(n)
 }
@@ -361,7 +404,10 @@ func (r rootBody[E]) product(a, b []rootTerm[E], at Pos) ([]rootTerm[E], error) 
 	var out []rootTerm[E]
 	for _, x := range a {
 		for _, y := range b {
-			out = append(out, rootTerm[E]{x.n + y.n, x.exps + y.exps, r.l.Mul(x.c, y.c)})
+			if x.isWave() && y.isWave() {
+				return nil, Errorf(OutsideClass, at, "the terms of a sum over roots have one cosine or sine")
+			}
+			out = append(out, rootTerm[E]{x.n + y.n, x.exps + y.exps, x.wave + y.wave, r.l.Mul(x.c, y.c)})
 		}
 	}
 	return r.collect(out), nil
@@ -372,7 +418,7 @@ func (r rootBody[E]) collect(terms []rootTerm[E]) []rootTerm[E] {
 	index := map[string]int{}
 	var out []rootTerm[E]
 	for _, t := range terms {
-		key := strconv.Itoa(t.n) + "|" + strconv.Itoa(t.exps)
+		key := strconv.Itoa(t.n) + "|" + strconv.Itoa(t.exps) + "|" + t.wave
 		if i, ok := index[key]; ok {
 			out[i].c = out[i].c.Add(t.c)
 			continue

@@ -114,15 +114,7 @@ func (c *Constants) sqrt(x Constant) (Constant, Node) {
 		return c.FromRat(d), sqrtNode(m)
 	}
 	if x.HasRoot() {
-		p := algebra.NewPoly[Constant](c, c.Neg(x), c.Zero(), c.One())
-		if factors, err := c.FactorPoly(context.Background(), p); err == nil && len(factors) == 2 {
-			y := factors[0].P.Coef(0)
-			if sign, ok := c.Sign(y); ok && sign < 0 {
-				y = c.Neg(y)
-			}
-			return y, Int(1)
-		}
-		return c.One(), Apply("sqrt", c.Node(x))
+		return c.sqrtOfRoots(x)
 	}
 	r, factors, err := c.Factors(context.Background(), x)
 	if err != nil {
@@ -161,6 +153,57 @@ func (c *Constants) sqrt(x Constant) (Constant, Node) {
 		return y, Div(Int(1), Apply("sqrt", c.expanded(below)))
 	}
 	return y, Apply("sqrt", Div(c.expanded(inner), c.expanded(below)))
+}
+
+// sqrtOfRoots is sqrt for an x that holds algebraic numbers.
+func (c *Constants) sqrtOfRoots(x Constant) (Constant, Node) {
+	if y, ok := c.exactSqrt(x); ok {
+		return y, Int(1)
+	}
+	r := c.numericContent(x)
+	rest := c.quotient(x, c.FromRat(r))
+	if z, ok := c.exactSqrt(rest); ok {
+		outer, inner := algebra.SqrtParts(r)
+		return c.Mul(c.FromRat(outer), z), sqrtNode(inner)
+	}
+	for _, g := range c.generators { // of a root g of odd order q, g^q g^e is a square where g^e is none
+		if a, ok := c.Rational(g.arg); ok && g.q%2 == 1 {
+			if z, ok := c.exactSqrt(c.Mul(g.arg, rest)); ok {
+				outer, inner := algebra.SqrtParts(r.Quo(a))
+				return c.Mul(c.FromRat(outer), z), sqrtNode(inner)
+			}
+		}
+	}
+	if u, v, m, ok := c.binomialSurd(x); ok {
+		if a, b, ok := denested(u, v, m); ok {
+			return c.denestedNode(a, b, v.Sign())
+		}
+	}
+	if n, ok := c.monomialRoot(x); ok {
+		return c.One(), n
+	}
+	outer, inner := algebra.SqrtParts(r)
+	whole := Apply("sqrt", c.Node(x))
+	under := Apply("sqrt", c.Node(c.Mul(rest, c.FromRat(algebra.RatFromBigInt(inner)))))
+	if effort(Mul(Num(outer), under)) <= effort(whole) {
+		return c.FromRat(outer), under
+	}
+	return c.One(), whole
+}
+
+// exactSqrt returns the square root of x where it is in the field, without a sign
+// where that is decided.
+func (c *Constants) exactSqrt(x Constant) (Constant, bool) {
+	p := algebra.NewPoly[Constant](c, c.Neg(x), c.Zero(), c.One())
+	factors, err := c.FactorPoly(context.Background(), p)
+	if err != nil || len(factors) != 2 {
+		return x, false
+	}
+	y := factors[0].P.Coef(0)
+	if sign, ok := c.Sign(y); ok && sign < 0 {
+		y = c.Neg(y)
+	}
+	return y, true
 }
 
 // NodeOf writes an element of a field.

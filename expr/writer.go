@@ -35,7 +35,7 @@ type notation interface {
 	product(factors []piece) string
 	quotient(num, den piece) piece
 	power(base, exp piece) piece
-	call(fn string, arg piece) piece
+	call(fn string, arg piece, exp string) piece // exp is "" or a whole exponent
 	rootSum(v, poly string, body piece) piece
 	matrix(cells [][]string) string // in parentheses of its own
 	paren(x string) string
@@ -110,12 +110,17 @@ func write(n Node, w notation) piece {
 	case Quotient:
 		return w.quotient(write(v.Num, w), write(v.Den, w))
 	case Power:
+		if f, ok := v.Base.(Call); ok && powered[f.Func] {
+			if x, ok := v.Exp.(Number); ok && x.Val.IsInt() && x.Val.Sign() > 0 {
+				return w.call(f.Func, write(f.Arg, w), write(v.Exp, w.exponent()).text)
+			}
+		}
 		return w.power(write(v.Base, w), write(v.Exp, w.exponent()))
 	case Call:
 		if v.Func == "exp" {
-			return w.call(v.Func, write(v.Arg, w.exponent()))
+			return w.call(v.Func, write(v.Arg, w.exponent()), "")
 		}
-		return w.call(v.Func, write(v.Arg, w))
+		return w.call(v.Func, write(v.Arg, w), "")
 	case RootSum:
 		return w.rootSum(v.Var, write(v.Poly, w).text, write(v.Body, w))
 	case Matrix:
@@ -123,6 +128,9 @@ func write(n Node, w notation) piece {
 	}
 	panic("expr: unknown node")
 }
+
+// powered are the functions whose powers are written at the name: sin^2(x).
+var powered = map[string]bool{"sin": true, "cos": true, "sinh": true, "cosh": true}
 
 // text is the notation that Parse reads.
 type text struct{}
@@ -196,7 +204,10 @@ func (t text) power(base, exp piece) piece {
 	return piece{t.wrap(base, precAtom) + "^" + t.wrap(exp, precAtom), precPower}
 }
 
-func (t text) call(fn string, arg piece) piece {
+func (t text) call(fn string, arg piece, exp string) piece {
+	if exp != "" {
+		return piece{fn + t.paren(arg.text) + "^" + exp, precPower}
+	}
 	return piece{fn + t.paren(arg.text), precAtom}
 }
 

@@ -200,7 +200,7 @@ func ExampleResponse_Modes() {
 	// root(1, z^3 - z - 1) has the real part 1.3247179572447460260
 	// root(2, z^3 - z - 1) has the real part -0.66235897862237301298
 	// root(3, z^3 - z - 1) has the real part -0.66235897862237301298
-	// y = sumroots(z, z^3 - z - 1, exp(z*t)/(3*z^2 - 1))
+	// y = sumroots(z, z^3 - z - 1, z*exp(z*t)/(2*z + 3))
 }
 
 // The response as a Go function.

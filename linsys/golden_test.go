@@ -62,7 +62,9 @@ func golden(t *testing.T, m *linsys.Model) string {
 				fmt.Fprintf(&b, "  digits %s\n", n)
 			}
 			if f.Origin().String() == "0" && len(f.Constants()) == 0 {
-				back, err := expr.ParseFunction(f.String(), expr.Limits{})
+				n, err := expr.Parse(f.String(), expr.Limits{})
+				require.NoError(t, err)
+				back, err := expr.FunctionOf(n, f.Variable(), expr.Limits{})
 				require.NoError(t, err)
 				assert.True(t, back.Equal(f), "%s reads back as %s", f, back)
 			}
