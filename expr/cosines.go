@@ -268,22 +268,19 @@ func turnNode(r algebra.Rat, sine bool) Node {
 
 // inCosines presents the part of a simple prime whose roots are those of a chain,
 // or square roots of them. It returns nil for other primes.
-func (w presenter[E]) inCosines(part localPart[E]) Node {
-	if len(part.c) != 1 || part.p.Degree() > 2*mostCosines {
+func (w presenter[E]) inCosines(pp primePower[E], local func() localPart[E]) Node {
+	if pp.e != 1 || pp.p.Degree() > 2*mostCosines {
 		return nil
 	}
-	if c, ok := w.chainOf(part.p); ok {
-		return w.relaxing(part, c)
+	if c, ok := w.chainOf(pp.p); ok {
+		return w.relaxing(local(), c)
 	}
-	h, q, ok := w.squares(part.p)
-	if !ok {
-		return nil
+	if h, q, ok := w.squares(pp.p); ok {
+		if c, ok := w.chainOf(q); ok {
+			return w.vibrating(local(), c, h)
+		}
 	}
-	c, ok := w.chainOf(q)
-	if !ok {
-		return nil
-	}
-	return w.vibrating(part, c, h)
+	return nil
 }
 
 // squares returns h and q with p(s) = q((s - h)^2), if there are such.

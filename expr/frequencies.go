@@ -10,12 +10,12 @@ import (
 // undamped vibrations, as a sum of cosines and sines over the roots w of p(iw). It
 // returns nil for other primes; where symbols leave it open whether all w are real,
 // the form is right all the same.
-func (w presenter[E]) frequencies(f Image[E], i int) Node {
+func (w presenter[E]) frequencies(f Image[E], i int, local func() localPart[E]) Node {
 	k, p := w.k, f.den[i].p
 	if f.den[i].e > 1 || !w.isVibration(p) {
 		return nil
 	}
-	num, den := w.residue(f, i)
+	num, den := w.residue(f, i, local)
 	odd := 0 // the parity of den
 	for odd < 2 && !turned(k, den, 1-odd).IsZero() {
 		odd++

@@ -4,6 +4,7 @@ import (
 	"math"
 	"math/big"
 	"sort"
+	"sync"
 
 	"example.org/closedform/algebra"
 )
@@ -103,13 +104,13 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 // least effort: in radicals, in cosines of fractions of pi, as a sum over
 // frequencies or over roots.
 func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
-	part := f.local(i)
-	best := w.frequencies(f, i)
+	part := sync.OnceValue(func() localPart[E] { return f.local(i) })
+	best := w.frequencies(f, i, part)
 	if best == nil {
-		best = w.named(f, i)
+		best = w.named(f, i, part)
 	}
-	for _, form := range []func(localPart[E]) Node{w.split, w.inCosines} {
-		if n := form(part); n != nil {
+	for _, form := range []func(primePower[E], func() localPart[E]) Node{w.split, w.inCosines} {
+		if n := form(f.den[i], part); n != nil {
 			best = easier(best, n)
 		}
 	}
@@ -396,13 +397,7 @@ func (w presenter[E]) quadraticPart(part localPart[E]) quadraticPart[E] {
 // simpler tells whether the coefficients of p take less effort than those of q;
 // of long ones the size decides.
 func (w presenter[E]) simpler(p, q algebra.Poly[E]) bool {
-	size := func(p algebra.Poly[E]) (bits int) {
-		for _, c := range p.Coefs() {
-			bits += bitLen(w.k, c)
-		}
-		return bits
-	}
-	if a, b := size(p), size(q); max(a, b) > longCoefficient {
+	if a, b := w.bits(p), w.bits(q); max(a, b) > longCoefficient {
 		return a < b
 	}
 	return w.effortOf(p) < w.effortOf(q)
@@ -485,18 +480,18 @@ func (w presenter[E]) surd(a, b E, root Node) Node {
 
 // named presents the part of a prime of degree 3 or more as a sum over its
 // roots.
-func (w presenter[E]) named(f Image[E], i int) Node {
+func (w presenter[E]) named(f Image[E], i int, local func() localPart[E]) Node {
 	pp := f.den[i]
 	root := w.freeName("z", "r", "q")
 	z := Sym(root)
 	poly := w.poly(w.primitive(pp.p), z)
 	exp := Apply("exp", Mul(z, w.time))
 	if pp.e == 1 {
-		num, den := w.residue(f, i)
+		num, den := w.residue(f, i, local)
 		minus, body := w.fraction(num, den, z, exp)
 		return sumOverRoots(root, poly, body, minus)
 	}
-	part := f.local(i)
+	part := local()
 	var terms []Node
 	for k := len(part.c) - 1; k >= 0; k-- {
 		if !part.c[k].IsZero() {
@@ -514,16 +509,23 @@ func (w presenter[E]) primitive(p algebra.Poly[E]) algebra.Poly[E] {
 
 // residue returns the residue at the roots of the i-th prime, a simple one, as a
 // ratio.
-func (w presenter[E]) residue(f Image[E], i int) (num, den algebra.Poly[E]) {
+func (w presenter[E]) residue(f Image[E], i int, local func() localPart[E]) (num, den algebra.Poly[E]) {
 	p := f.den[i].p
 	if _, symbols := any(w.k).(*Constants); symbols || p.Degree() > mostDegreeAlone {
 		return f.residueRatio(i)
 	}
 	// The part of this factor alone, which does not know of the others: it reads
 	// the same in a response and in its transient part.
-	c := f.local(i).c[0]
 	den = p.Derivative()
-	num = c.Mul(den).Rem(w.k, p)
+	if len(f.den) == 1 {
+		num = f.num
+	} else {
+		num = local().c[0].Mul(den).Rem(w.k, p)
+	}
+	if w.bits(p)+w.bits(num) > mostRatioBits {
+		return num, den
+	}
+	c := local().c[0]
 	best := w.effortOfRatio(num, den)
 	// The remainders of Euclid's algorithm for p and c are c times polynomials: one
 	// of these ratios has the least degrees.
@@ -537,6 +539,18 @@ func (w presenter[E]) residue(f Image[E], i int) (num, den algebra.Poly[E]) {
 		before, r, skip, t = r, rest, t, skip.Sub(q.Mul(t))
 	}
 	return num, den
+}
+
+// mostRatioBits is the size of prime and numerator up to which other ratios are
+// looked at: those of longer ones have longer coefficients.
+const mostRatioBits = 96
+
+// bits returns the bits of the coefficients of p.
+func (w presenter[E]) bits(p algebra.Poly[E]) (n int) {
+	for _, c := range p.Coefs() {
+		n += bitLen(w.k, c)
+	}
+	return n
 }
 
 // effortOfRatio measures a ratio of polynomials in lowest terms.

@@ -13,18 +13,9 @@ import "example.org/closedform/algebra"
 // and its part into theirs, which are written like any others. It returns nil for
 // other primes, where signs are not decided, and where the field cannot hold the
 // radicals.
-func (w presenter[E]) split(part localPart[E]) Node {
-	k, p := w.k, part.p
+func (w presenter[E]) split(pp primePower[E], local func() localPart[E]) Node {
+	k, p := w.k, pp.p
 	n := p.Degree()
-	size := 0
-	for _, c := range append([]algebra.Poly[E]{p}, part.c...) {
-		for i := range c.Degree() + 1 {
-			size += bitLen(k, c.Coef(i))
-		}
-	}
-	if size > longCoefficient*n {
-		return nil
-	}
 	h := k.Neg(exactQuo[E](k, p.Coef(n-1), int64(n)))
 	q := p.Translate(h)
 	inner := n - 1 // coefficients that are 0 between the first and the last
@@ -42,6 +33,14 @@ func (w presenter[E]) split(part localPart[E]) Node {
 	case n == 4 && w.isOfFifths(p):
 		find, q, h = splitFifths, p, k.Zero()
 	default:
+		return nil
+	}
+	part := local()
+	size := w.bits(p)
+	for _, c := range part.c {
+		size += w.bits(c)
+	}
+	if size > longCoefficient*n {
 		return nil
 	}
 	from, _ := any(k).(*Constants)
