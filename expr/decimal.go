@@ -3,6 +3,7 @@ package expr
 import (
 	"context"
 	"sort"
+	"strconv"
 	"strings"
 
 	"example.org/closedform/algebra"
@@ -26,50 +27,26 @@ func (n Decimal) Val() algebra.Rat {
 	return x
 }
 
-// DecimalForm says how [Function.Decimal] writes numbers and oscillations.
-type DecimalForm struct {
-	Digits int // significant digits; default 6
-	// Amplitude writes R e^(at) cos(bt - phi) in place of a cosine and a sine.
-	Amplitude bool
-}
-
-// Decimal returns f as a formula in decimals: rates, coefficients and phases with
-// the given number of significant digits, every one proven and the last one
-// rounded to nearest. Numbers that are 0 do not appear, and rational numbers that
-// the digits hold are written exactly: 3, 0.25. Sums over named roots become
-// exponentials and oscillations like the others. Slowly decaying terms come
-// first. Symbols must have values; free constants may stay. With wide limits on
-// the search, an error of kind LimitExceeded says that a part of a coefficient
-// could not be told from 0.
-func (f Function) Decimal(ctx context.Context, form DecimalForm) (n Node, err error) {
-	defer catchLimit(&err)
-	if names := f.Parameters(); len(names) > 0 {
-		return nil, Errorf(NeedsAssumption, Pos{}, "the symbol %s has no value", names[0])
-	}
-	if form.Digits < 1 {
-		form.Digits = 6
-	}
-	if form.Digits > mostDigits {
-		return nil, Errorf(LimitExceeded, Pos{}, "%d digits, at most %d are given", form.Digits, mostDigits)
-	}
-	n, err = f.over().decimal(ctx, f.variable, form)
-	return n, wrapCancel(err)
-}
-
 // decimalWriter writes the terms of a function over a field in decimals.
 type decimalWriter[E any] struct {
 	presenter[E]
 	ctx    context.Context
-	form   DecimalForm
 	f      *overField[E]
 	images []Image[E]
 	prec   uint // of the balls
 }
 
-func (f *overField[E]) decimal(ctx context.Context, variable string, form DecimalForm) (Node, error) {
-	w := decimalWriter[E]{ctx: ctx, form: form, f: f, images: f.images()}
-	w.presenter = presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin}
-	w.time = w.variable
+// decimals returns a writer of the images of f.
+func (f *overField[E]) decimals(ctx context.Context, variable string, form Form) *decimalWriter[E] {
+	w := &decimalWriter[E]{ctx: ctx, f: f, images: f.images()}
+	w.presenter = presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin, form: form}
+	w.time = w.timeNode()
+	return w
+}
+
+// decimal returns f in decimals.
+func (f *overField[E]) decimal(ctx context.Context, variable string, form Form) (Node, error) {
+	w := f.decimals(ctx, variable, form)
 	if !f.k.IsZero(f.origin) {
 		at, err := w.element(f.origin)
 		if err != nil {
@@ -79,13 +56,13 @@ func (f *overField[E]) decimal(ctx context.Context, variable string, form Decima
 	}
 	var terms []Node
 	for i, t := range f.free {
-		n, err := w.image(i + 1)
+		n, err := w.image(i+1, allPrimes)
 		if err != nil {
 			return nil, err
 		}
 		terms = append(terms, Mul(Sym(t.Name), n))
 	}
-	n, err := w.image(0)
+	n, err := w.image(0, allPrimes)
 	if err != nil {
 		return nil, err
 	}
@@ -108,11 +85,14 @@ type decimalNumber struct {
 	exact *algebra.Rat
 }
 
-// image writes the i-th image.
-func (w *decimalWriter[E]) image(i int) (Node, error) {
+// allPrimes stands for all primes of an image.
+const allPrimes = -1
+
+// image writes the i-th image, or the part of one prime.
+func (w *decimalWriter[E]) image(i, prime int) (Node, error) {
 	// Precision is raised until all numbers have their digits.
 	for prec := uint(64 + 4*w.form.Digits); prec <= mostPrecision; prec *= 2 {
-		n, ok, err := w.imageAt(i, prec)
+		n, ok, err := w.imageAt(i, prime, prec)
 		if err != nil || ok {
 			return n, err
 		}
@@ -120,7 +100,7 @@ func (w *decimalWriter[E]) image(i int) (Node, error) {
 	return nil, Errorf(LimitExceeded, Pos{}, "the digits of a coefficient are not found with %d bits", mostPrecision)
 }
 
-func (w *decimalWriter[E]) imageAt(i int, prec uint) (n Node, ok bool, err error) {
+func (w *decimalWriter[E]) imageAt(i, prime int, prec uint) (n Node, ok bool, err error) {
 	f := w.images[i]
 	w.prec = prec
 	x, err := w.f.cache.get(w.ctx, w.k, w.images, prec)
@@ -145,6 +125,9 @@ func (w *decimalWriter[E]) imageAt(i int, prec uint) (n Node, ok bool, err error
 			}
 			s := x.terms[i][next]
 			next++
+			if prime != allPrimes && prime != p {
+				continue
+			}
 			t, err := w.term(part, roots, r, s, x.rates[s.rate])
 			if err != nil {
 				return nil, false, err
@@ -153,12 +136,18 @@ func (w *decimalWriter[E]) imageAt(i int, prec uint) (n Node, ok bool, err error
 			if !ok {
 				return nil, false, nil
 			}
-			re, _ := t.re.ball.Mid().Float64()
+			re := 0.0
+			if !t.zeroRe {
+				re, _ = t.re.ball.Mid().Float64()
+			}
 			im, _ := t.im.ball.Mid().Float64()
 			terms = append(terms, placed{re, im, node})
 		}
 	}
 	sort.SliceStable(terms, func(a, b int) bool {
+		if decays := terms[a].re < 0; w.form.SteadyLast && decays != (terms[b].re < 0) {
+			return decays
+		}
 		if terms[a].re != terms[b].re {
 			return terms[a].re > terms[b].re
 		}
@@ -214,13 +203,28 @@ func (w *decimalWriter[E]) term(part localPart[E], roots *algebra.RootSet, r int
 		}
 		return nil
 	}
+	constant := func(c algebra.Poly[E]) *algebra.Rat {
+		if c.Degree() > 0 {
+			return nil
+		}
+		return w.rational(coef(k, c, 0))
+	}
 	for i, c := range s.c {
 		if part.c[i].IsZero() {
 			t.cos, t.sin = append(t.cos, nil), append(t.sin, nil)
 			continue
 		}
+		whole := constant(part.c[i])
 		if t.real {
-			t.cos, t.sin = append(t.cos, &decimalNumber{c.Re, exact(cosines, i)}), append(t.sin, nil)
+			if whole == nil {
+				whole = exact(cosines, i)
+			}
+			t.cos, t.sin = append(t.cos, &decimalNumber{c.Re, whole}), append(t.sin, nil)
+			continue
+		}
+		if whole != nil {
+			twice := whole.Mul(algebra.RatFromInt(2))
+			t.cos, t.sin = append(t.cos, &decimalNumber{c.Re.MulPow2(1), &twice}), append(t.sin, nil)
 			continue
 		}
 		u := &decimalNumber{c.Re.MulPow2(1), exact(cosines, i)}
@@ -401,14 +405,17 @@ func (w *decimalWriter[E]) polynomial(c []*decimalNumber) (Node, bool) {
 
 // number writes a number, if its ball determines the digits.
 func (w *decimalWriter[E]) number(x decimalNumber) (Node, bool) {
+	if n := x.exact; n != nil && w.form.Numbers == MixedNumbers && effort(Num(*n)) <= mostExactEffort {
+		return signedNum(*n), true
+	}
 	if x.exact != nil {
-		return decimalNode(algebra.RatDecimal(x.exact.Big(), w.form.Digits), x.exact), true
+		return decimalNode(algebra.RatDecimal(x.exact.Big(), w.form.Digits), x.exact, w.form.Digits), true
 	}
 	s, ok := x.ball.Decimal(w.form.Digits)
 	if !ok {
 		return nil, false
 	}
-	return decimalNode(s, nil), true
+	return decimalNode(s, nil, w.form.Digits), true
 }
 
 // element writes an element of the field.
@@ -421,19 +428,28 @@ func (w *decimalWriter[E]) element(x E) (Node, error) {
 	return nil, errRounding
 }
 
-// decimalNode writes a decimal. Where it is the exact value that is written, it
-// has no zeros at its end: 3 for 3.00000, 0.25 for 0.250000.
-func decimalNode(s string, exact *algebra.Rat) Node {
+// decimalNode writes a decimal of the given number of digits. Where it is the exact
+// value that is written, it has no zeros at its end: 3 for 3.00000, 0.25 for
+// 0.250000. Zeros that no digits stand for become a power of ten: 1.2e7.
+func decimalNode(s string, exact *algebra.Rat, digits int) Node {
 	minus := strings.HasPrefix(s, "-")
 	s = strings.TrimPrefix(s, "-")
-	if exact != nil {
-		if x, err := algebra.ParseRat(s); err == nil && x.Equal(exact.Abs()) {
-			s = trimZeros(s)
-		}
-	}
-	var n Node = Decimal{Text: s}
-	if x, err := algebra.ParseRat(s); err == nil && !strings.ContainsAny(s, ".e") {
+	var n Node
+	x, err := algebra.ParseRat(s)
+	isExact := err == nil && exact != nil && x.Equal(exact.Abs())
+	switch {
+	case isExact && x.IsInt() && !strings.Contains(s, "e"):
 		n = Num(x)
+	case isExact:
+		n = Decimal{Text: trimZeros(s)}
+	case !strings.ContainsAny(s, ".e") && len(s) > digits:
+		mantissa := s[:1]
+		if digits > 1 {
+			mantissa += "." + s[1:digits]
+		}
+		n = Decimal{Text: mantissa + "e" + strconv.Itoa(len(s)-1)}
+	default:
+		n = Decimal{Text: s}
 	}
 	if minus {
 		n = Neg{X: n}

@@ -24,11 +24,11 @@ func TestDecimal(t *testing.T) {
 		// Sums over roots become terms like the others; the coefficients 1/5 of the
 		// roots of unity are real.
 		{"sumroots(z, z^3 - z - 1, exp(z*t)/(3*z^2 - 1))", "0.23449*exp(1.3247*t) + exp(-0.66236*t)*(-0.23449*cos(0.56228*t) - 0.82867*sin(0.56228*t))", ""},
-		{"sumroots(z, z^4 + z^3 + z^2 + z + 1, exp(z*t))", "2.0000*exp(0.30902*t)*cos(0.95106*t) + 2.0000*exp(-0.80902*t)*cos(0.58779*t)", ""},
+		{"sumroots(z, z^4 + z^3 + z^2 + z + 1, exp(z*t))", "2*exp(0.30902*t)*cos(0.95106*t) + 2*exp(-0.80902*t)*cos(0.58779*t)", ""},
 		{"sumroots(z, z^4 + 4*z^2 + 2, z*exp(z*t))", "-1.5307*sin(0.76537*t) - 3.6955*sin(1.8478*t)", ""},
 	} {
 		f := function(t, c.src)
-		n, err := f.Decimal(context.Background(), expr.DecimalForm{Digits: 5})
+		n, err := f.Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers, Digits: 5})
 		require.NoError(t, err)
 		assert.Equal(t, c.want, n.String(), c.src)
 		back, err := expr.FunctionOf(n, "t", expr.Limits{})
@@ -37,7 +37,7 @@ func TestDecimal(t *testing.T) {
 		require.NoError(t, err)
 		assert.True(t, back.Equal(reread), "%s", n)
 		if c.amplitude != "" {
-			n, err := f.Decimal(context.Background(), expr.DecimalForm{Digits: 5, Amplitude: true})
+			n, err := f.Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers, Digits: 5, Amplitude: true})
 			require.NoError(t, err)
 			assert.Equal(t, c.amplitude, n.String(), c.src)
 		}
@@ -53,8 +53,8 @@ func TestDecimalValues(t *testing.T) {
 		"sqrt(3)*exp(-pi*t)*cos(sqrt(5)*t) + exp(-2)*sin(t + 1)", "sumroots(z, z^4 + 10*z^2 + 1, (z^3 + 1)*exp(z*t))",
 	} {
 		f := function(t, src)
-		for _, form := range []expr.DecimalForm{{Digits: 40}, {Digits: 40, Amplitude: true}} {
-			n, err := f.Decimal(context.Background(), form)
+		for _, form := range []expr.Form{{Numbers: expr.DecimalNumbers, Digits: 40}, {Numbers: expr.DecimalNumbers, Digits: 40, Amplitude: true}} {
+			n, err := f.Write(context.Background(), form)
 			require.NoError(t, err)
 			g, err := expr.FunctionOf(n, "t", expr.Limits{})
 			require.NoError(t, err)
@@ -71,13 +71,13 @@ func TestDecimalValues(t *testing.T) {
 
 func TestDecimalErrors(t *testing.T) {
 	f := function(t, "k*exp(-t)")
-	_, err := f.Decimal(context.Background(), expr.DecimalForm{})
+	_, err := f.Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers})
 	assert.Equal(t, expr.NeedsAssumption, faultOf(t, err).kind)
 	ctx, cancel := context.WithCancel(context.Background())
 	cancel()
-	_, err = function(t, "sumroots(z, z^5 - z - 1, exp(z*t))").Decimal(ctx, expr.DecimalForm{})
+	_, err = function(t, "sumroots(z, z^5 - z - 1, exp(z*t))").Write(ctx, expr.Form{Numbers: expr.DecimalNumbers})
 	assert.Equal(t, expr.Cancelled, faultOf(t, err).kind)
-	_, err = function(t, "exp(-t/3)").Decimal(context.Background(), expr.DecimalForm{Digits: 1 << 30})
+	_, err = function(t, "exp(-t/3)").Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers, Digits: 1 << 30})
 	assert.Equal(t, expr.LimitExceeded, faultOf(t, err).kind)
 	assert.Equal(t, `1.2 \cdot 10^{-7}`, expr.LaTeX(expr.Decimal{Text: "1.2e-7"}))
 	assert.True(t, strings.Contains(expr.MathML(expr.Decimal{Text: "1.2e-7"}), "<mn>−7</mn>"))
@@ -86,7 +86,7 @@ func TestDecimalErrors(t *testing.T) {
 // A phase that is exactly 0 or a quarter turn is no phase.
 func TestDecimalOfOneOscillation(t *testing.T) {
 	for src, want := range map[string]string{"exp(-t)*sin(2*t)/2": "0.5*exp(-t)*sin(2*t)", "exp(-t)*cos(2*t)/2": "0.5*exp(-t)*cos(2*t)"} {
-		n, err := function(t, src).Decimal(context.Background(), expr.DecimalForm{Amplitude: true})
+		n, err := function(t, src).Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers, Amplitude: true})
 		require.NoError(t, err)
 		assert.Equal(t, want, n.String())
 	}

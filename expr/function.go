@@ -35,11 +35,11 @@ type exact interface {
 	integral() exact
 	timesT() exact
 	timesExp(algebra.Rat) exact
-	node(variable string) Node
+	written(ctx context.Context, variable string, form Form) (Node, error)
 	parameters() []string
 	exclude(ctx context.Context, l *Conditions) error
 	remarks() []string
-	decimal(ctx context.Context, variable string, form DecimalForm) (Node, error)
+	decimal(ctx context.Context, variable string, form Form) (Node, error)
 	simplest(ctx context.Context) (exact, error)
 	mapped(ctx context.Context, to *Constants, m *mapping) (exact, error)
 	digits(ctx context.Context, t *big.Rat, digits int) (string, error)

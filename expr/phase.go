@@ -13,10 +13,7 @@ const mostPhase = 64
 
 // splitPhases takes the terms n atan(x) out of an argument.
 func splitPhases(arg Node) (rest Node, phases []phase) {
-	terms := []Node{arg}
-	if s, ok := arg.(Sum); ok {
-		terms = s.Terms
-	}
+	terms := flatTerms(arg, false)
 	var others []Node
 	for _, t := range terms {
 		if p, ok := phaseOf(t); ok {
@@ -29,6 +26,24 @@ func splitPhases(arg Node) (rest Node, phases []phase) {
 		return arg, nil
 	}
 	return Add(others...), phases
+}
+
+// flatTerms returns the terms of a sum, also those in parentheses.
+func flatTerms(n Node, minus bool) []Node {
+	switch v := n.(type) {
+	case Sum:
+		var out []Node
+		for _, t := range v.Terms {
+			out = append(out, flatTerms(t, minus)...)
+		}
+		return out
+	case Neg:
+		return flatTerms(v.X, !minus)
+	}
+	if minus {
+		return []Node{Negate(n)}
+	}
+	return []Node{n}
 }
 
 // phaseOf reads n atan(x).

@@ -9,45 +9,6 @@ import (
 	"example.org/closedform/algebra"
 )
 
-// Node returns f as a tree: the polynomial part, exponentials, and damped
-// sines and cosines with their coefficients in radicals, and sums over named
-// roots where a factor of the denominator has degree 3 or more. Slowly decaying
-// terms come first. In place of a form that is beyond the limits on terms there is
-// a symbol that says so, which does not read back.
-func (f Function) Node() Node { return f.over().node(f.variable) }
-
-func (f *overField[E]) node(variable string) (n Node) {
-	defer func() {
-		if r := recover(); r != nil {
-			e, ok := r.(*algebra.LimitError)
-			if !ok {
-				panic(r)
-			}
-			// No name that anything reads.
-			n = Sym("(too long to be written: " + e.What + ")")
-		}
-	}()
-	w := presenter[E]{k: f.k, style: styleOf(f.k), variable: Sym(variable), origin: f.origin}
-	w.time = w.timeNode()
-	var terms []Node
-	for _, t := range f.free {
-		n := w.image(t.Image)
-		if q, ok := n.(Quotient); ok {
-			n = Div(Mul(Sym(t.Name), q.Num), q.Den)
-		} else {
-			n = Mul(Sym(t.Name), n)
-		}
-		terms = append(terms, n)
-	}
-	return Add(append(terms, w.image(f.base))...)
-}
-
-// String writes f in the text form.
-func (f Function) String() string { return f.Node().String() }
-
-// LaTeX writes f as LaTeX for mathematics mode.
-func (f Function) LaTeX() string { return LaTeX(f.Node()) }
-
 // timeNode returns the variable minus the origin.
 func (w presenter[E]) timeNode() Node {
 	if w.k.IsZero(w.origin) {
@@ -75,6 +36,7 @@ type presenter[E any] struct {
 	variable Node
 	origin   E
 	form     Form
+	numeric  func(prime int) Node // in a mixed form, writes the part of a prime in decimals
 }
 
 func (w presenter[E]) image(f Image[E]) Node { return w.sum(f, f.local) }
@@ -85,7 +47,13 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 	for i := range order {
 		order[i] = i
 	}
-	sort.SliceStable(order, func(a, b int) bool { return w.before(f.den[order[a]].p, f.den[order[b]].p) })
+	sort.SliceStable(order, func(a, b int) bool {
+		p, q := f.den[order[a]].p, f.den[order[b]].p
+		if w.form.SteadyLast && w.decays(p) != w.decays(q) {
+			return w.decays(p)
+		}
+		return w.before(p, q)
+	})
 	var terms []Node
 	for _, i := range order {
 		switch f.den[i].p.Degree() {
@@ -112,6 +80,11 @@ func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
 	for _, form := range []func(primePower[E], func() localPart[E]) Node{w.split, w.inCosines} {
 		if n := form(f.den[i], part); n != nil {
 			best = easier(best, n)
+		}
+	}
+	if w.numeric != nil && hasRootSum(best) {
+		if n := w.numeric(i); n != nil {
+			return n
 		}
 	}
 	return best
@@ -141,6 +114,16 @@ func (w presenter[E]) before(p, q algebra.Poly[E]) bool {
 		}
 	}
 	return false
+}
+
+// decays tells whether the part of a prime decays, for ordering only: one of high
+// degree is taken to.
+func (w presenter[E]) decays(p algebra.Poly[E]) bool {
+	if p.Degree() > 2 {
+		return true
+	}
+	re, _ := w.leadingRoot(p)
+	return re < 0
 }
 
 // leadingRoot approximates the root of largest real part of a polynomial of
@@ -297,6 +280,9 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 			return Add(w.branch(q, q.c), w.branch(q, w.k.Neg(q.c)))
 		}
 		cos, sin = Apply("cosh", angle), Apply("sinh", angle)
+	}
+	if n := w.amplitude(q, exp, angle); n != nil {
+		return n
 	}
 	// odd is b(t) root sin wt, or with 1/root, and other factors.
 	odd := func(b algebra.Poly[E], factors ...Node) Node {

@@ -57,7 +57,7 @@ func golden(t *testing.T, m *linsys.Model) string {
 			f := of(s)
 			fmt.Fprintf(&b, "%s %s\n  text   %s\n  latex  %s\n", title, s, f, f.LaTeX())
 			if len(f.Parameters()) == 0 {
-				n, err := f.Decimal(ctx, expr.DecimalForm{Digits: 5})
+				n, err := f.Write(ctx, expr.Form{Numbers: expr.DecimalNumbers, Digits: 5})
 				require.NoError(t, err)
 				fmt.Fprintf(&b, "  digits %s\n", n)
 			}

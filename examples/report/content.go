@@ -138,7 +138,7 @@ func (r *report) statesPart(ctx context.Context, d *document) error {
 		if len(n.String()) <= longText && !holdsRootSum(n) {
 			continue
 		}
-		decimal, err := f.Decimal(ctx, expr.DecimalForm{Digits: formulaDigits})
+		decimal, err := f.Write(ctx, expr.Form{Numbers: expr.DecimalNumbers, Digits: formulaDigits})
 		var e *expr.Error
 		if errors.As(err, &e) && (e.Kind == expr.NeedsAssumption || e.Kind == expr.LimitExceeded) {
 			continue

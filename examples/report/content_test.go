@@ -19,7 +19,7 @@ func TestMixedForm(t *testing.T) {
 	require.NoError(t, err)
 	checkTeX(t, dir)
 	src, page := read(t, dir, "report.tex"), read(t, dir, "report.html")
-	n, err := derived(t, model).State("x").Decimal(context.Background(), expr.DecimalForm{Digits: 6})
+	n, err := derived(t, model).State("x").Write(context.Background(), expr.Form{Numbers: expr.DecimalNumbers, Digits: 6})
 	require.NoError(t, err)
 	for _, term := range n.(expr.Sum).Terms {
 		if m, ok := negated(term); ok {
