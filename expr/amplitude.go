@@ -3,9 +3,10 @@ package expr
 import "example.org/closedform/algebra"
 
 // amplitude presents a cosine and a sine as R e^(ht) cos(wt - phi), with
-// R^2 = a^2 + b^2 and tan phi = b/a. It returns nil where the form is not asked for
-// and where symbols leave open which quadrant phi is in.
-func (w presenter[E]) amplitude(q quadraticPart[E], exp, angle Node) Node {
+// R^2 = a^2 + b^2 and tan phi = b/a. It returns nil where the form is not asked for,
+// where symbols leave open which quadrant phi is in, and where R would be a root in
+// a root that no decimal replaces.
+func (w presenter[E]) amplitude(q quadraticPart[E]) Node {
 	if !w.form.Amplitude || q.sign > 0 || !q.decided || q.a.Degree() != 0 || q.b.Degree() != 0 {
 		return nil
 	}
@@ -22,6 +23,9 @@ func (w presenter[E]) amplitude(q quadraticPart[E], exp, angle Node) Node {
 	}
 	ratio := k.Mul(b, w.inverse(a))
 	c, root := w.sqrt(k.Add(k.Mul(a, a), k.Mul(k.Mul(b, b), factor)))
+	if f, ok := root.(Call); ok && w.form.Numbers == ExactNumbers && len(numbersIn(f.Arg)) > 0 {
+		return nil
+	}
 	phase, ok := w.phase(ratio, k.Mul(k.Mul(ratio, ratio), factor), q)
 	if !ok {
 		return nil
@@ -41,11 +45,11 @@ func (w presenter[E]) amplitude(q quadraticPart[E], exp, angle Node) Node {
 	if s, ok := phase.(Sum); ok {
 		terms = s.Terms
 	}
-	turned := []Node{angle}
+	turned := []Node{w.perTime(w.times(q.c, q.root))}
 	for _, t := range terms {
 		turned = append(turned, Negate(t))
 	}
-	return Mul(w.times(c, root), exp, Apply("cos", Add(turned...)))
+	return Mul(w.times(c, root), w.exp(w.Node(q.h)), Apply("cos", Add(turned...)))
 }
 
 // phase writes atan of the ratio times root or over root, whose square is given: a

@@ -384,6 +384,9 @@ func (w *decimalWriter[E]) write(t decimalTerm) (Node, bool) {
 	case isNumber(sin, 0):
 		return Mul(cos, exp, Apply("cos", angle)), true
 	}
+	if neg, ok := c.(Neg); ok {
+		return Neg{X: Mul(exp, Add(neg.X, Negate(s)))}, true
+	}
 	return Mul(exp, Add(c, s)), true
 }
 

@@ -11,8 +11,9 @@ type Form struct {
 	Numbers Numbers
 	Digits  int // significant digits of decimals; default 6
 	// Amplitude writes R e^(at) cos(bt - phi), R > 0, in place of a cosine and a
-	// sine. It leaves terms with powers of the time, sums over roots, and those where
-	// symbols leave the sign of a coefficient open.
+	// sine. Exact forms leave terms with powers of the time, sums over roots, those
+	// where symbols leave the sign of a coefficient open, and those where R would be
+	// a root in a root.
 	Amplitude bool
 	// SteadyLast puts the terms that decay before those that do not.
 	SteadyLast bool

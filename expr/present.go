@@ -117,10 +117,10 @@ func (w presenter[E]) before(p, q algebra.Poly[E]) bool {
 }
 
 // decays tells whether the part of a prime decays, for ordering only: one of high
-// degree is taken to.
+// degree is taken to, unless it is a vibration.
 func (w presenter[E]) decays(p algebra.Poly[E]) bool {
 	if p.Degree() > 2 {
-		return true
+		return !w.isVibration(p)
 	}
 	re, _ := w.leadingRoot(p)
 	return re < 0
@@ -271,6 +271,14 @@ func (w presenter[E]) inverse(x E) E {
 // are entire functions of d.
 func (w presenter[E]) quadratic(part localPart[E]) Node {
 	q := w.quadraticPart(part)
+	if n := w.amplitude(q); n != nil {
+		return n
+	}
+	return w.evenAndOdd(q)
+}
+
+// evenAndOdd presents a quadratic part by its even and its odd function.
+func (w presenter[E]) evenAndOdd(q quadraticPart[E]) Node {
 	angle := w.perTime(w.times(q.c, q.root))
 	exp := w.exp(w.Node(q.h))
 	cos, sin := Apply("cos", angle), Apply("sin", angle)
@@ -280,9 +288,6 @@ func (w presenter[E]) quadratic(part localPart[E]) Node {
 			return Add(w.branch(q, q.c), w.branch(q, w.k.Neg(q.c)))
 		}
 		cos, sin = Apply("cosh", angle), Apply("sinh", angle)
-	}
-	if n := w.amplitude(q, exp, angle); n != nil {
-		return n
 	}
 	// odd is b(t) root sin wt, or with 1/root, and other factors.
 	odd := func(b algebra.Poly[E], factors ...Node) Node {

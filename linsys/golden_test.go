@@ -71,6 +71,24 @@ func golden(t *testing.T, m *linsys.Model) string {
 		}
 	}
 	section("state", r.State)
+	for _, of := range []struct {
+		title string
+		form  expr.Form
+	}{{"amplitude", expr.Form{Amplitude: true, SteadyLast: true}}, {"mixed", expr.Form{Numbers: expr.MixedNumbers}}} {
+		for _, s := range r.States() {
+			f := r.State(s)
+			n, err := f.Write(ctx, of.form)
+			require.NoError(t, err)
+			if n.String() != f.String() {
+				fmt.Fprintf(&b, "%s %s\n  text   %s\n  latex  %s\n", of.title, s, n, expr.LaTeX(n))
+			}
+			if of.form.Amplitude && f.Origin().String() == "0" && len(f.Constants()) == 0 {
+				back, err := expr.FunctionOf(n, f.Variable(), expr.Limits{})
+				require.NoError(t, err)
+				assert.True(t, back.Equal(f), "%s is %s", n, f)
+			}
+		}
+	}
 	section("transient", r.Transient)
 	section("steady", r.Steady)
 	for _, mode := range r.Modes() {

@@ -2,7 +2,6 @@ package main
 
 import (
 	"context"
-	"errors"
 	"fmt"
 	"strings"
 
@@ -11,10 +10,7 @@ import (
 )
 
 const (
-	// longText is the length of an exact formula, as text, from which on the
-	// decimal form stands below it.
-	longText = 160
-	// formulaDigits is how many digits decimal formulas have.
+	// formulaDigits is how many digits the decimals in formulas have.
 	formulaDigits = 6
 	// rowsPerTable is how many lines of a table fit on a page.
 	rowsPerTable = 30
@@ -26,6 +22,7 @@ const (
 	atWorking    label = "sec:working"
 	atResponse   label = "sec:response"
 	atStates     label = "sec:states"
+	atExact      label = "sec:exact"
 	atModes      label = "sec:modes"
 	atValues     label = "sec:values"
 	atProof      label = "sec:proof"
@@ -54,10 +51,19 @@ func (r *report) compose(ctx context.Context) (*document, error) {
 	}
 	d.part("Transient part", "sec:transient")
 	d.text("The complementary function: what the modes of Section\u00a0", atModes, " contribute.")
-	d.add(r.functions(r.response.Transient))
+	transient, _, err := r.functions(ctx, r.response.Transient)
+	if err != nil {
+		return nil, err
+	}
+	d.add(transient)
 	d.part("Steady part", "sec:steady")
 	d.text("The particular integral: what has the rates of the input.")
-	d.add(r.functions(r.response.Steady))
+	steady, _, err := r.functions(ctx, r.response.Steady)
+	if err != nil {
+		return nil, err
+	}
+	d.add(steady)
+	r.exactPart(d)
 	r.abbreviations(d)
 	r.modesSection(d)
 	r.valuesSection(d)
@@ -129,30 +135,15 @@ func (r *report) modelSection(d *document) {
 
 func (r *report) statesPart(ctx context.Context, d *document) error {
 	d.part("States", atStates)
-	var list equations
-	decimals := 0
-	for _, name := range r.response.States() {
-		f := r.response.State(name)
-		n := f.Node()
-		list = append(list, r.relation(expr.Sym(name), n))
-		if len(n.String()) <= longText && !holdsRootSum(n) {
-			continue
-		}
-		decimal, err := f.Write(ctx, expr.Form{Numbers: expr.DecimalNumbers, Digits: formulaDigits})
-		var e *expr.Error
-		if errors.As(err, &e) && (e.Kind == expr.NeedsAssumption || e.Kind == expr.LimitExceeded) {
-			continue
-		}
-		if err != nil {
-			return err
-		}
-		decimals++
-		list = append(list, relation{left: expr.Sym(name), sign: "≈", right: decimal})
+	list, rounded, err := r.functions(ctx, r.response.State)
+	if err != nil {
+		return err
 	}
+	r.rounded = rounded
 	explained := say("All formulas are exact.")
-	if decimals > 0 {
-		explained = say("What stands behind = is exact. Behind ≈ the same function follows in decimals, where its exact form is long: every number in it has ",
-			formulaDigits, " significant digits, each of them proven and the last one rounded; numbers with fewer digits are exact.")
+	if len(rounded) > 0 {
+		explained = say("What stands behind = is exact. Behind ≈ the numbers with a decimal point are rounded to ", formulaDigits,
+			" significant digits, each of them proven; all other numbers are exact. Section\u00a0", atExact, " has the exact forms of these states.")
 	}
 	if len(r.short.definitions) > 0 {
 		explained = append(explained, say(" Section\u00a0", atNames, " tells what the names of long parts stand for.")...)
@@ -179,18 +170,6 @@ func (r *report) statesPart(ctx context.Context, d *document) error {
 	return nil
 }
 
-func holdsRootSum(n expr.Node) bool {
-	if _, ok := n.(expr.RootSum); ok {
-		return true
-	}
-	found := false
-	expr.Children(n, func(c expr.Node) bool {
-		found = found || holdsRootSum(c)
-		return !found
-	})
-	return found
-}
-
 // readCondition reads a condition such as k1 != k2; one in words stays so.
 func readCondition(s string) relation {
 	list, err := expr.ParseRelations(s, unlimited)
@@ -213,12 +192,44 @@ func (r *report) relations(list []expr.Equation) equations {
 	return out
 }
 
-func (r *report) functions(of func(string) expr.Function) equations {
-	var out equations
+// functions writes a function of every state, numbers that are long as decimals, and
+// returns the states whose functions hold such.
+func (r *report) functions(ctx context.Context, of func(string) expr.Function) (out equations, rounded []string, err error) {
 	for _, name := range r.response.States() {
-		out = append(out, r.relation(expr.Sym(name), of(name).Node()))
+		n, err := of(name).Write(ctx, expr.Form{Numbers: expr.MixedNumbers, Digits: formulaDigits})
+		if err != nil {
+			return nil, nil, err
+		}
+		eq := r.relation(expr.Sym(name), n)
+		if holdsDecimal(n) {
+			eq.sign = "≈"
+			rounded = append(rounded, name)
+		}
+		out = append(out, eq)
 	}
-	return out
+	return out, rounded, nil
+}
+
+func holdsDecimal(n expr.Node) bool {
+	_, found := n.(expr.Decimal)
+	expr.Children(n, func(c expr.Node) bool {
+		found = found || holdsDecimal(c)
+		return !found
+	})
+	return found
+}
+
+// exactPart gives the exact forms of the states that were written with decimals.
+func (r *report) exactPart(d *document) {
+	if len(r.rounded) == 0 {
+		return
+	}
+	d.part("Exact forms", atExact)
+	var list equations
+	for _, name := range r.rounded {
+		list = append(list, r.relation(expr.Sym(name), r.response.State(name).Node()))
+	}
+	d.add(list)
 }
 
 // abbreviations tells what the names in shortened formulas stand for.

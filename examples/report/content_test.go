@@ -12,7 +12,8 @@ import (
 	"example.org/closedform/expr"
 )
 
-// Where the exact form is long, decimals follow it; elsewhere it stands alone.
+// Where the exact form is long, it follows one with decimals; elsewhere it stands
+// alone.
 func TestMixedForm(t *testing.T) {
 	const model = "x''' + x' + x = 1; y' = -y; x(0) = 0; x'(0) = 0; x''(0) = 0; y(0) = 1/3\n"
 	dir, _, err := runOn(t, model)
@@ -30,8 +31,9 @@ func TestMixedForm(t *testing.T) {
 	}
 	require.Contains(t, src, `x &\approx `)
 	require.NotContains(t, src, `y &\approx `)
-	require.Equal(t, 1, strings.Count(page, "<td>≈</td>"))
-	require.Contains(t, src, "every number in it has 6 significant digits")
+	require.Equal(t, 2, strings.Count(page, "<td>≈</td>"), "in the response and in its transient part")
+	require.Contains(t, src, "rounded to 6 significant digits")
+	require.Contains(t, src, expr.LaTeX(derived(t, model).State("x").Node()))
 
 	dir, _, err = runOn(t, "x' = -x; x(0) = 1/3")
 	require.NoError(t, err)

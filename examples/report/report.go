@@ -36,6 +36,7 @@ type report struct {
 	window     window
 	values     []valueRow
 	curves     []curve
+	rounded    []string      // the states that are written with decimals
 	steps      []linsys.Step // the working, or nil
 	noWorking  string        // why there is none
 	short      *shortener
