@@ -32,7 +32,16 @@ func answer(ctx context.Context, req request) (object, error) {
 	}
 	var o object
 	o.add("states", r.States())
-	o.add("solution", forms(req, r, r.State))
+	for _, part := range []struct {
+		name string
+		of   func(string) expr.Function
+	}{{"solution", r.State}, {"steady", r.Steady}, {"transient", r.Transient}} {
+		written, err := forms(ctx, req, r, part.of)
+		if err != nil {
+			return nil, err
+		}
+		o.add(part.name, written)
+	}
 	if req.want["go"] {
 		src, err := r.GoSource(ctx, linsys.GoOptions{})
 		if err != nil {
@@ -40,8 +49,6 @@ func answer(ctx context.Context, req request) (object, error) {
 		}
 		o.add("go", string(src))
 	}
-	o.add("steady", forms(req, r, r.Steady))
-	o.add("transient", forms(req, r, r.Transient))
 	if req.want["modes"] {
 		list, err := modes(ctx, r.Modes(), req.digits)
 		if err != nil {
@@ -77,10 +84,13 @@ func answer(ctx context.Context, req request) (object, error) {
 }
 
 // forms returns the written forms asked for of every state's function.
-func forms(req request, r *linsys.Response, of func(state string) expr.Function) object {
+func forms(ctx context.Context, req request, r *linsys.Response, of func(state string) expr.Function) (object, error) {
 	out := object{}
 	for _, name := range r.States() {
-		n := of(name).Node()
+		n, err := inForm(ctx, of(name), req.form)
+		if err != nil {
+			return nil, err
+		}
 		o := object{}
 		if req.want["text"] {
 			o.add("text", n.String())
@@ -93,7 +103,16 @@ func forms(req request, r *linsys.Response, of func(state string) expr.Function)
 		}
 		out.add(name, o)
 	}
-	return out
+	return out, nil
+}
+
+// inForm writes a function in a form; one that is too long to be written exactly
+// is named so.
+func inForm(ctx context.Context, f expr.Function, form expr.Form) (expr.Node, error) {
+	if form.Numbers == expr.ExactNumbers && !form.Amplitude && !form.SteadyLast {
+		return f.Node(), nil
+	}
+	return f.Write(ctx, form)
 }
 
 // working returns the steps of the derivation in every form.

@@ -190,6 +190,12 @@ func TestErrorKinds(t *testing.T) {
 		{"digits beyond words", `{"model":"x'=x","digits":99999999999999999999}`, expr.LimitExceeded, 0, 0},
 		{"want unknown", fields{"model": "x'=x", "want": []string{"text", "html"}}, expr.Syntax, 0, 0},
 		{"want no list", fields{"model": "x'=x", "want": "text"}, expr.Syntax, 0, 0},
+		{"form no object", fields{"model": "x'=x", "form": "mixed"}, expr.Syntax, 0, 0},
+		{"form with an unknown field", fields{"model": "x'=x", "form": fields{"number": "mixed"}}, expr.Syntax, 0, 0},
+		{"form with unknown numbers", fields{"model": "x'=x", "form": fields{"numbers": "roman"}}, expr.Syntax, 0, 0},
+		{"form without digits", fields{"model": "x'=x", "form": fields{"digits": 0}}, expr.Syntax, 0, 0},
+		{"form with too many digits", fields{"model": "x'=x", "form": fields{"digits": 1000000000}}, expr.LimitExceeded, 0, 0},
+		{"form of symbols in decimals", fields{"model": "x'=-k*x; x(0)=1", "form": fields{"numbers": "decimal"}}, expr.NeedsAssumption, 0, 0},
 		{"assume without relation", fields{"model": "x'=x", "assume": []string{"k"}}, expr.Syntax, 0, 0},
 		{"assume on a state", fields{"model": "x'=x", "assume": []string{"x > 0"}}, expr.OutsideClass, 0, 0},
 		{"assume an equation", fields{"model": "x'=x", "assume": []string{"k = 1"}}, expr.Syntax, 0, 0},
@@ -222,6 +228,22 @@ func TestAssumptionsOfGoodForm(t *testing.T) {
 	r, _ := ask(t, fields{"model": "x' = -x\nx(0) = 1", "assume": []string{"k > 0", "k1 - k2 != 0", "a<=b", "2 k ≥ 1", "a ≠ b", "0 < k < 1"}})
 	require.Nil(t, r.Error)
 	require.Equal(t, "exp(-t)", r.Solution["x"].Text)
+}
+
+func TestForm(t *testing.T) {
+	for _, c := range []struct {
+		form fields
+		want string
+	}{
+		{nil, "2 - exp(-t)*(2*cos(2*t) + sin(2*t))"},
+		{fields{"amplitude": true, "steady_last": true}, "sqrt(5)*exp(-t)*cos(2*t + pi - atan(1/2)) + 2"},
+		{fields{"numbers": "decimal", "digits": 4, "amplitude": true}, "2 + 2.236*exp(-t)*cos(2*t + 2.678)"},
+		{fields{"numbers": "mixed"}, "2 - exp(-t)*(2*cos(2*t) + sin(2*t))"},
+	} {
+		r, _ := ask(t, fields{"model": "x'' + 2x' + 5x = 10; x(0) = 0; x'(0) = 0", "form": c.form, "want": []string{"text"}})
+		require.Nil(t, r.Error)
+		require.Equal(t, c.want, r.Solution["x"].Text)
+	}
 }
 
 func TestStream(t *testing.T) {

@@ -11,6 +11,9 @@
 //	digits  significant digits of values and roots, 1 to 10000, default 17
 //	set     values of the free constants of a general solution, for values only
 //	assume  relations such as "k > 0"
+//	form    how formulas are written: an object with numbers (exact, mixed or
+//	        decimal), their digits, amplitude (true for amplitude and phase) and
+//	        steady_last (true for decaying terms first)
 //	want    any of text, latex, mathml, go, modes, working; without it: text,
 //	        latex, mathml, modes
 //

@@ -28,6 +28,7 @@ type request struct {
 	digits int
 	set    map[string]expr.Node
 	assume []string
+	form   expr.Form
 	want   map[string]bool
 }
 
@@ -122,10 +123,12 @@ func (req *request) read(fields map[string]json.RawMessage) error {
 			err = req.readSet(raw)
 		case "assume":
 			err = req.readAssume(raw)
+		case "form":
+			err = req.readForm(raw)
 		case "want":
 			err = req.readWant(raw)
 		default:
-			err = badRequest("a request has no field %s; its fields are id, model, at, digits, set, assume, want", expr.Quote(name))
+			err = badRequest("a request has no field %s; its fields are id, model, at, digits, set, assume, form, want", expr.Quote(name))
 		}
 		if err != nil {
 			return err
@@ -237,6 +240,33 @@ func (req *request) readWant(raw json.RawMessage) error {
 		}
 		req.want[w] = true
 	}
+	return nil
+}
+
+// numberWords are the words for the numbers of a form.
+var numberWords = map[string]expr.Numbers{"exact": expr.ExactNumbers, "mixed": expr.MixedNumbers, "decimal": expr.DecimalNumbers}
+
+// readForm reads how formulas are written.
+func (req *request) readForm(raw json.RawMessage) error {
+	form := struct {
+		Numbers    string `json:"numbers"`
+		Digits     int    `json:"digits"`
+		Amplitude  bool   `json:"amplitude"`
+		SteadyLast bool   `json:"steady_last"`
+	}{Numbers: "exact", Digits: 6}
+	d := json.NewDecoder(bytes.NewReader(raw))
+	d.DisallowUnknownFields()
+	if err := d.Decode(&form); err != nil {
+		return badRequest("form is not an object with the fields numbers, digits, amplitude, steady_last")
+	}
+	numbers, known := numberWords[form.Numbers]
+	if !known {
+		return badRequest("numbers in form is %s; it may be exact, mixed or decimal", expr.Quote(form.Numbers))
+	}
+	if form.Digits < 1 {
+		return badRequest("digits in form is not a whole number from 1 on")
+	}
+	req.form = expr.Form{Numbers: numbers, Digits: form.Digits, Amplitude: form.Amplitude, SteadyLast: form.SteadyLast}
 	return nil
 }
 

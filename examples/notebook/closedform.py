@@ -262,9 +262,14 @@ class Model:
     def __repr__(self):
         return self.text.strip("\n")
 
-    def response(self):
-        """Derives the response, exactly and with its proof."""
-        return Response(self, self._ask(want=["text", "latex", "mathml", "modes"]))
+    def response(self, **form):
+        """Derives the response, exactly and with its proof.
+
+        form says how its formulas are written: numbers="exact", "mixed" (long
+        ones as decimals) or "decimal", digits=6 of these, amplitude=True for
+        amplitude and phase, steady_last=True for decaying terms first.
+        """
+        return Response(self, self._ask(form=form, want=["text", "latex", "mathml", "modes"]))
 
     def _ask(self, **more):
         return self.bridge.request({"model": self.text, "assume": self.assume, **more})

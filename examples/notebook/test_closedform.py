@@ -74,6 +74,15 @@ class Answers(unittest.TestCase):
         self.assertEqual((r.proof.residual, r.proof.sides, r.proof.holds), ("0", "0", True))
         self.assertIn("package ", r.go())
 
+    def test_form(self):
+        model = Model("x'' + 2*x' + 5*x = 10\nx(0) = 0\nx'(0) = 0")
+        x = model.response(amplitude=True, steady_last=True).solution["x"]
+        self.assertEqual(x.text, "sqrt(5)*exp(-t)*cos(2*t + pi - atan(1/2)) + 2")
+        x = model.response(numbers="decimal", digits=4, amplitude=True).solution["x"]
+        self.assertEqual(x.text, "2 + 2.236*exp(-t)*cos(2*t + 2.678)")
+        with self.assertRaises(ModelError):
+            model.response(numbers="roman")
+
     def test_values(self):
         with localcontext(prec=60):
             want = Decimal(-1).exp()
