@@ -32,16 +32,15 @@ func answer(ctx context.Context, req request) (object, error) {
 	}
 	var o object
 	o.add("states", r.States())
-	for _, part := range []struct {
-		name string
-		of   func(string) expr.Function
-	}{{"solution", r.State}, {"steady", r.Steady}, {"transient", r.Transient}} {
-		written, err := forms(ctx, req, r, part.of)
+	var parts []object
+	for _, of := range []func(string) expr.Function{r.State, r.Steady, r.Transient} {
+		written, err := forms(ctx, req, r, of)
 		if err != nil {
 			return nil, err
 		}
-		o.add(part.name, written)
+		parts = append(parts, written)
 	}
+	o.add("solution", parts[0])
 	if req.want["go"] {
 		src, err := r.GoSource(ctx, linsys.GoOptions{})
 		if err != nil {
@@ -49,6 +48,8 @@ func answer(ctx context.Context, req request) (object, error) {
 		}
 		o.add("go", string(src))
 	}
+	o.add("steady", parts[1])
+	o.add("transient", parts[2])
 	if req.want["modes"] {
 		list, err := modes(ctx, r.Modes(), req.digits)
 		if err != nil {

@@ -264,7 +264,10 @@ func (req *request) readForm(raw json.RawMessage) error {
 		return badRequest("numbers in form is %s; it may be exact, mixed or decimal", expr.Quote(form.Numbers))
 	}
 	if form.Digits < 1 {
-		return badRequest("digits in form is not a whole number from 1 on")
+		return badRequest("digits in form is not a whole number from 1 to %d", mostDigits)
+	}
+	if form.Digits > mostDigits {
+		return expr.Errorf(expr.LimitExceeded, expr.Pos{}, "digits in form is %d, at most %d are given", form.Digits, mostDigits)
 	}
 	req.form = expr.Form{Numbers: numbers, Digits: form.Digits, Amplitude: form.Amplitude, SteadyLast: form.SteadyLast}
 	return nil
