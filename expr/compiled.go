@@ -230,20 +230,6 @@ func fourTerms(a, four *[4]float64) float64 {
 	return (p[0] + p[1]) + (p[2] + p[3])
 }
 
-// EvalMany returns the values at all times, those of times[k] at k Len(), ..., (k +
-// 1) Len() - 1, in dst if it is long enough, and then allocates nothing.
-func (c *Compiled) EvalMany(dst, times []float64) []float64 {
-	n := c.n * len(times)
-	if len(dst) < n {
-		dst = make([]float64, n)
-	}
-	dst = dst[:n]
-	for k, t := range times {
-		c.Eval(dst[k*c.n:(k+1)*c.n], t)
-	}
-	return dst
-}
-
 const (
 	unit  = 0x1p-53
 	tiny  = math.SmallestNonzeroFloat64

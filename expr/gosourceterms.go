@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"slices"
 	"sort"
 	"strconv"
 	"strings"
@@ -41,21 +42,40 @@ func (g *goWriter[E]) number(x E) (goConst, error) {
 		}
 	}
 	if bitLen(g.k, x) <= 4*mostExact {
-		if g.k.Negative(x) {
-			x = g.k.Neg(x)
-		}
 		n.text = shortText(styleOf(g.k).Node(x))
 	}
 	return n, nil
 }
 
-// shortText writes a tree if that is short, without a sign in front.
+// shortText writes the size of a number if that is short.
 func shortText(n Node) string {
-	s := strings.TrimPrefix(n.String(), "-")
+	if x, ok := encloseNode(n, 64); ok {
+		if sign, _ := x.Sign(); sign < 0 {
+			n = opposite(n)
+		}
+	}
+	s := n.String()
 	if len(s) > mostExact {
 		return ""
 	}
 	return inert(s)
+}
+
+// opposite returns -n, the sign inside of sums where it can be.
+func opposite(n Node) Node {
+	switch v := n.(type) {
+	case Sum:
+		return negatedSum(v)
+	case Quotient:
+		return Quotient{Num: opposite(v.Num), Den: v.Den}
+	case Product:
+		if last := len(v.Factors) - 1; last >= 0 {
+			if s, ok := v.Factors[last].(Sum); ok {
+				return Product{Factors: append(slices.Clone(v.Factors[:last]), negatedSum(s))}
+			}
+		}
+	}
+	return Negate(n)
 }
 
 // goTerm is (c[0] + c[1] t + ...) times the exponential of a rate, with the
@@ -270,10 +290,18 @@ func (r *goRate) nameRoot(name string, paired bool) {
 	switch {
 	case len(name) > mostExact || strings.HasSuffix(name, ", )"):
 	case paired:
-		r.re.text, r.im.text = "re("+name+")", "im("+name+")"
+		r.re.text, r.im.text = sized("re("+name+")", r.re.x), sized("im("+name+")", r.im.x)
 	default:
-		r.re.text = name
+		r.re.text = sized(name, r.re.x)
 	}
+}
+
+// sized writes the size of a number with a name.
+func sized(name string, x float64) string {
+	if x < 0 {
+		return "-" + name
+	}
+	return name
 }
 
 // rate returns the rate of the list at the same root, entering it if it is new.
