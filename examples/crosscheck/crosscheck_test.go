@@ -1,6 +1,3 @@
-// Package crosscheck compares the exact results of the library with the floating
-// point ones of gonum, which shares no line with it: eigenvalues, and the
-// exponential of a matrix for responses.
 package crosscheck
 
 import (
