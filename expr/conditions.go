@@ -371,7 +371,16 @@ func (f Image[E]) exclude(ctx context.Context, l *Conditions) error {
 			return err
 		}
 		if pp.p.Degree() > 2 {
-			if err := l.excludeRepeated(ctx, pp.p); err != nil {
+			w := presenter[Constant]{k: k, style: k}
+			c, ok := w.chainOf(pp.p)
+			if _, q, even := w.squares(pp.p); even && !ok {
+				c, ok = w.chainOf(q)
+			}
+			if ok { // a + 2b cos(alpha): distinct unless b vanishes
+				if err := l.Exclude(ctx, c.b); err != nil {
+					return err
+				}
+			} else if err := l.excludeRepeated(ctx, pp.p); err != nil {
 				return err
 			}
 			for j, other := range m.den {

@@ -77,10 +77,10 @@ func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
 	if best == nil {
 		best = w.named(f, i, part)
 	}
-	for _, form := range []func(primePower[E], func() localPart[E]) Node{w.split, w.inCosines} {
-		if n := form(f.den[i], part); n != nil {
-			best = easier(best, n)
-		}
+	if n := w.split(f.den[i], part); n != nil {
+		best = easier(best, n)
+	} else if n := w.inCosines(f.den[i], part); n != nil && effort(n) <= 2*effort(best) {
+		best = n // chains are written alike in all states, if that does not take much more
 	}
 	if w.numeric != nil && hasRootSum(best) {
 		if n := w.numeric(i); n != nil {

@@ -170,11 +170,19 @@ func (r *report) statesPart(ctx context.Context, d *document) error {
 	return nil
 }
 
-// readCondition reads a condition such as k1 != k2; one in words stays so.
+// readCondition reads a condition such as k1 != k2, or that the roots of a polynomial
+// are distinct.
 func readCondition(s string) relation {
 	list, err := expr.ParseRelations(s, unlimited)
 	if err != nil || len(list) != 1 {
-		return relation{words: s}
+		if poly, ok := strings.CutPrefix(s, "the roots of "); ok {
+			if poly, ok = strings.CutSuffix(poly, " are distinct"); ok {
+				if n, err := expr.Parse(poly, unlimited); err == nil {
+					return relation{words: say("the roots of ", n, " are distinct")}
+				}
+			}
+		}
+		return relation{words: say(s)}
 	}
 	return relation{left: list[0].Left, sign: list[0].Op, right: list[0].Right}
 }

@@ -40,12 +40,12 @@ type paragraph struct {
 }
 
 // relation is an equation, or another relation between two expressions. One that
-// is no formula stands in words.
+// is no formula stands in words, in inline relations only.
 type relation struct {
 	left  expr.Node
 	sign  string // = ≈ ≠ > >= < <=
 	right expr.Node
-	words string
+	words []span
 }
 
 // equations are displayed, one below the other.

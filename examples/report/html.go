@@ -76,7 +76,7 @@ func (w *htmlWriter) block(b any) error {
 	case inline:
 		list := make([]string, len(v))
 		for i, q := range v {
-			if list[i] = html.EscapeString(q.words); q.words == "" {
+			if list[i] = w.spans(q.words); q.words == nil {
 				list[i] = pieces(q.left) + " " + htmlSign(q.sign) + " " + pieces(q.right)
 			}
 		}

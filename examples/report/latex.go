@@ -271,7 +271,7 @@ func (w *texWriter) equation(q relation, short bool) {
 func (w *texWriter) inline(list inline) {
 	parts := make([]string, len(list))
 	for i, q := range list {
-		if parts[i] = texEscape(q.words); q.words == "" {
+		if parts[i] = texSpans(q.words); q.words == nil {
 			parts[i] = "$" + expr.LaTeX(q.left) + " " + latexSign(q.sign) + " " + expr.LaTeX(q.right) + "$"
 		}
 	}
