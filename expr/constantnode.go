@@ -348,6 +348,9 @@ func (d *display) node(x Constant) Node { return d.write(d.element(x)) }
 // write writes an element of the field of the display.
 func (d *display) write(y algebra.Fraction) Node {
 	num, den := d.to.Parts(y)
+	if n, ok := d.surds(num, den); ok {
+		return n
+	}
 	c, top := d.product(num)
 	e, bottom := d.product(den)
 	c = c.Quo(e)

@@ -390,3 +390,19 @@ func TestConstantSubstitution(t *testing.T) {
 		assert.Empty(t, got.Parameters(), src)
 	}
 }
+
+// Square roots of u + v sqrt(m) that are sums of two square roots are read as these.
+func TestDenestedRoots(t *testing.T) {
+	for src, want := range map[string]string{
+		"exp(sqrt(5 + 2*sqrt(6))*t)":  "exp((sqrt(2) + sqrt(3))*t)",
+		"exp(sqrt(5 - 2*sqrt(6))*t)":  "exp((sqrt(3) - sqrt(2))*t)",
+		"sqrt(3 + 2*sqrt(2))*t":       "(1 + sqrt(2))*t",
+		"sqrt(7/2 - 3/2*sqrt(5))*t":   "(3 - sqrt(5))*t/2",
+		"sqrt(12 + 4*sqrt(5))*exp(t)": "(sqrt(2) + sqrt(10))*exp(t)",
+		"sqrt(2 + sqrt(2))*exp(t)":    "sqrt(2 + sqrt(2))*exp(t)",
+	} {
+		f := function(t, src)
+		assert.Equal(t, want, f.String(), src)
+		requireEqual(t, f, function(t, want))
+	}
+}

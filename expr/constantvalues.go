@@ -530,6 +530,19 @@ func (c *Constants) NthRoot(x Constant, q int, at Pos) (Constant, error) {
 		y, err = c.power(y, int64(e))
 		return c.Mul(scale, y), err
 	}
+	if u, v, m, ok := c.binomialSurd(x); ok && q == 2 {
+		if a, b, ok := denested(u, v, m); ok {
+			y, err := c.NthRoot(c.FromRat(a), 2, at)
+			if err != nil {
+				return y, err
+			}
+			z, err := c.NthRoot(c.FromRat(b), 2, at)
+			if v.Sign() < 0 {
+				z = c.Neg(z)
+			}
+			return c.Mul(scale, c.Add(y, z)), err
+		}
+	}
 	coefs := make([]Constant, q+1)
 	coefs[0], coefs[q] = c.Neg(x), c.One()
 	near := func(prec uint) algebra.Ball { return c.Enclose(x, prec+16).Root(q, prec) }

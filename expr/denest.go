@@ -2,6 +2,7 @@ package expr
 
 import (
 	"math/big"
+	"slices"
 
 	"example.org/closedform/algebra"
 )
@@ -126,4 +127,67 @@ func rootNode(x algebra.Rat, q int) Node {
 		root = Power{Base: number, Exp: Num(algebra.NewRat(1, int64(q)))}
 	}
 	return Mul(Num(algebra.RatFromFrac(outer, x.Den())), root)
+}
+
+// surds writes a number that square roots of at least two rational numbers make as a
+// sum of multiples of square roots: sqrt(2) + sqrt(3).
+func (d *display) surds(num, den algebra.Fraction) (Node, bool) {
+	scale, ok := d.to.Rational(den)
+	if !ok {
+		return nil, false
+	}
+	coefs := map[string]algebra.Rat{}
+	var radicands []*big.Int
+	used := map[int]bool{}
+	for _, t := range num.Numerator() {
+		x := algebra.RatFromInt(1)
+		for i, e := range t.Exp[1:] {
+			if e == 0 {
+				continue
+			}
+			g := d.vars[i].generator
+			if g == nil || g.q != 2 {
+				return nil, false
+			}
+			arg, ok := d.from.Rational(g.arg)
+			if !ok {
+				return nil, false
+			}
+			used[i] = true
+			x = x.Mul(arg.Pow(e))
+		}
+		outer, m := algebra.SqrtParts(x)
+		key := m.String()
+		if _, ok := coefs[key]; !ok {
+			radicands = append(radicands, m)
+		}
+		coefs[key] = coefs[key].Add(outer.Mul(algebra.RatFromBigInt(t.Coef)).Quo(scale))
+	}
+	if len(used) < 2 {
+		return nil, false
+	}
+	slices.SortFunc(radicands, (*big.Int).Cmp)
+	var all []algebra.Rat
+	plus := false
+	for _, m := range radicands {
+		x := coefs[m.String()]
+		all, plus = append(all, x), plus || x.Sign() > 0
+	}
+	content := contentOfRats(all...)
+	if !plus {
+		content = content.Neg()
+	}
+	var first, rest []Node
+	for i, m := range radicands {
+		n := Mul(Num(all[i].Quo(content)), sqrtNode(m))
+		if isNumber(n, 0) {
+			continue
+		}
+		if n = signed(n); isNegated(n) {
+			rest = append(rest, n)
+		} else {
+			first = append(first, n)
+		}
+	}
+	return Mul(Num(content), Add(append(first, rest...)...)), true
 }

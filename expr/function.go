@@ -4,7 +4,6 @@ import (
 	"context"
 	"math/big"
 	"slices"
-	"strings"
 
 	"example.org/closedform/algebra"
 )
@@ -113,24 +112,36 @@ func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) 
 	return f, err
 }
 
-// sumByNumbers reads the terms of a sum in groups with the same algebraic numbers:
-// each group may be rational, while a field for the numbers of all is large.
+// sumByNumbers reads the terms of a sum in groups that share algebraic numbers: each
+// group may be rational, while a field for the numbers of all is large.
 func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
-	var keys []string
-	groups := map[string][]Node{}
+	var plain []Node // the terms without such numbers
+	var keys [][]string
+	var groups [][]Node
 	for _, t := range s.Terms {
-		key := strings.Join(numbersIn(t), " ")
-		if groups[key] == nil {
-			keys = append(keys, key)
+		numbers := numbersIn(t)
+		if len(numbers) == 0 {
+			plain = append(plain, t)
+			continue
 		}
-		groups[key] = append(groups[key], t)
+		terms := []Node{t}
+		kept := 0
+		for i := range groups { // join those that share a number with t
+			if slices.ContainsFunc(keys[i], func(k string) bool { return slices.Contains(numbers, k) }) {
+				numbers, terms = append(numbers, keys[i]...), append(terms, groups[i]...)
+				continue
+			}
+			keys[kept], groups[kept] = keys[i], groups[i]
+			kept++
+		}
+		keys, groups = append(keys[:kept], numbers), append(groups[:kept], terms)
 	}
-	if len(keys) < 2 || len(keys) == 2 && groups[""] != nil && !hasRootSum(s) {
+	if len(groups) == 0 || len(groups) == 1 && !hasRootSum(s) {
 		return Function{}, false
 	}
 	var sum exact
-	for _, key := range keys {
-		f, err := functionOf(Add(groups[key]...), variable, nil, limits)
+	for _, terms := range append(groups, plain) {
+		f, err := functionOf(Add(terms...), variable, nil, limits)
 		if err != nil || f.x.field() != nil {
 			return Function{}, false
 		}
@@ -143,8 +154,7 @@ func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
 	return Function{variable, sum}, true
 }
 
-// numbersIn tells the algebraic numbers in a tree, sorted: radicands, and the
-// fractions of pi whose cosines and sines occur.
+// numbersIn tells the algebraic numbers in a tree: radicands, and the fractions of pi whose cosines and sines occur.
 func numbersIn(n Node) []string {
 	var out []string
 	note := func(s string) {
@@ -163,8 +173,13 @@ func numbersIn(n Node) []string {
 				note("pi/" + q.Den.String())
 			}
 		case Power:
-			if e, ok := v.Exp.(Number); ok && !e.Val.IsInt() {
-				note(v.Base.String() + "^1/" + e.Val.Den().String())
+			switch e := v.Exp.(type) {
+			case Number:
+				if !e.Val.IsInt() {
+					note(v.Base.String() + "^1/" + e.Val.Den().String())
+				}
+			case Quotient:
+				note(v.Base.String() + "^1/" + e.Den.String())
 			}
 		}
 		Children(n, func(c Node) bool {
@@ -173,7 +188,6 @@ func numbersIn(n Node) []string {
 		})
 	}
 	visit(n)
-	slices.Sort(out)
 	return out
 }
 

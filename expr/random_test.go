@@ -119,10 +119,16 @@ func (g generator) functionText() string {
 	return strings.Join(terms, " + ")
 }
 
-// rootSumText is a sum over the roots of x^3 - x - 1, x^3 - 2, x^4 + x + 1 or a
-// product with a factor of lower degree.
+// rootSumText is a sum over the roots of a polynomial without radicals, of one
+// whose roots are written in radicals or cosines, or of a product with a factor of
+// lower degree.
 func (g generator) rootSumText() string {
-	p := []string{"z^3 - z - 1", "z^3 - 2", "z^4 + z + 1", "(z^3 - z - 1)*(z + 2)", "(z^3 - 2)*(z^2 + 1)"}[g.Intn(5)]
+	list := []string{
+		"z^3 - z - 1", "z^4 + z + 1", "(z^3 - z - 1)*(z + 2)", "z^6 + 7*z^4 + 11*z^2 + 3",
+		"z^3 - 2", "(z^3 - 2)*(z^2 + 1)", "z^4 + 2", "z^4 + 4*z^2 + 2", "z^4 - z^2 + 2", "z^4 - 10*z^2 + 1", "z^4 + z^3 + z^2 + z + 1",
+		"z^3 + 5*z^2 + 6*z + 1", "z^6 + 5*z^4 + 6*z^2 + 1",
+	}
+	p := list[g.Intn(len(list))]
 	body := fmt.Sprintf("(%s*z + %s)*t^%d*exp(z*t)", g.smallRat(), g.smallRat(), g.Intn(3))
 	if g.Intn(2) == 0 {
 		body += "/(z^2 + 5)"
