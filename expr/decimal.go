@@ -173,8 +173,7 @@ func (w *decimalWriter[E]) term(part localPart[E], roots *algebra.RootSet, r int
 		}
 	} else if !t.real && w.doubtful(rate.at.Re) {
 		var err error
-		s := algebra.Monomial[E](k, k.One(), 1)
-		if t.zeroRe, err = w.imaginary(part, roots, r, s); err != nil {
+		if t.zeroRe, err = algebra.IsImaginary(w.ctx, k, part.p, roots, r); err != nil {
 			return t, err
 		}
 	}

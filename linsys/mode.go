@@ -49,7 +49,7 @@ func (a *answerOver[E]) modes(ctx context.Context, states []string) ([]Mode, err
 			}
 			if numbers == nil && !symbolic {
 				var err error
-				if r.imaginary, err = imaginary(ctx, a.k, f.P, roots, j); err != nil {
+				if r.imaginary, err = algebra.IsImaginary(ctx, a.k, f.P, roots, j); err != nil {
 					return nil, wrapCancel(err)
 				}
 			}
@@ -111,35 +111,4 @@ func (e Eigenvalue) Enclose(ctx context.Context, prec uint) (algebra.ComplexBall
 		z.Re = algebra.Ball{}
 	}
 	return z, wrapCancel(err)
-}
-
-// imaginary tells whether the real part of a root z of p is 0, for a p that is
-// even or odd: then -z and with it -conj(z) is a root as well, and it is z when
-// the balls of no other roots meet it.
-func imaginary[E any](ctx context.Context, k algebra.Scalars[E], p algebra.Poly[E], roots *algebra.RootSet, j int) (bool, error) {
-	for i := p.Degree() - 1; i >= 0; i -= 2 {
-		if !k.IsZero(p.Coef(i)) {
-			return false, nil
-		}
-	}
-	for prec := uint(64); ; prec *= 2 {
-		z, err := roots.Enclose(ctx, j, prec)
-		if err != nil {
-			return false, err
-		}
-		mirror := z.Conj().Neg()
-		met, last := 0, 0
-		for i := range roots.Len() {
-			y, err := roots.Enclose(ctx, i, prec)
-			if err != nil {
-				return false, err
-			}
-			if y.Overlaps(mirror) {
-				met, last = met+1, i
-			}
-		}
-		if met == 1 {
-			return last == j, nil
-		}
-	}
 }
