@@ -102,6 +102,25 @@ func TestCompileRefuses(t *testing.T) {
 	})
 }
 
+// Slow rates side by side keep their digits at the times of faster ones, and at the
+// time 1.
+func TestCompiledSlowRates(t *testing.T) {
+	for _, src := range []string{
+		"1e12*(1 - exp(-t/1e12))", "1e12*(1 - exp(-t/1e12)) + exp(-t)", "1e6*(exp(-t/1e6) - exp(-2*t/1e6)) + exp(-3*t)", "1e9*sin(t/1e9) + cos(20*t)",
+	} {
+		f := function(t, src)
+		c, err := expr.Compile(t.Context(), f)
+		require.NoError(t, err)
+		for _, at := range []float64{1, 30, 1e3, 1e5} {
+			b, err := f.Enclose(t.Context(), new(big.Rat).SetFloat64(at), 200)
+			require.NoError(t, err)
+			bound := c.Bound(nil, at)[0]
+			assert.Less(t, bound, 1e-14*(1+at), "%s at %g", src, at)
+			assert.LessOrEqual(t, beyond(c.Eval(nil, at)[0], b).Cmp(big.NewFloat(bound)), 0, "%s at %g", src, at)
+		}
+	}
+}
+
 // Many times together have the values that each has alone, whatever parts they take.
 func TestEvalMany(t *testing.T) {
 	c, err := expr.Compile(t.Context(), function(t, "exp(-t)*cos(3*t) - t^2*exp(-t/3) + sin(t)/7"),

@@ -20,10 +20,12 @@ type rateSeries struct {
 }
 
 // seriesTerms is the most terms of a Taylor series, cancellation the factor from
-// which on one is used, and seriesReach the largest |L - c| |t|.
+// which on one is used, atUnitTime that at the time 1, and seriesReach the largest
+// |L - c| |t|.
 const (
 	seriesTerms  = 48
 	cancellation = 1 << 10
+	atUnitTime   = 1 << 30
 	seriesReach  = 2
 )
 
@@ -60,7 +62,9 @@ func (c *compiler[E]) amplitudes(t compilerTerm) []complex128 {
 
 // estimateSeries returns the series of a group if its terms cancel, with b in
 // float64, otherwise nil. They are weighed at the time 1/|c|, or where the series
-// ends if that is earlier.
+// ends if that is earlier; before that at the times 1/|L| of all rates L of the
+// program, and with a higher mark at the time 1, the unit that the model was stated
+// in.
 func (c *compiler[E]) estimateSeries(g *rateGroup) *rateSeries {
 	s := &rateSeries{}
 	flat := false
@@ -86,7 +90,15 @@ func (c *compiler[E]) estimateSeries(g *rateGroup) *rateSeries {
 	}
 	_, e := math.Frexp(seriesReach / spread)
 	s.scale = math.Ldexp(1, 1-e)
-	w := min(1, s.scale/cmplx.Abs(s.center))
+	weights := map[float64]float64{min(1, s.scale/cmplx.Abs(s.center)): cancellation}
+	if s.scale < 1 {
+		weights[s.scale] = atUnitTime
+	}
+	for _, r := range c.rates {
+		if w := s.scale / cmplx.Abs(r.at()); w < 1 {
+			weights[w] = cancellation
+		}
+	}
 	s.b = make([][]complex128, len(c.terms))
 	cancels := false
 	for i, terms := range c.terms {
@@ -109,8 +121,10 @@ func (c *compiler[E]) estimateSeries(g *rateGroup) *rateSeries {
 				s.b[i][q] = complex(real(z), 0)
 			}
 		}
-		parts := c.size(g, i, w/s.scale)
-		cancels = cancels || parts <= math.MaxFloat64 && parts >= cancellation*sizeAt(s.b[i], w)
+		for w, factor := range weights {
+			parts := c.size(g, i, w/s.scale)
+			cancels = cancels || parts <= math.MaxFloat64 && parts >= factor*sizeAt(s.b[i], w)
+		}
 	}
 	if !cancels {
 		return nil
