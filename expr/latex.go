@@ -28,10 +28,13 @@ func LaTeXName(name string) string {
 }
 
 // splitName splits a name into what stands on the line and its subscript:
-// trailing digits, or what follows the first underscore.
+// trailing digits, and what follows the first underscore.
 func splitName(name string) (base, sub string) {
 	base, sub, _ = strings.Cut(name, "_")
 	sub = strings.ReplaceAll(strings.Trim(sub, "_"), "_", ",")
+	if i := len(strings.TrimRightFunc(base, isIndex)); sub != "" && i > 0 && i < len(base) { // x1_p
+		base, sub = base[:i], base[i:]+","+sub
+	}
 	if sub == "" {
 		base = strings.TrimRight(name, "_")
 		if i := len(strings.TrimRightFunc(base, isIndex)); i > 0 {
@@ -207,6 +210,8 @@ func (latex) product(factors []piece) string {
 			switch {
 			case f.text[0] >= '0' && f.text[0] <= '9' || strings.HasPrefix(f.text, `\frac`):
 				b.WriteString(` \cdot`)
+			case strings.HasPrefix(factors[i-1].text, `\sqrt`) && !ownSpace(f.text):
+				b.WriteString(` \,`) // the bar of a root ends before what follows
 			case strings.HasPrefix(f.text, `\mathrm`) || strings.HasPrefix(factors[i-1].text, `\mathrm`):
 				b.WriteString(` \,`) // names of several letters stand apart
 			}
@@ -215,6 +220,16 @@ func (latex) product(factors []piece) string {
 		b.WriteString(f.text)
 	}
 	return b.String()
+}
+
+// ownSpace tells whether a factor stands apart from a root before it by itself.
+func ownSpace(text string) bool {
+	for _, s := range []string{`\sqrt`, `\sin`, `\cos`, `\arctan`, `\left`, "("} {
+		if strings.HasPrefix(text, s) {
+			return true
+		}
+	}
+	return false
 }
 
 func (l latex) quotient(num, den piece) piece {
@@ -226,6 +241,13 @@ func (l latex) quotient(num, den piece) piece {
 
 func (l latex) power(base, exp piece) piece {
 	return piece{l.wrap(base, precAtom) + "^{" + exp.text + "}", precPower}
+}
+
+func (l latex) root(base piece, order string) (piece, bool) {
+	if order == "2" {
+		return piece{`\sqrt{` + base.text + "}", precAtom}, true
+	}
+	return piece{`\sqrt[` + order + "]{" + base.text + "}", precAtom}, true
 }
 
 func (l latex) call(fn string, arg piece, exp string) piece {

@@ -38,7 +38,7 @@ func TestLaTeX(t *testing.T) {
 		{"sin(t/2)", `\sin\left(\frac{t}{2}\right)`},
 		{"sin^2(t)", `\sin^{2}(t)`},
 		{"sinh(t) + cosh(t)", `\sinh(t) + \cosh(t)`},
-		{"sqrt(3)*t/2", `\frac{\sqrt{3} t}{2}`},
+		{"sqrt(3)*t/2", `\frac{\sqrt{3} \, t}{2}`},
 		{"step(t - 2)*impulse(t)", `\operatorname{step}(t - 2) \delta(t)`},
 		{"x'' + 2*x' + x", `x'' + 2 x' + x`},
 		{"x''''", `x^{(4)}`},
@@ -64,7 +64,7 @@ func TestLaTeX(t *testing.T) {
 		assert.Equal(t, c.want, expr.LaTeX(n), c.src)
 	}
 	assert.Equal(t, `\frac{1}{3} t^{2} e^{-t/2}`, function(t, "t^2*exp(-t/2)/3").LaTeX())
-	assert.Equal(t, `2 e^{-t/2} \cos\left(\frac{\sqrt{3} t}{2}\right)`, function(t, "sumroots(z, z^2+z+1, exp(z*t))").LaTeX())
+	assert.Equal(t, `2 e^{-t/2} \cos\left(\frac{\sqrt{3} \, t}{2}\right)`, function(t, "sumroots(z, z^2+z+1, exp(z*t))").LaTeX())
 }
 
 func TestLaTeXName(t *testing.T) {

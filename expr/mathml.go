@@ -124,9 +124,12 @@ func (mathml) product(factors []piece) string {
 	var b strings.Builder
 	for i, f := range factors {
 		if i > 0 {
-			if strings.HasPrefix(f.text, "<mn>") || strings.HasPrefix(f.text, "<mfrac>") {
+			switch {
+			case strings.HasPrefix(f.text, "<mn>") || strings.HasPrefix(f.text, "<mfrac>"):
 				b.WriteString("<mo>⋅</mo>")
-			} else {
+			case strings.Contains(f.text, "<mo>\u2061</mo>") && strings.HasPrefix(f.text, "<mrow><mi>") || strings.HasPrefix(f.text, "<mrow><msup><mi>"):
+				b.WriteString("<mo>\u2062</mo><mspace width=\"0.1667em\"></mspace>") // a function stands apart
+			default:
 				b.WriteString("<mo>\u2062</mo>") // invisible times
 			}
 		}
@@ -143,7 +146,17 @@ func (m mathml) quotient(num, den piece) piece {
 }
 
 func (m mathml) power(base, exp piece) piece {
+	if inner, ok := strings.CutPrefix(base.text, "<msub>"); ok && base.prec == precAtom {
+		return piece{"<msubsup>" + strings.TrimSuffix(inner, "</msub>") + mrow(exp.text) + "</msubsup>", precPower}
+	}
 	return piece{"<msup>" + mrow(m.wrap(base, precAtom)) + mrow(exp.text) + "</msup>", precPower}
+}
+
+func (m mathml) root(base piece, order string) (piece, bool) {
+	if order == "2" {
+		return piece{"<msqrt>" + base.text + "</msqrt>", precAtom}, true
+	}
+	return piece{"<mroot>" + mrow(base.text) + "<mn>" + order + "</mn></mroot>", precAtom}, true
 }
 
 func (m mathml) call(fn string, arg piece, exp string) piece {

@@ -19,6 +19,7 @@ func mathmlText(t *testing.T, s string) string {
 	t.Helper()
 	known := map[string]int{ // with the number of children where it is fixed
 		"math": 0, "mrow": 0, "mi": 0, "mn": 0, "mo": 0, "mfrac": 2, "msup": 2, "msub": 2, "msqrt": 0, "munder": 2,
+		"mroot": 2, "msubsup": 3, "mspace": 0,
 	}
 	var text strings.Builder
 	var open []string
@@ -36,7 +37,7 @@ func mathmlText(t *testing.T, s string) string {
 			_, ok := known[v.Name.Local]
 			require.True(t, ok, "<%s> in %s", v.Name.Local, s)
 			for _, a := range v.Attr {
-				require.Contains(t, []string{"xmlns", "form"}, a.Name.Local, s)
+				require.Contains(t, []string{"xmlns", "form", "width"}, a.Name.Local, s)
 			}
 			if len(children) > 0 {
 				children[len(children)-1]++

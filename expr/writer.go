@@ -35,6 +35,7 @@ type notation interface {
 	product(factors []piece) string
 	quotient(num, den piece) piece
 	power(base, exp piece) piece
+	root(base piece, order string) (piece, bool) // false where a power is written
 	call(fn string, arg piece, exp string) piece // exp is "" or a whole exponent
 	rootSum(v, poly string, body piece) piece
 	matrix(cells [][]string) string // in parentheses of its own
@@ -110,6 +111,11 @@ func write(n Node, w notation) piece {
 	case Quotient:
 		return w.quotient(write(v.Num, w), write(v.Den, w))
 	case Power:
+		if x, ok := v.Exp.(Number); ok && x.Val.Sign() > 0 && x.Val.Num().IsInt64() && x.Val.Num().Int64() == 1 && !x.Val.IsInt() {
+			if p, ok := w.root(write(v.Base, w), x.Val.Den().String()); ok {
+				return p
+			}
+		}
 		if f, ok := v.Base.(Call); ok && powered[f.Func] {
 			if x, ok := v.Exp.(Number); ok && x.Val.IsInt() && x.Val.Sign() > 0 {
 				return w.call(f.Func, write(f.Arg, w), write(v.Exp, w.exponent()).text)
@@ -118,7 +124,7 @@ func write(n Node, w notation) piece {
 		return w.power(write(v.Base, w), write(v.Exp, w.exponent()))
 	case Call:
 		if v.Func == "exp" {
-			return w.call(v.Func, write(v.Arg, w.exponent()), "")
+			return w.call(v.Func, write(inOneFraction(v.Arg), w.exponent()), "")
 		}
 		return w.call(v.Func, write(v.Arg, w), "")
 	case RootSum:
@@ -127,6 +133,27 @@ func write(n Node, w notation) piece {
 		return writeMatrix(v, w)
 	}
 	panic("expr: unknown node")
+}
+
+// inOneFraction writes -2t/5 in place of -(2/5)t in the argument of an exponential,
+// where fractions have no bars.
+func inOneFraction(n Node) Node {
+	switch v := n.(type) {
+	case Neg:
+		return Neg{X: inOneFraction(v.X)}
+	case Sum:
+		terms := make([]Node, len(v.Terms))
+		for i, t := range v.Terms {
+			terms[i] = inOneFraction(t)
+		}
+		return Sum{Terms: terms}
+	case Product:
+		if x, ok := v.Factors[0].(Number); ok && !x.Val.IsInt() && x.Val.Sign() > 0 {
+			top := append([]Node{Num(algebra.RatFromBigInt(x.Val.Num()))}, v.Factors[1:]...)
+			return Quotient{Num: Mul(top...), Den: Num(algebra.RatFromBigInt(x.Val.Den()))}
+		}
+	}
+	return n
 }
 
 // powered are the functions whose powers are written at the name: sin^2(x).
@@ -203,6 +230,8 @@ func (t text) quotient(num, den piece) piece {
 func (t text) power(base, exp piece) piece {
 	return piece{t.wrap(base, precAtom) + "^" + t.wrap(exp, precAtom), precPower}
 }
+
+func (text) root(piece, string) (piece, bool) { return piece{}, false }
 
 func (t text) call(fn string, arg piece, exp string) piece {
 	if exp != "" {
