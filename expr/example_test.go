@@ -40,7 +40,7 @@ func ExampleParseFunction() {
 	}
 	// Output:
 	// 1 <nil>
-	// exp(2*t) - 4 + 4*exp(-2*t) <nil>
+	// exp(2*t) - 4*(1 - exp(-2*t)) <nil>
 	// sin(2*t) + sin(4*t) - sin(6*t) <nil>
 }
 

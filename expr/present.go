@@ -54,18 +54,30 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 		}
 		return w.before(p, q)
 	})
-	var terms []Node
+	// The terms that decay and the others, which are one list unless a form keeps
+	// them apart.
+	var lists [2][]Node
 	for _, i := range order {
+		at := 0
+		if w.form.SteadyLast && !w.decays(f.den[i].p) {
+			at = 1
+		}
+		var n Node
 		switch f.den[i].p.Degree() {
 		case 1:
-			terms = append(terms, w.linear(local(i)))
+			n = w.linear(local(i))
 		case 2:
-			terms = append(terms, w.quadratic(local(i)))
+			n = w.quadratic(local(i))
 		default:
-			terms = append(terms, w.ofHighDegree(f, i))
+			n = w.ofHighDegree(f, i)
+		}
+		if s, ok := n.(Sum); ok {
+			lists[at] = append(lists[at], s.Terms...)
+		} else {
+			lists[at] = append(lists[at], n)
 		}
 	}
-	return Add(terms...)
+	return Add(append(w.grouped(lists[0]), w.grouped(lists[1])...)...)
 }
 
 // ofHighDegree presents the part of a prime of degree 3 or more in the way of
@@ -206,7 +218,11 @@ func (w presenter[E]) scaled(p algebra.Poly[E], factors ...Node) Node {
 		return Mul(append([]Node{w.Node(p.Coef(0))}, factors...)...)
 	}
 	content, prim := w.contentOf(p, w.time)
-	return Mul(append([]Node{w.Node(content), prim}, factors...)...)
+	whole := Mul(append([]Node{w.Node(content), prim}, factors...)...)
+	// Or with what is above the bar in front only: c (qt/V + 1).
+	top := w.above(content)
+	inside := w.polyIn(p.Scale(w.inverse(top)), w.time, w.isAscending(p))
+	return easier(whole, Mul(append([]Node{w.Node(top), inside}, factors...)...))
 }
 
 func (w presenter[E]) power(i int) Node {
@@ -243,17 +259,27 @@ func (w presenter[E]) contentOf(p algebra.Poly[E], v Node) (content E, prim Node
 	if minus {
 		content = w.k.Neg(content)
 	}
-	q := p.Scale(w.inverse(content))
+	return content, w.polyIn(p.Scale(w.inverse(content)), v, ascending)
+}
+
+// isAscending tells whether p is written in ascending order.
+func (w presenter[E]) isAscending(p algebra.Poly[E]) bool {
+	_, ascending := w.writtenSign(p)
+	return ascending
+}
+
+// polyIn writes a polynomial in v in either order.
+func (w presenter[E]) polyIn(p algebra.Poly[E], v Node, ascending bool) Node {
 	if !ascending {
-		return content, w.poly(q, v)
+		return w.poly(p, v)
 	}
 	var terms []Node
-	for i := range q.Degree() + 1 {
-		if c := q.Coef(i); !w.k.IsZero(c) {
+	for i := range p.Degree() + 1 {
+		if c := p.Coef(i); !w.k.IsZero(c) {
 			terms = append(terms, w.term(c, v, i))
 		}
 	}
-	return content, Add(terms...)
+	return Add(terms...)
 }
 
 func (w presenter[E]) inverse(x E) E {
@@ -462,11 +488,26 @@ func (w presenter[E]) surd(a, b E, root Node) Node {
 		return Mul(w.Node(b), root)
 	}
 	content := w.Content(a, b)
-	if w.k.Negative(a) && w.k.Negative(b) {
+	if w.k.Negative(a) && (w.k.Negative(b) || w.isBelowZero(a, b, root)) {
 		content = w.k.Neg(content)
 	}
 	inv := w.inverse(content)
-	return Mul(w.Node(content), Sum{Terms: []Node{w.Node(w.k.Mul(a, inv)), Mul(w.Node(w.k.Mul(b, inv)), root)}})
+	first, second := signed(w.Node(w.k.Mul(a, inv))), signed(Mul(w.Node(w.k.Mul(b, inv)), root))
+	if _, isRoot := root.(Call); isRoot && isNegated(first) && !isNegated(second) {
+		first, second = second, first // but not of a complex number
+	}
+	return Mul(w.Node(content), Add(first, second))
+}
+
+// isBelowZero tells whether a + b root is known to be negative, so that it is written
+// as -(|a| - |b| root).
+func (w presenter[E]) isBelowZero(a, b E, root Node) bool {
+	x, ok := encloseNode(Add(w.Node(a), Mul(w.Node(b), root)), 64)
+	if !ok {
+		return false
+	}
+	sign, _ := x.Sign()
+	return sign < 0
 }
 
 // named presents the part of a prime of degree 3 or more as a sum over its

@@ -6,7 +6,7 @@ import "example.org/closedform/algebra"
 // function the one of least effort is taken, the first among equals. It counts
 //
 //   - size: one for each name, function, fraction bar and sign,
-//   - digits: one for each digit of a number,
+//   - digits: one for each digit of a number, two from the fifth on,
 //   - nesting: a root inside a root, and a fraction inside a fraction, count
 //     twice with all they hold,
 //   - search: a sum over the roots of a polynomial counts thrice with all it holds
@@ -21,11 +21,11 @@ type measure struct{ inRoot, inFraction bool }
 func (m measure) of(n Node) int {
 	switch v := n.(type) {
 	case Number:
-		digits := len(v.Val.Abs().Num().String())
+		cost := effortOfDigits(len(v.Val.Abs().Num().String()))
 		if !v.Val.IsInt() {
-			digits += 1 + len(v.Val.Den().String())
+			cost += 1 + effortOfDigits(len(v.Val.Den().String()))
 		}
-		return digits
+		return cost
 	case Decimal:
 		return len(v.Text)
 	case Sum:
@@ -64,6 +64,8 @@ func (m measure) of(n Node) int {
 	})
 	return cost
 }
+
+func effortOfDigits(n int) int { return n + max(0, n-4) }
 
 func doubled(cost int, twice bool) int {
 	if twice {

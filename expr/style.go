@@ -16,6 +16,8 @@ type style[E any] interface {
 	// Content returns the common factor that is taken out of a sum, without a
 	// sign, 1 for zeros.
 	Content(x ...E) E
+	// above returns the numerator of a content.
+	above(x E) E
 	// Sign returns the sign of x where it is decided.
 	Sign(x E) (int, bool)
 	// weakSign is Sign for numbers that may be 0 as well: 1 says x >= 0.
@@ -45,6 +47,7 @@ type rationalStyle struct{}
 func (rationalStyle) expanded(x algebra.Rat) Node          { return Num(x) }
 func (rationalStyle) Node(x algebra.Rat) Node              { return Num(x) }
 func (rationalStyle) Content(x ...algebra.Rat) algebra.Rat { return contentOfRats(x...) }
+func (rationalStyle) above(x algebra.Rat) algebra.Rat      { return algebra.RatFromBigInt(x.Num()) }
 func (rationalStyle) Sign(x algebra.Rat) (int, bool)       { return x.Sign(), true }
 func (rationalStyle) weakSign(x algebra.Rat) (int, bool)   { return x.Sign(), true }
 func (rationalStyle) typicalSign(x algebra.Rat) int        { return x.Sign() }
@@ -70,6 +73,12 @@ func contentOfRats(x ...algebra.Rat) algebra.Rat {
 		return algebra.RatFromInt(1)
 	}
 	return algebra.RatFromFrac(num, den)
+}
+
+// above returns the numerator of x.
+func (c *Constants) above(x Constant) Constant {
+	num, _ := c.Parts(x)
+	return num
 }
 
 // approximate returns x as a float64 where it is a number; what the assumptions

@@ -105,7 +105,7 @@ func ExampleResponse_When() {
 	equal, _ := response.When(ctx, "ka = ke")
 	fmt.Println(equal.State("body"))
 	// Output:
-	// D*ka/(ka - ke)*exp(-ke*t) - D*ka/(ka - ke)*exp(-ka*t) [ka != ke]
+	// D*ka/(ka - ke)*(exp(-ke*t) - exp(-ka*t)) [ka != ke]
 	// D*ke*t*exp(-ke*t)
 }
 
@@ -121,8 +121,8 @@ func ExampleModel_Assume() {
 	of, formula, _ = response.Conditions(ctx)
 	fmt.Println(response.State("q"), of, formula)
 	// Output:
-	// F/k - F/k*cos(sqrt(k/m)*t) [m != 0] [k != 0]
-	// F/k - F/k*cos(sqrt(k/m)*t) [] []
+	// F/k*(1 - cos(sqrt(k/m)*t)) [m != 0] [k != 0]
+	// F/k*(1 - cos(sqrt(k/m)*t)) [] []
 }
 
 // Symbols get values later, numbers or expressions.
@@ -167,7 +167,7 @@ func ExampleFromMatrices() {
 	// Output:
 	// s^2 + 2 [sqrt(2)*i -sqrt(2)*i]
 	// s^2 + 4 [2*i -2*i]
-	// u = 1/2*cos(sqrt(2)*t) + 1/2*cos(2*t)
+	// u = 1/2*(cos(sqrt(2)*t) + cos(2*t))
 }
 
 // Matrices may hold symbols.
@@ -288,7 +288,7 @@ func ExampleResponse_GoSource_symbols() {
 	// // Oral returns the states at the time t for parameters that are valid:
 	// //
 	// //	x = exp(-ka*t)
-	// //	y = ka/(ka - ke)*exp(-ke*t) - ka/(ka - ke)*exp(-ka*t)
+	// //	y = ka/(ka - ke)*(exp(-ke*t) - exp(-ka*t))
 	// //
 	// // Where rates of these formulas coincide, or nearly do, the code still holds and
 	// // needs no case distinction.
