@@ -368,11 +368,22 @@ func (w *decimalWriter[E]) write(t decimalTerm) (Node, bool) {
 		if !ok {
 			return nil, false
 		}
+		sign, certain := a.Sign()
+		if !certain {
+			return nil, false
+		}
+		if sign < 0 {
+			a, b = a.Neg(), b.Neg()
+		}
 		phase, ok := w.number(decimalNumber{ball: algebra.Atan2(b, a, prec)})
 		if !ok {
 			return nil, false
 		}
-		return Mul(r, exp, Apply("cos", Add(angle, Negate(phase)))), true
+		n := Mul(r, exp, Apply("cos", Add(angle, Negate(phase))))
+		if sign < 0 {
+			n = Negate(n)
+		}
+		return n, true
 	}
 	c, s := Mul(cos, Apply("cos", angle)), Mul(sin, Apply("sin", angle))
 	switch {

@@ -10,8 +10,8 @@ import (
 type Form struct {
 	Numbers Numbers
 	Digits  int // significant digits of decimals; default 6
-	// Amplitude writes R e^(at) cos(bt - phi), R > 0, in place of a cosine and a
-	// sine. Exact forms leave terms with powers of the time, sums over roots, those
+	// Amplitude writes +-R e^(at) cos(bt - phi), |phi| < pi/2, in place of a cosine
+	// and a sine. Exact forms leave terms with powers of the time, sums over roots, those
 	// where symbols leave the sign of a coefficient open, and those where R would be
 	// a root in a root.
 	Amplitude bool
@@ -29,9 +29,10 @@ const (
 	// their end: 3, 0.25.
 	DecimalNumbers
 	// MixedNumbers writes a number exactly where that takes little effort to read,
-	// and as a rounded decimal otherwise, every number for itself; sums over named
-	// roots become oscillations and exponentials in decimals. Every [Decimal] of the
-	// tree is rounded, everything else is exact.
+	// and as a rounded decimal otherwise; where one is rounded, roots and cosines are
+	// rounded too, and short fractions stay. Sums over named roots become
+	// oscillations and exponentials in decimals. Every [Decimal] of the tree is
+	// rounded, everything else is exact.
 	MixedNumbers
 )
 
@@ -120,7 +121,7 @@ func (f *overField[E]) written(ctx context.Context, variable string, form Form) 
 	}
 	n := Add(terms...)
 	if form.Numbers == MixedNumbers {
-		n = mixer{form.Digits}.node(n)
+		n = mixed(n, form.Digits)
 	}
 	return n, ctx.Err()
 }

@@ -23,10 +23,10 @@ func TestAmplitude(t *testing.T) {
 	for _, c := range []struct{ src, want string }{
 		{"3*cos(2*t) + 4*sin(2*t)", "5*cos(2*t - atan(4/3))"},
 		{"3*cos(2*t) - 4*sin(2*t)", "5*cos(2*t + atan(4/3))"},
-		{"-3*cos(2*t) + 4*sin(2*t)", "5*cos(2*t - pi + atan(4/3))"},
-		{"-3*cos(2*t) - 4*sin(2*t)", "5*cos(2*t + pi - atan(4/3))"},
+		{"-3*cos(2*t) + 4*sin(2*t)", "-5*cos(2*t + atan(4/3))"},
+		{"-3*cos(2*t) - 4*sin(2*t)", "-5*cos(2*t - atan(4/3))"},
 		{"exp(-t)*(cos(3*t) + sin(3*t))", "sqrt(2)*exp(-t)*cos(3*t - pi/4)"},
-		{"-cos(t) + sin(t)", "sqrt(2)*cos(t - 3*pi/4)"},
+		{"-cos(t) + sin(t)", "-sqrt(2)*cos(t + pi/4)"},
 		{"cos(t) - sqrt(3)*sin(t)", "2*cos(t + pi/3)"},
 		{"cos(sqrt(2)*t) + sin(sqrt(2)*t)", "sqrt(2)*cos(sqrt(2)*t - pi/4)"},
 		{"exp(-t)*(cos(sqrt(2)*t) + 5*sin(sqrt(2)*t)/sqrt(2))", "3*sqrt(6)/2*exp(-t)*cos(sqrt(2)*t - atan(5*sqrt(2)/2))"},
@@ -69,7 +69,7 @@ func TestMixed(t *testing.T) {
 	for _, c := range []struct{ src, want string }{
 		{"exp(-t/3)/7 - 12345678/9876541*exp(-2*t)", "1/7*exp(-t/3) - 1.2500*exp(-2*t)"},
 		{"(13 - 3*sqrt(13))/13*exp(-(3 + sqrt(13))*t/2)", "(13 - 3*sqrt(13))/13*exp(-(3 + sqrt(13))*t/2)"},
-		{"(13873 - 3421*sqrt(13))/1312*exp(-(3 + sqrt(13))*t/2)", "1.1726*exp(-(3 + sqrt(13))*t/2)"},
+		{"(13873 - 3421*sqrt(13))/1312*exp(-(3 + sqrt(13))*t/2)", "1.1726*exp(-3.3028*t)"},
 		{"cos((1387 + 34*sqrt(13))*t/2341)", "cos(0.64485*t)"},
 		{"sumroots(z, z^3 - z - 1, exp(z*t)) + exp(-t)", "exp(-t) + exp(1.3247*t) + 2*exp(-0.66236*t)*cos(0.56228*t)"},
 		{"k*(13873 - 3421*sqrt(13))/1312*exp(-t)/m", "1.1726*k/m*exp(-t)"},
@@ -122,7 +122,7 @@ func ExampleFunction_Write() {
 	}
 	// Output:
 	// 2 - exp(-t)*(2*cos(2*t) + sin(2*t)) + 35512/2261131*exp(-3*t) <nil>
-	// sqrt(5)*exp(-t)*cos(2*t + pi - atan(1/2)) + 35512/2261131*exp(-3*t) + 2 <nil>
+	// -sqrt(5)*exp(-t)*cos(2*t - atan(1/2)) + 35512/2261131*exp(-3*t) + 2 <nil>
 	// 2 - exp(-t)*(2*cos(2*t) + sin(2*t)) + 0.01571*exp(-3*t) <nil>
-	// 2 + 2.236*exp(-t)*cos(2*t + 2.678) + 0.01571*exp(-3*t) <nil>
+	// 2 - 2.236*exp(-t)*cos(2*t - 0.4636) + 0.01571*exp(-3*t) <nil>
 }

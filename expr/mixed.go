@@ -3,8 +3,52 @@ package expr
 import "example.org/closedform/algebra"
 
 // mixer replaces the numbers of a tree that take more than mostExactEffort to read by
-// decimals.
-type mixer struct{ digits int }
+// decimals; where there is one, so it does with all roots, cosines and sines.
+type mixer struct {
+	digits   int
+	rounding bool // there are decimals
+}
+
+// mixed returns a tree with decimals in place of long numbers.
+func mixed(n Node, digits int) Node {
+	out := mixer{digits: digits}.node(n)
+	if holdsDecimal(out) {
+		return mixer{digits: digits, rounding: true}.node(n)
+	}
+	return out
+}
+
+func holdsDecimal(n Node) bool {
+	_, found := n.(Decimal)
+	Children(n, func(c Node) bool {
+		found = found || holdsDecimal(c)
+		return !found
+	})
+	return found
+}
+
+// staysExact tells whether a number is written as it is.
+func (m mixer) staysExact(n Node) bool {
+	return effort(n) <= mostExactEffort && (!m.rounding || isPlain(n))
+}
+
+// isPlain tells whether neither roots nor functions occur in a number.
+func isPlain(n Node) bool {
+	switch v := n.(type) {
+	case Call:
+		return false
+	case Power:
+		if e, ok := v.Exp.(Number); !ok || !e.Val.IsInt() {
+			return false
+		}
+	}
+	plain := true
+	Children(n, func(c Node) bool {
+		plain = isPlain(c)
+		return plain
+	})
+	return plain
+}
 
 func (m mixer) node(n Node) Node {
 	if isNumeric(n) {
@@ -31,7 +75,7 @@ func (m mixer) node(n Node) Node {
 
 // number writes a number, exactly if it is short.
 func (m mixer) number(n Node) Node {
-	if effort(n) <= mostExactEffort {
+	if m.staysExact(n) {
 		return n
 	}
 	if x, ok := n.(Number); ok {
@@ -53,7 +97,7 @@ func (m mixer) number(n Node) Node {
 func (m mixer) product(n Node) Node {
 	above, below, rest := m.strip(n)
 	number := Div(Mul(above...), Mul(below...))
-	if effort(number) <= mostExactEffort {
+	if m.staysExact(number) {
 		return m.inside(n)
 	}
 	return Mul(m.number(number), rest)

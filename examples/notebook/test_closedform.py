@@ -77,9 +77,9 @@ class Answers(unittest.TestCase):
     def test_form(self):
         model = Model("x'' + 2*x' + 5*x = 10\nx(0) = 0\nx'(0) = 0")
         x = model.response(amplitude=True, steady_last=True).solution["x"]
-        self.assertEqual(x.text, "sqrt(5)*exp(-t)*cos(2*t + pi - atan(1/2)) + 2")
+        self.assertEqual(x.text, "-sqrt(5)*exp(-t)*cos(2*t - atan(1/2)) + 2")
         x = model.response(numbers="decimal", digits=4, amplitude=True).solution["x"]
-        self.assertEqual(x.text, "2 + 2.236*exp(-t)*cos(2*t + 2.678)")
+        self.assertEqual(x.text, "2 - 2.236*exp(-t)*cos(2*t - 0.4636)")
         with self.assertRaises(ModelError):
             model.response(numbers="roman")
 
