@@ -1,6 +1,7 @@
 package expr
 
 import (
+	"math"
 	"math/big"
 	"sort"
 
@@ -20,7 +21,8 @@ const mostCosines = 6
 // known.
 type chain[E any] struct {
 	a, b   E
-	angles []algebra.Rat // alpha/pi, rising
+	angles []algebra.Rat             // alpha/pi, rising
+	poly   algebra.Poly[algebra.Rat] // with the roots 2cos(alpha)
 }
 
 // chainOf recognises the roots of q, monic and irreducible: for the n with
@@ -55,7 +57,7 @@ func (w presenter[E]) chainOf(q algebra.Poly[E]) (chain[E], bool) {
 		for range 2 {
 			a := k.Sub(mean, k.Mul(b, k.FromRat(m)))
 			if scaledRoots(k, psi, a, b).Equal(q) {
-				return w.rising(a, b, n, units), true
+				return w.rising(a, b, n, units, psi), true
 			}
 			b = k.Neg(b)
 		}
@@ -64,11 +66,12 @@ func (w presenter[E]) chainOf(q algebra.Poly[E]) (chain[E], bool) {
 }
 
 // rising returns a chain with b not negative: cos(pi - alpha) = -cos(alpha).
-func (w presenter[E]) rising(a, b E, n int64, units []int64) chain[E] {
-	c := chain[E]{a: a, b: b}
+func (w presenter[E]) rising(a, b E, n int64, units []int64, psi algebra.Poly[algebra.Rat]) chain[E] {
+	c := chain[E]{a: a, b: b, poly: psi}
 	minus := w.k.Negative(b)
 	if minus {
 		c.b = w.k.Neg(b)
+		c.poly = scaledRoots[algebra.Rat](algebra.Q, psi, algebra.Rat{}, algebra.RatFromInt(-1))
 	}
 	for _, j := range units {
 		angle := algebra.NewRat(2*j, n)
@@ -268,7 +271,7 @@ func turnNode(r algebra.Rat, sine bool) Node {
 
 // inCosines presents the part of a simple prime whose roots are those of a chain,
 // or square roots of them. It returns nil for other primes.
-func (w presenter[E]) inCosines(pp primePower[E], local func() localPart[E]) Node {
+func (w presenter[E]) inCosines(pp primePower[E], local func() localPart[E]) []chainTerm {
 	if pp.e != 1 || pp.p.Degree() > 2*mostCosines {
 		return nil
 	}
@@ -300,11 +303,18 @@ func (w presenter[E]) squares(p algebra.Poly[E]) (h E, q algebra.Poly[E], ok boo
 	return h, algebra.NewPoly[E](w.k, c...), n%2 == 0
 }
 
-// relaxing presents the sum of c(L) e^(Lt) over the roots L of a chain.
-func (w presenter[E]) relaxing(part localPart[E], c chain[E]) Node {
-	g := c.cosineCoefs(w.k, part.c[0])
+// chainTerm is the term of one root of a chain, with a key for the order among
+// those of several chains.
+type chainTerm struct {
+	key  float64
+	node Node
+}
+
+// relaxing presents the terms c(L) e^(Lt) of the roots L of a chain.
+func (w presenter[E]) relaxing(part localPart[E], c chain[E]) []chainTerm {
+	coefficient := w.coefficients(c, part.c[0])
 	sines := w.k.IsZero(w.k.Add(c.a, w.k.Mul(w.k.FromInt(2), c.b)))
-	var terms []Node
+	var terms []chainTerm
 	for _, alpha := range c.angles {
 		var rate Node
 		if sines { // a + 2b cos(alpha) = -4b sin^2(alpha/2)
@@ -315,9 +325,10 @@ func (w presenter[E]) relaxing(part localPart[E], c chain[E]) Node {
 			sum.add(w.k.Mul(w.k.FromInt(2), c.b), alpha)
 			rate = w.turnsNode(sum, false)
 		}
-		terms = append(terms, Mul(w.turnsNode(c.coefficient(w.k, g, alpha), false), w.exp(rate)))
+		key := -w.approximate(c.a) - 2*math.Abs(w.approximate(c.b))*math.Cos(math.Pi*alpha.Float64())
+		terms = append(terms, chainTerm{key, Mul(coefficient(alpha), w.exp(rate))})
 	}
-	return Add(terms...)
+	return terms
 }
 
 // halfSine writes sin(alpha/2).
@@ -325,26 +336,14 @@ func halfSine(alpha algebra.Rat) Node {
 	return Apply("sin", Mul(Num(alpha.Mul(algebra.NewRat(1, 2))), Sym("pi")))
 }
 
-// coefficient returns g[0] + sum over m of g[m] 2cos(m alpha).
-func (c chain[E]) coefficient(k algebra.Scalars[E], g []E, alpha algebra.Rat) *turns[E] {
-	sum := newTurns(k)
-	for m, x := range g {
-		if m > 0 {
-			x = k.Mul(k.FromInt(2), x)
-		}
-		sum.add(x, alpha.Mul(algebra.RatFromInt(int64(m))))
-	}
-	return sum
-}
-
-// vibrating presents the sum of c(L) e^(Lt) over L = h +- i w, -w^2 the roots of a
-// chain: with c(L) = e(y) + (L - h) o(y), y = (L - h)^2, the two signs make
+// vibrating presents the terms c(L) e^(Lt) of the roots L = h +- i w, -w^2 those of
+// a chain: with c(L) = e(y) + (L - h) o(y), y = (L - h)^2, the two signs make
 //
 //	e^(ht) (2 e(y) cos wt - 2 w o(y) sin wt).
 //
 // It returns nil where w is not a multiple of a sine: the other frequencies are
 // square roots that no field of a moderate degree holds together.
-func (w presenter[E]) vibrating(part localPart[E], c chain[E], h E) Node {
+func (w presenter[E]) vibrating(part localPart[E], c chain[E], h E) []chainTerm {
 	k := w.k
 	two := k.FromInt(2)
 	if !k.IsZero(k.Add(c.a, k.Mul(two, c.b))) {
@@ -359,27 +358,58 @@ func (w presenter[E]) vibrating(part localPart[E], c chain[E], h E) Node {
 			odd = append(odd, k.Neg(x))
 		}
 	}
-	e := c.cosineCoefs(k, algebra.NewPoly[E](k, even...))
-	o := c.cosineCoefs(k, algebra.NewPoly[E](k, odd...))
 	scale, root := w.sqrt(c.b) // w = 2 sqrt(b) sin(alpha/2)
 	scale = k.Mul(two, scale)
+	cosine := w.coefficients(c, algebra.NewPoly[E](k, even...))
+	sine := w.sineCoefficients(c, algebra.NewPoly[E](k, odd...), scale)
 	exp := w.exp(w.Node(h))
-	var terms []Node
+	var terms []chainTerm
 	for _, alpha := range c.angles {
 		angle := w.perTime(Mul(w.times(scale, root), halfSine(alpha)))
-		sine := Mul(root, w.turnsNode(c.sineCoefficient(k, o, alpha, scale), true))
 		var pair []Node
-		for _, t := range []Node{
-			Mul(w.turnsNode(c.coefficient(k, e, alpha), false), Apply("cos", angle)),
-			Mul(sine, Apply("sin", angle)),
-		} {
+		for _, t := range []Node{Mul(cosine(alpha), Apply("cos", angle)), Mul(root, sine(alpha), Apply("sin", angle))} {
 			if !isZeroProduct(t) {
 				pair = append(pair, t)
 			}
 		}
-		terms = append(terms, Mul(exp, Add(pair...)))
+		key := math.Sqrt(math.Abs(w.approximate(c.b))) * math.Sin(math.Pi/2*alpha.Float64())
+		terms = append(terms, chainTerm{key, Mul(exp, Add(pair...))})
 	}
-	return Add(terms...)
+	return terms
+}
+
+// coefficients returns what writes p(a + 2b cos(alpha)) for an angle: as a product
+// of two sines or cosines where it is one, as a sum of cosines otherwise.
+func (w presenter[E]) coefficients(c chain[E], p algebra.Poly[E]) func(alpha algebra.Rat) Node {
+	if f, ok := w.productOf(c, p); ok {
+		return func(alpha algebra.Rat) Node { return w.productNode(f, alpha, 0) }
+	}
+	g := c.cosineCoefs(w.k, p)
+	return func(alpha algebra.Rat) Node { return w.turnsNode(c.coefficient(w.k, g, alpha), false) }
+}
+
+// sineCoefficients returns what writes scale sin(alpha/2) p(a + 2b cos(alpha)).
+func (w presenter[E]) sineCoefficients(c chain[E], p algebra.Poly[E], scale E) func(alpha algebra.Rat) Node {
+	if f, ok := w.productOf(c, p); ok {
+		f.factor = w.k.Mul(scale, f.factor)
+		return func(alpha algebra.Rat) Node { return w.productNode(f, alpha, 1) }
+	}
+	g := c.cosineCoefs(w.k, p)
+	return func(alpha algebra.Rat) Node {
+		return w.turnsNode(c.sineCoefficient(w.k, g, alpha, scale), true)
+	}
+}
+
+// coefficient returns g[0] + sum over m of g[m] 2cos(m alpha).
+func (c chain[E]) coefficient(k algebra.Scalars[E], g []E, alpha algebra.Rat) *turns[E] {
+	sum := newTurns(k)
+	for m, x := range g {
+		if m > 0 {
+			x = k.Mul(k.FromInt(2), x)
+		}
+		sum.add(x, alpha.Mul(algebra.RatFromInt(int64(m))))
+	}
+	return sum
 }
 
 // sineCoefficient returns scale sin(alpha/2) (g[0] + sum over m of g[m] 2cos(m alpha)),

@@ -57,6 +57,7 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 	// The terms that decay and the others, which are one list unless a form keeps
 	// them apart.
 	var lists [2][]Node
+	var chains [2][]chainTerm
 	for _, i := range order {
 		at := 0
 		if w.form.SteadyLast && !w.decays(f.den[i].p) {
@@ -69,7 +70,11 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 		case 2:
 			n = w.quadratic(local(i))
 		default:
-			n = w.ofHighDegree(f, i)
+			var terms []chainTerm
+			if n, terms = w.ofHighDegree(f, i); terms != nil {
+				chains[at] = append(chains[at], terms...)
+				continue
+			}
 		}
 		if s, ok := n.(Sum); ok {
 			lists[at] = append(lists[at], s.Terms...)
@@ -77,13 +82,19 @@ func (w presenter[E]) sum(f Image[E], local func(i int) localPart[E]) Node {
 			lists[at] = append(lists[at], n)
 		}
 	}
+	for at := range chains {
+		sort.SliceStable(chains[at], func(i, j int) bool { return chains[at][i].key < chains[at][j].key })
+		for _, t := range chains[at] {
+			lists[at] = append(lists[at], t.node)
+		}
+	}
 	return Add(append(w.grouped(lists[0]), w.grouped(lists[1])...)...)
 }
 
 // ofHighDegree presents the part of a prime of degree 3 or more in the way of
 // least effort: in radicals, in cosines of fractions of pi, as a sum over
-// frequencies or over roots.
-func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
+// frequencies or over roots. Of a chain it returns the terms as well.
+func (w presenter[E]) ofHighDegree(f Image[E], i int) (Node, []chainTerm) {
 	part := sync.OnceValue(func() localPart[E] { return f.local(i) })
 	best := w.frequencies(f, i, part)
 	if best == nil {
@@ -91,15 +102,22 @@ func (w presenter[E]) ofHighDegree(f Image[E], i int) Node {
 	}
 	if n := w.split(f.den[i], part); n != nil {
 		best = easier(best, n)
-	} else if n := w.inCosines(f.den[i], part); n != nil && effort(n) <= 2*effort(best) {
-		best = n // chains are written alike in all states, if that does not take much more
+	} else if terms := w.inCosines(f.den[i], part); terms != nil {
+		nodes := make([]Node, len(terms))
+		for j, t := range terms {
+			nodes[j] = t.node
+		}
+		// Chains are written alike in all states, if that does not take much more.
+		if n := Add(nodes...); effort(n) <= 2*effort(best) {
+			return n, terms
+		}
 	}
 	if w.numeric != nil && hasRootSum(best) {
 		if n := w.numeric(i); n != nil {
-			return n
+			return n, nil
 		}
 	}
-	return best
+	return best, nil
 }
 
 // before orders factors for reading: degree 1 and 2 before the others, then by
