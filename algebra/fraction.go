@@ -445,9 +445,10 @@ func (f *FunctionField) Rational(x Fraction) (Rat, bool) {
 	return RatFromFrac(x.num.ConstantTerm(), x.den.ConstantTerm()), true
 }
 
-// Text writes x with the names of the variables and the root as a.
+// Text writes x with the names of the variables and the root as #, which no variable
+// should be called: elements are equal exactly when their texts are.
 func (f *FunctionField) Text(x Fraction) string {
-	names := append([]string{"a"}, f.names...)
+	names := append([]string{"#"}, f.names...)
 	num := polyText(x.num, names)
 	if x.den.IsZero() {
 		return num

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math/big"
 	"math/rand"
+	"regexp"
 	"strings"
 	"testing"
 
@@ -405,4 +406,77 @@ func TestDenestedRoots(t *testing.T) {
 		assert.Equal(t, want, f.String(), src)
 		requireEqual(t, f, function(t, want))
 	}
+}
+
+// No name of a symbol is taken for an algebraic number.
+func TestSymbolsBesideRoots(t *testing.T) {
+	for _, src := range []string{
+		"exp(sqrt(2)*t) + exp(a*t)", "cos(sqrt(2)*t) + sin(a*t)", "cos(sqrt(a^2 + 1)*t) + cos(a*t)", "exp(sqrt(2))*t + exp(a)",
+		"2*cos(sqrt(2)*t)*exp(-t) + t*cos(a*t)*exp(-t)", "x*exp(sqrt(3)*t) + root*exp(root*t)",
+	} {
+		f := function(t, src)
+		requireEqual(t, f, function(t, f.String()), src)
+		values := map[string]*big.Rat{"a": big.NewRat(5, 7), "x": big.NewRat(1, 3), "root": big.NewRat(2, 3)}
+		want := src
+		for name, x := range values {
+			want = regexp.MustCompile(`\b`+name+`\b`).ReplaceAllString(want, "("+x.RatString()+")")
+		}
+		text := f.String()
+		for name, x := range values {
+			text = regexp.MustCompile(`\b`+name+`\b`).ReplaceAllString(text, "("+x.RatString()+")")
+		}
+		requireEqual(t, function(t, want), function(t, text), src)
+	}
+}
+
+// Square roots of sums with pi or e beside a root are not denested, and exact roots
+// are positive.
+func TestRootsOfTranscendentals(t *testing.T) {
+	for _, src := range []string{"sumroots(z, z^2 + 3 + 2*sqrt(2) + pi, exp(z*t))", "sumroots(z, z^2 + 2 + sqrt(3)*pi, exp(z*t))"} {
+		assert.Contains(t, function(t, src).String(), "pi")
+	}
+	for src, want := range map[string]string{
+		"cos(cos(1)*t)":   "cos(cos(1)*t)",
+		"cos((pi - 4)*t)": "cos((4 - pi)*t)",
+	} {
+		f := function(t, src)
+		assert.Equal(t, want, f.String())
+		for _, form := range []expr.Form{{}, {Amplitude: true}, {Numbers: expr.DecimalNumbers, Digits: 30}} {
+			requireValue(t, f, form)
+		}
+	}
+	for _, src := range []string{
+		"3*cos(cos(1)*t) + 4*sin(cos(1)*t)", "3*cos((pi - 4)*t) + 4*sin((pi - 4)*t)", "3*cos(1)*cos(t) + 4*cos(1)*sin(t)",
+		"(pi - 4)*(3*cos(t) + 4*sin(t))", "(exp(1) - 3)*cos(2*t) + sin(2*t)", "10*cos(5*t) + 10*sqrt(2)*cos(5*t) + 7*exp(1)*sin(5*t)",
+	} {
+		for _, form := range []expr.Form{{}, {Amplitude: true}, {Numbers: expr.DecimalNumbers, Digits: 30}, {Numbers: expr.DecimalNumbers, Digits: 30, Amplitude: true}} {
+			requireValue(t, function(t, src), form)
+		}
+	}
+}
+
+// requireValue asserts that a written form has the value of the function.
+func requireValue(t *testing.T, f expr.Function, form expr.Form) {
+	t.Helper()
+	n, err := f.Write(context.Background(), form)
+	require.NoError(t, err)
+	g, err := expr.FunctionOf(n, "t", expr.Limits{})
+	require.NoError(t, err, n.String())
+	x := big.NewRat(7, 5)
+	want, err := f.At(context.Background(), x, 24)
+	require.NoError(t, err)
+	got, err := g.At(context.Background(), x, 24)
+	require.NoError(t, err)
+	assert.Equal(t, want, got, "%s written %s", f, n)
+}
+
+// Roots multiply sums over named roots; functions without a common field differ.
+func TestRootsBesideNamedRoots(t *testing.T) {
+	f := function(t, "2^(1/3)*sumroots(z, z^3 - z - 1, exp(z*t))")
+	requireEqual(t, f, function(t, f.String()))
+	assert.False(t, function(t, "exp(2^(1/5)*t)").Equal(function(t, "exp(3^(1/5)*t)")))
+	assert.False(t, function(t, "exp(sqrt(a + 1)*t)").Equal(function(t, "exp(sqrt(b)*t)")))
+	// Conjugates of roots in roots are read together, apart from other ones.
+	g := function(t, "sumroots(z, z^4 + 4*z^2 + 2, exp(z*t)) + sumroots(z, z^4 + 6*z^2 + 7, exp(z*t)) + sumroots(z, (z + 1)^4 + 6*(z + 1)^2 + 4, z*exp(z*t))")
+	requireEqual(t, g, function(t, g.String()))
 }

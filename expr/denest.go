@@ -31,6 +31,11 @@ func (c *Constants) binomialSurd(x Constant) (u, v, m algebra.Rat, ok bool) {
 		}
 	}
 	for _, t := range num.Numerator() {
+		for i, e := range t.Exp {
+			if e > 0 && i != at || e > 1 { // pi, or e^a, which are numbers as well
+				return u, v, m, false
+			}
+		}
 		r := algebra.RatFromBigInt(t.Coef).Quo(scale)
 		if t.Exp[at] == 0 {
 			u = r

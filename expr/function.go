@@ -4,6 +4,7 @@ import (
 	"context"
 	"math/big"
 	"slices"
+	"strings"
 
 	"example.org/closedform/algebra"
 )
@@ -96,8 +97,10 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
 	defer catchLimit(&err)
 	if s, ok := n.(Sum); ok {
-		if g, ok := sumByNumbers(s, variable, limits); ok {
-			return g, nil
+		for _, same := range []func(a, b []string) bool{sameNested, shareNumber} {
+			if g, ok := sumByNumbers(s, variable, limits, same); ok {
+				return g, nil
+			}
 		}
 	}
 	f, err = functionOf(n, variable, nil, limits)
@@ -112,9 +115,9 @@ func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) 
 	return f, err
 }
 
-// sumByNumbers reads the terms of a sum in groups that share algebraic numbers: each
+// sumByNumbers reads the terms of a sum in groups by their algebraic numbers: each
 // group may be rational, while a field for the numbers of all is large.
-func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
+func sumByNumbers(s Sum, variable string, limits Limits, same func(a, b []string) bool) (Function, bool) {
 	var plain []Node // the terms without such numbers
 	var keys [][]string
 	var groups [][]Node
@@ -126,8 +129,8 @@ func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
 		}
 		terms := []Node{t}
 		kept := 0
-		for i := range groups { // join those that share a number with t
-			if slices.ContainsFunc(keys[i], func(k string) bool { return slices.Contains(numbers, k) }) {
+		for i := range groups { // join those that belong to t
+			if same(keys[i], numbers) {
 				numbers, terms = append(numbers, keys[i]...), append(terms, groups[i]...)
 				continue
 			}
@@ -152,6 +155,31 @@ func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
 		}
 	}
 	return Function{variable, sum}, true
+}
+
+// shareNumber tells whether two lists of numbers have one in common.
+func shareNumber(a, b []string) bool {
+	return slices.ContainsFunc(a, func(x string) bool { return slices.Contains(b, x) })
+}
+
+// sameNested is shareNumber for roots in roots, up to signs in them; without such on
+// either side for all numbers. sqrt(2 - sqrt(2)) and sqrt(2 + sqrt(2)) are conjugates.
+func sameNested(a, b []string) bool {
+	nested := func(list []string) (out []string) {
+		for _, s := range list {
+			if strings.Contains(s, "sqrt(") || strings.Contains(s, "^(") {
+				parts := strings.FieldsFunc(s, func(r rune) bool { return r == '+' || r == '-' || r == ' ' })
+				slices.Sort(parts)
+				out = append(out, strings.Join(parts, " "))
+			}
+		}
+		return out
+	}
+	x, y := nested(a), nested(b)
+	if len(x)+len(y) == 0 {
+		return shareNumber(a, b)
+	}
+	return shareNumber(x, y)
 }
 
 // numbersIn tells the algebraic numbers in a tree: radicands, and the fractions of pi whose cosines and sines occur.
@@ -325,7 +353,8 @@ func (f Function) Initial() Node { return f.over().initial() }
 
 // Add returns f + g. Functions over different fields are taken to one that holds
 // both, functions with different origins to the origin 0. It panics when the
-// variables differ, and where a sum over named roots has another origin than 0.
+// variables differ, where a sum over named roots has another origin than 0, and where
+// the algebraic numbers of both are beyond the limit.
 func (f Function) Add(g Function) Function {
 	x, y, ok := f.together(g)
 	if f.variable != g.variable || !ok {
@@ -341,8 +370,12 @@ func (f Function) Scale(x *big.Rat) Function { return f.with(f.over().scale(alge
 func (f Function) Sub(g Function) Function { return f.Add(g.Scale(big.NewRat(-1, 1))) }
 
 // Equal tells whether f and g are the same function, in the same variable. Sums
-// over named roots are compared in the same origin only.
+// over named roots are compared in the same origin only. Functions whose algebraic
+// numbers are beyond the limit together have no common field, and are not equal.
 func (f Function) Equal(g Function) bool {
+	if f.variable != g.variable || !f.joins(g) {
+		return false
+	}
 	x, y, ok := f.together(g)
 	return f.variable == g.variable && ok && x.equal(y)
 }
@@ -366,6 +399,17 @@ func (f Function) together(g Function) (x, y exact, ok bool) {
 	}
 	x, y = a.overOneField(b)
 	return x, y, true
+}
+
+// joins tells whether one field holds f and g. Each is over the least field of its
+// numbers as far as it is known, so that equal functions have one.
+func (f Function) joins(g Function) bool {
+	a, b := f.over().field(), g.over().field()
+	if a == nil || b == nil || a == b {
+		return true
+	}
+	_, err := joined(a, b)
+	return err == nil
 }
 
 // overOneField returns f and g over one field.

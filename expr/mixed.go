@@ -1,6 +1,10 @@
 package expr
 
-import "example.org/closedform/algebra"
+import (
+	"slices"
+
+	"example.org/closedform/algebra"
+)
 
 // mixer replaces the numbers of a tree that take more than mostExactEffort to read by
 // decimals; where there is one, so it does with all roots, cosines and sines.
@@ -98,9 +102,41 @@ func (m mixer) product(n Node) Node {
 	above, below, rest := m.strip(n)
 	number := Div(Mul(above...), Mul(below...))
 	if m.staysExact(number) {
+		if spread, ok := distributed(n); ok {
+			if out := m.node(spread); holdsDecimal(out) {
+				return out // one number for each term rather than two
+			}
+		}
 		return m.inside(n)
 	}
 	return Mul(m.number(number), rest)
+}
+
+// distributed takes the number in front of a product into a sum in it.
+func distributed(n Node) (Node, bool) {
+	p, ok := n.(Product)
+	if !ok {
+		return n, false
+	}
+	var numbers, others []Node
+	var sum *Sum
+	for _, f := range p.Factors {
+		if s, ok := f.(Sum); ok && sum == nil && !isNumeric(f) {
+			sum = &s
+		} else if isNumeric(f) {
+			numbers = append(numbers, f)
+		} else {
+			others = append(others, f)
+		}
+	}
+	if sum == nil || len(numbers) == 0 {
+		return n, false
+	}
+	terms := make([]Node, len(sum.Terms))
+	for i, t := range sum.Terms {
+		terms[i] = Mul(append(slices.Clone(numbers), t)...)
+	}
+	return Mul(append(others, Sum{Terms: terms})...), true
 }
 
 // strip returns the numbers of a product above and below the bar, and what is left.

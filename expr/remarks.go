@@ -21,13 +21,13 @@ func (f *overField[E]) remarks() (out []string) {
 			if q.decided {
 				continue
 			}
-			even, odd, evenNot, oddNot := "cosh", "sinh", "cos", "sin"
+			form, other := "hyperbolic cosine and sine", "cosine and sine"
 			if q.sign < 0 {
-				even, odd, evenNot, oddNot = evenNot, oddNot, even, odd
+				form, other = other, form
 			}
-			s := "the formula holds for either sign of " + w.expanded(q.square).String() +
-				": with r its square root, " + even + "(r*t) and " + odd + "(r*t)/r become " +
-				evenNot + " and " + oddNot + " of the root of its absolute value where it is negative, and 1 and t where it is 0"
+			s := "the formula holds for either sign of " + w.expanded(q.square).String() + ": where it is negative, " +
+				form + " of its square root times the time are " + other +
+				" of the square root of its absolute value, and where it is 0 the formula has a limit"
 			if !slices.Contains(out, s) {
 				out = append(out, s)
 			}

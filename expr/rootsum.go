@@ -273,7 +273,8 @@ func (r rootBody[E]) outside(n Node) error {
 }
 
 func (r rootBody[E]) read(n Node) ([]rootTerm[E], error) {
-	if _, isCall := n.(Call); isCall && !r.mentions(n) {
+	_, isCall := n.(Call)
+	if _, isPower := n.(Power); (isCall || isPower) && !r.mentions(n) {
 		x, err := r.env.Scalar(n)
 		if err != nil {
 			return nil, err

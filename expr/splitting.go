@@ -5,7 +5,7 @@ import "example.org/closedform/algebra"
 // split presents the part of a prime of degree 3 or more whose roots are radicals
 // that read well: with h the mean of the roots, those of
 //
-//	u^n - a for n = 3, 4, 6, 8     and     u^4 + b u^2 + c,     u = s - h,
+//	u^n - a for n = 3, 4, 6        and     u^4 + b u^2 + c,     u = s - h,
 //
 // and of the factors of degree 4 of u^10 - a, which lie on a circle like the fifth
 // roots of 1 or -1.
@@ -26,7 +26,7 @@ func (w presenter[E]) split(pp primePower[E], local func() localPart[E]) Node {
 	}
 	var find func(*Constants, algebra.Poly[Constant]) ([]algebra.Poly[Constant], error)
 	switch {
-	case inner == n-1 && (n <= 4 || n == 6 || n == 8):
+	case inner == n-1 && (n <= 4 || n == 6):
 		find = splitBinomial
 	case n == 4 && inner == 2 && !k.IsZero(q.Coef(2)):
 		find = splitBiquadratic
@@ -47,6 +47,8 @@ func (w presenter[E]) split(pp primePower[E], local func() localPart[E]) Node {
 	field := from
 	if from == nil {
 		field = NewConstants()
+	} else if from.Degree()*n > mostAlgebraic/2 {
+		return nil // what is written would not be read in a moderate time
 	}
 	var out Node
 	_, err := Grow(field, func(to *Constants) error {

@@ -28,8 +28,8 @@ type style[E any] interface {
 	Compare(x, y E) int
 	// approximate returns a number for the order of terms.
 	approximate(x E) float64
-	// sqrt returns c and a tree with sqrt(x) = c root up to the sign, for an x
-	// that is not known to be negative.
+	// sqrt returns c and a tree with sqrt(x) = c root, for an x that is not known to
+	// be negative; up to the sign where that of c is open.
 	sqrt(x E) (c E, root Node)
 }
 
@@ -118,6 +118,14 @@ func (c *Constants) typicalSign(x Constant) int {
 
 // sqrt takes the squares out of x.
 func (c *Constants) sqrt(x Constant) (Constant, Node) {
+	y, root := c.sqrtUpToSign(x)
+	if sign, ok := c.Sign(y); ok && sign < 0 {
+		y = c.Neg(y)
+	}
+	return y, root
+}
+
+func (c *Constants) sqrtUpToSign(x Constant) (Constant, Node) {
 	if r, ok := c.Rational(x); ok {
 		d, m := algebra.SqrtParts(r)
 		return c.FromRat(d), sqrtNode(m)
@@ -191,13 +199,18 @@ func (c *Constants) sqrtOfRoots(x Constant) (Constant, Node) {
 	if n, ok := c.monomialRoot(x); ok {
 		return c.One(), n
 	}
+	// All squares of the content leave the root, or those above the bar only, or none.
 	outer, inner := algebra.SqrtParts(r)
-	whole := Apply("sqrt", c.Node(x))
-	under := Apply("sqrt", c.Node(c.Mul(rest, c.FromRat(algebra.RatFromBigInt(inner)))))
-	if effort(Mul(Num(outer), under)) <= effort(whole) {
-		return c.FromRat(outer), under
+	above, left := algebra.SqrtParts(algebra.RatFromBigInt(r.Num()))
+	y, root := c.FromRat(outer), Apply("sqrt", c.Node(c.Mul(rest, c.FromRat(algebra.RatFromBigInt(inner)))))
+	best := effort(Mul(Num(outer), root))
+	for _, way := range []struct{ outer, inner algebra.Rat }{{above, algebra.RatFromFrac(left, r.Den())}, {algebra.RatFromInt(1), r}} {
+		n := Apply("sqrt", c.Node(c.Mul(rest, c.FromRat(way.inner))))
+		if cost := effort(Mul(Num(way.outer), n)); cost < best {
+			y, root, best = c.FromRat(way.outer), n, cost
+		}
 	}
-	return c.One(), whole
+	return y, root
 }
 
 // exactSqrt returns the square root of x where it is in the field, without a sign

@@ -123,7 +123,7 @@ func TestUnusualModels(t *testing.T) {
 		{"argument written out", "x'(t) = -x(t)\nx(0) = 1", map[string]string{"x": "exp(-t)"}},
 		{"another variable", "independent tau\nx' = tau\nx(0) = 0", map[string]string{"x": "tau^2/2"}},
 		{"parameters by definition", "k = 0.35; V = 2*k\nx' = -V*x\nx(0) = 1", map[string]string{"x": "exp(-7*t/10)"}},
-		{"constants named like states", "C1' = C1", map[string]string{"C1": "K1*exp(t)"}},
+		{"constants named like states", "C1' = C1", map[string]string{"C1": "B1*exp(t)"}},
 	}
 	for _, tt := range tests {
 		t.Run(tt.name, func(t *testing.T) {

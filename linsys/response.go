@@ -60,7 +60,7 @@ func (m *Model) respond(ctx context.Context, over answer, constants []string) (r
 // constantName returns the name of the i-th free constant: C1, C2, ..., with
 // another letter if the model uses such a name.
 func (m *Model) constantName(i int) string {
-	for _, letter := range []string{"C", "K", "c", "const"} {
+	for _, letter := range []string{"C", "B", "A", "const"} {
 		taken := false
 		for _, s := range append(append(m.States(), m.variable), m.Parameters()...) {
 			if rest, ok := strings.CutPrefix(s, letter); ok && strings.Trim(rest, "0123456789") == "" {

@@ -73,7 +73,7 @@ var workedModels = []struct {
 	{"relations alone", "p = 3t; q = p + 1", "model|response|check", 5, []string{"q = 3*t + 1"}},
 	{"RLC", "i' = -R/L*i - q/(L*C) + U/L; q' = i; i(0) = 0; q(0) = 0",
 		"model|characteristic polynomial|eigenvalues|eigenvectors|decoupling|trial|particular|complementary|constants|response|check", 27,
-		[]string{"det(s*I - A) = s^2 + R/L*s + 1/(C*L)", "lambda_1 = 1/(2*C*L)*(-C*R + sqrt(4*C*L - C^2*R^2)*j)", "K2 = U/L"}},
+		[]string{"det(s*I - A) = s^2 + R/L*s + 1/(C*L)", "lambda_1 = 1/(2*C*L)*(-C*R + sqrt(4*C*L - C^2*R^2)*j)", "B2 = U/L"}},
 	{"two compartments", "a' = -k1*a + k2*b; b' = k1*a - k2*b - ke*b; a(0) = D; b(0) = 0",
 		"model|characteristic polynomial|eigenvalues|eigenvectors|decoupling|complementary|constants|response|check", 23,
 		[]string{"det(s*I - A) = s^2 + (k1 + k2 + ke)*s + k1*ke", "C2 = 1/2*D*(k2 + ke - k1)"}},

@@ -142,7 +142,7 @@ func (d *derivation[E]) sideConditions(s *Step) error {
 		s.add(say("There are no side conditions: the general solution is sought."))
 		return nil
 	}
-	s.add(say("The side conditions are given at %v.", d.origin()).show(d.r.model.SideConditions()...))
+	s.add(say("The side conditions are given at %v = %v.", expr.Sym(d.r.model.Variable()), d.origin()).show(d.r.model.SideConditions()...))
 	if !d.k.IsZero(d.ans.origin) {
 		s.add(say("The time is counted from there, and the functions below are written in %v.", d.time))
 	}
@@ -287,12 +287,12 @@ func (d *derivation[E]) namedRoots(g *rootGroup[E]) Passage {
 				reals++
 			}
 		}
-		words = "%v stands for each of the %v roots of an irreducible polynomial, of which %v real; what is written with it holds for all of them."
-		are := fmt.Sprintf("%d are", reals)
-		if reals == 1 {
-			are = "1 is"
+		words = "%v stands for each of the %v roots of an irreducible polynomial, %v of them real; what is written with it holds for all of them."
+		count := "none"
+		if reals > 0 {
+			count = fmt.Sprint(reals)
 		}
-		return say(words, expr.Sym(g.names[0]), total, are)
+		return say(words, expr.Sym(g.names[0]), total, count)
 	}
 	return say(words, expr.Sym(g.names[0]), total)
 }

@@ -159,7 +159,7 @@ func (r *report) statesPart(ctx context.Context, d *document) error {
 		d.add(all)
 	}
 	for _, s := range r.response.Remarks() {
-		d.text("Remark: " + strings.TrimSuffix(s, ".") + ".")
+		d.text(readRemark(s)...)
 	}
 	if names := r.response.Parameters(); len(names) > 0 {
 		d.text("The ", word(len(names), "symbol ", "symbols "), symbols(names), word(len(names), " has", " have"),
@@ -185,6 +185,17 @@ func readCondition(s string) relation {
 		return relation{words: say(s)}
 	}
 	return relation{left: list[0].Left, sign: list[0].Op, right: list[0].Right}
+}
+
+// readRemark makes a sentence of a remark, with the expression in it as a formula.
+func readRemark(s string) []any {
+	const sign = "the formula holds for either sign of "
+	of, rest, ok := strings.Cut(strings.TrimPrefix(s, sign), ": ")
+	n, err := expr.Parse(of, unlimited)
+	if !ok || !strings.HasPrefix(s, sign) || err != nil {
+		return []any{"Remark: " + s + "."}
+	}
+	return []any{"Remark: " + sign, n, ": " + rest + "."}
 }
 
 // relation makes an equation, shortened where no line can hold it.
