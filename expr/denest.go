@@ -123,13 +123,14 @@ func rootNode(x algebra.Rat, q int) Node {
 		}
 	}
 	var root Node
-	switch number := Num(algebra.RatFromBigInt(inner)); q {
-	case 1:
-		root = number
-	case 2:
+	switch {
+	case q == 1:
+		root = Num(algebra.RatFromBigInt(inner))
+	case q == 2:
 		root = sqrtNode(inner)
 	default:
-		root = Power{Base: number, Exp: Num(algebra.NewRat(1, int64(q)))}
+		base, e := perfectPower(inner) // 8^(1/4) is 2^(3/4)
+		root = Power{Base: Num(algebra.RatFromBigInt(base)), Exp: Num(algebra.NewRat(int64(e), int64(q)))}
 	}
 	return Mul(Num(algebra.RatFromFrac(outer, x.Den())), root)
 }

@@ -68,7 +68,7 @@ func (m mixer) node(n Node) Node {
 		for i, t := range v.Terms {
 			terms[i] = m.node(t)
 		}
-		return Sum{Terms: terms}
+		return Add(terms...)
 	case Power:
 		return Power{Base: m.node(v.Base), Exp: v.Exp}
 	case Call:
@@ -101,12 +101,12 @@ func (m mixer) number(n Node) Node {
 func (m mixer) product(n Node) Node {
 	above, below, rest := m.strip(n)
 	number := Div(Mul(above...), Mul(below...))
-	if m.staysExact(number) {
-		if spread, ok := distributed(n); ok {
-			if out := m.node(spread); holdsDecimal(out) {
-				return out // one number for each term rather than two
-			}
+	if spread, ok := distributed(n); ok {
+		if out := m.node(spread); holdsDecimal(out) {
+			return out // one number for each term rather than two
 		}
+	}
+	if m.staysExact(number) {
 		return m.inside(n)
 	}
 	return Mul(m.number(number), rest)
