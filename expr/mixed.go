@@ -60,7 +60,15 @@ func (m mixer) node(n Node) Node {
 	}
 	switch v := n.(type) {
 	case Neg:
-		return Negate(m.node(v.X))
+		x := m.node(v.X)
+		if s, ok := x.(Sum); ok {
+			terms := make([]Node, len(s.Terms))
+			for i, t := range s.Terms {
+				terms[i] = signed(Negate(t))
+			}
+			return Sum{Terms: terms}
+		}
+		return Negate(x)
 	case Product, Quotient:
 		return m.product(n)
 	case Sum:
@@ -101,10 +109,8 @@ func (m mixer) number(n Node) Node {
 func (m mixer) product(n Node) Node {
 	above, below, rest := m.strip(n)
 	number := Div(Mul(above...), Mul(below...))
-	if spread, ok := distributed(n); ok {
-		if out := m.node(spread); holdsDecimal(out) {
-			return out // one number for each term rather than two
-		}
+	if spread, ok := m.distributed(n); ok {
+		return m.node(spread)
 	}
 	if m.staysExact(number) {
 		return m.inside(n)
@@ -112,8 +118,9 @@ func (m mixer) product(n Node) Node {
 	return Mul(m.number(number), rest)
 }
 
-// distributed takes the number in front of a product into a sum in it.
-func distributed(n Node) (Node, bool) {
+// distributed takes the number in front of a product into a sum in it, if that has
+// decimals for coefficients: there is one number for each term then, not two.
+func (m mixer) distributed(n Node) (Node, bool) {
 	p, ok := n.(Product)
 	if !ok {
 		return n, false
@@ -129,7 +136,7 @@ func distributed(n Node) (Node, bool) {
 			others = append(others, f)
 		}
 	}
-	if sum == nil || len(numbers) == 0 {
+	if sum == nil || len(numbers) == 0 || !slices.ContainsFunc(sum.Terms, m.hasDecimalInFront) {
 		return n, false
 	}
 	terms := make([]Node, len(sum.Terms))
@@ -161,6 +168,15 @@ func (m mixer) strip(n Node) (above, below []Node, rest Node) {
 		return append(above, a...), append(below, b...), Div(num, den)
 	}
 	return nil, nil, m.node(n)
+}
+
+// hasDecimalInFront tells whether the coefficient of a term becomes a decimal.
+func (m mixer) hasDecimalInFront(term Node) bool {
+	if isNumeric(term) {
+		return !m.staysExact(term)
+	}
+	above, below, _ := m.strip(term)
+	return !m.staysExact(Div(Mul(above...), Mul(below...)))
 }
 
 // inside writes the factors of a product whose numbers stay as they are.

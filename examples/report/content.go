@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"fmt"
+	"slices"
 	"strings"
 
 	"example.org/closedform/expr"
@@ -49,20 +50,9 @@ func (r *report) compose(ctx context.Context) (*document, error) {
 	if err := r.statesPart(ctx, d); err != nil {
 		return nil, err
 	}
-	d.part("Transient part", "sec:transient")
-	d.text("The complementary function: what the modes of Section\u00a0", atModes, " contribute.")
-	transient, _, err := r.functions(ctx, r.response.Transient)
-	if err != nil {
+	if err := r.partsOf(ctx, d); err != nil {
 		return nil, err
 	}
-	d.add(transient)
-	d.part("Steady part", "sec:steady")
-	d.text("The particular integral: what has the rates of the input.")
-	steady, _, err := r.functions(ctx, r.response.Steady)
-	if err != nil {
-		return nil, err
-	}
-	d.add(steady)
 	r.exactPart(d)
 	r.abbreviations(d)
 	r.modesSection(d)
@@ -76,6 +66,31 @@ func (r *report) compose(ctx context.Context) (*document, error) {
 	d.text("From " + r.src.name + ":")
 	d.add(listing(strings.TrimSpace(r.src.text)))
 	return d, nil
+}
+
+// partsOf gives the transient and the steady part, or says that there is no input.
+func (r *report) partsOf(ctx context.Context, d *document) error {
+	driven := slices.ContainsFunc(r.response.States(), func(name string) bool { return !r.response.Steady(name).IsZero() })
+	if !driven {
+		d.part("Parts", "sec:transient")
+		d.text("The model has no input. The particular integral is 0, and the states are the complementary function: what the modes of Section\u00a0", atModes, " contribute.")
+		return nil
+	}
+	d.part("Transient part", "sec:transient")
+	d.text("The complementary function: what the modes of Section\u00a0", atModes, " contribute.")
+	transient, _, err := r.functions(ctx, r.response.Transient)
+	if err != nil {
+		return err
+	}
+	d.add(transient)
+	d.part("Steady part", "sec:steady")
+	d.text("The particular integral: what has the rates of the input.")
+	steady, _, err := r.functions(ctx, r.response.Steady)
+	if err != nil {
+		return err
+	}
+	d.add(steady)
+	return nil
 }
 
 // overview says in a few lines what the report holds, and where.
@@ -301,7 +316,12 @@ func (r *report) modesSection(d *document) {
 	d.add(r.factors())
 	d.text("Table\u00a0", atModesTable, " lists the roots, which are the eigenvalues.")
 	t := table{label: atModesTable, caption: say("Modes, by the eigenvalues.")}
-	for i, head := range []string{"eigenvalue", "factor", "mult.", "value", "time constant", "damping ratio", "period", "behaviour"} {
+	// Along another variable than the time, what decays does so along a length.
+	constant, period, unit := "time constant", "period", say("in the time unit of the model")
+	if v := r.response.Model().Variable(); v != "t" && v != "tau" {
+		constant, period, unit = "decay length", "wavelength", say("in the unit of ", expr.Sym(v))
+	}
+	for i, head := range []string{"eigenvalue", "factor", "mult.", "value", constant, "damping ratio", period, "behaviour"} {
 		t.columns = append(t.columns, column{say(head), i >= 2 && i <= 6})
 	}
 	var exact []expr.Equation
@@ -320,10 +340,12 @@ func (r *report) modesSection(d *document) {
 	d.add(t.withoutEmptyColumns())
 	s := expr.Sym("s")
 	if paired {
-		d.add(paragraph{say("For an eigenvalue ", s, " the time constant is −1/Re ", s, ", the damping ratio −Re ", s, "/|", s,
-			"|, the period 2π/Im ", s, ", in the time unit of the model. A pair of conjugate eigenvalues has one line."), true})
+		text := say("For an eigenvalue ", s, " the "+constant+" is −1/Re ", s, ", the damping ratio −Re ", s, "/|", s, "|, the "+period+" 2π/Im ", s, ", ")
+		text = append(append(text, unit...), say(". A pair of conjugate eigenvalues has one line.")...)
+		d.add(paragraph{text, true})
 	} else if numeric {
-		d.add(paragraph{say("For an eigenvalue ", s, " the time constant is −1/", s, ", in the time unit of the model."), true})
+		text := say("For an eigenvalue ", s, " the "+constant+" is −1/", s, ", ")
+		d.add(paragraph{append(append(text, unit...), say(".")...), true})
 	}
 	if len(exact) > 0 {
 		if paired {
