@@ -30,9 +30,10 @@
 // numbers or over a field [Constants] of numbers and symbols; most users need no
 // other type. [Function.At] gives digits, each of
 // them proven, and a [Bundle] the values of several functions at once.
-// [Function.Node] chooses the way a function is written; [LaTeX], [MathML] and
-// the String methods of nodes write any tree, and [GoSource] writes functions
-// as a Go function.
+// [Function.Node] chooses the exact way a function is written, [Function.Write] any
+// [Form]: of several ways the one that takes the least effort to read, which is
+// measured by size, digits and nesting. [LaTeX], [MathML] and the String methods of
+// nodes write any tree, and [GoSource] writes functions as a Go function.
 //
 // # The text form
 //
@@ -57,8 +58,10 @@
 // read in two ways, a/2x, is refused. Powers bind to the right and before signs.
 // sin^2(t) is sin(t)^2. Between a name and the parenthesis of its argument there
 // is no blank. Names are letters, digits, underscores and subscript digits, in
-// any script; pi and π are the number. sumroots(z, p, b) is the sum of b over
-// all roots z of the square-free polynomial p, where no radicals exist. Inside
+// any script; pi and π are the number. atan stands in the argument of sin and cos,
+// whose phase it is. sumroots(z, p, b) is the sum of b over all roots z of the
+// square-free polynomial p: of terms c(z) t^k e^(zt), or for a p with even powers only
+// of terms c(z) t^k cos zt and c(z) t^k sin zt. Inside
 // parentheses a newline is a blank, and # starts a comment. The typographic
 // signs of documents (− · × ÷ ′ ″ ‴ ² ³) are read like those of the keyboard.
 //
