@@ -4,7 +4,6 @@ import (
 	"context"
 	"math/big"
 	"slices"
-	"strings"
 
 	"example.org/closedform/algebra"
 )
@@ -97,10 +96,8 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
 	defer catchLimit(&err)
 	if s, ok := n.(Sum); ok {
-		for _, same := range []func(a, b []string) bool{sameNested, shareNumber} {
-			if g, ok := sumByNumbers(s, variable, limits, same); ok {
-				return g, nil
-			}
+		if g, ok := sumByNumbers(s, variable, limits); ok {
+			return g, nil
 		}
 	}
 	f, err = functionOf(n, variable, nil, limits)
@@ -113,116 +110,6 @@ func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) 
 		}
 	}
 	return f, err
-}
-
-// sumByNumbers reads the terms of a sum in groups by their algebraic numbers: each
-// group may be rational, while a field for the numbers of all is large.
-func sumByNumbers(s Sum, variable string, limits Limits, same func(a, b []string) bool) (Function, bool) {
-	var plain []Node // the terms without such numbers
-	var keys [][]string
-	var groups [][]Node
-	for _, t := range s.Terms {
-		numbers := numbersIn(t)
-		if len(numbers) == 0 {
-			plain = append(plain, t)
-			continue
-		}
-		terms := []Node{t}
-		kept := 0
-		for i := range groups { // join those that belong to t
-			if same(keys[i], numbers) {
-				numbers, terms = append(numbers, keys[i]...), append(terms, groups[i]...)
-				continue
-			}
-			keys[kept], groups[kept] = keys[i], groups[i]
-			kept++
-		}
-		keys, groups = append(keys[:kept], numbers), append(groups[:kept], terms)
-	}
-	if len(groups) == 0 || len(groups) == 1 && !hasRootSum(s) {
-		return Function{}, false
-	}
-	var sum exact
-	for _, terms := range append(groups, plain) {
-		f, err := functionOf(Add(terms...), variable, nil, limits)
-		if err != nil || f.x.field() != nil {
-			return Function{}, false
-		}
-		if sum == nil {
-			sum = f.x
-		} else {
-			sum = sum.add(f.x)
-		}
-	}
-	return Function{variable, sum}, true
-}
-
-// shareNumber tells whether two lists of numbers have one in common.
-func shareNumber(a, b []string) bool {
-	return slices.ContainsFunc(a, func(x string) bool { return slices.Contains(b, x) })
-}
-
-// sameNested is shareNumber for roots in roots, up to signs in them; without such on
-// either side for all numbers. sqrt(2 - sqrt(2)) and sqrt(2 + sqrt(2)) are conjugates.
-func sameNested(a, b []string) bool {
-	nested := func(list []string) (out []string) {
-		for _, s := range list {
-			if strings.Contains(s, "sqrt(") || strings.Contains(s, "^(") {
-				parts := strings.FieldsFunc(s, func(r rune) bool { return r == '+' || r == '-' || r == ' ' })
-				slices.Sort(parts)
-				out = append(out, strings.Join(parts, " "))
-			}
-		}
-		return out
-	}
-	x, y := nested(a), nested(b)
-	if len(x)+len(y) == 0 {
-		return shareNumber(a, b)
-	}
-	return shareNumber(x, y)
-}
-
-// numbersIn tells the algebraic numbers in a tree: radicands, and the fractions of pi whose cosines and sines occur.
-func numbersIn(n Node) []string {
-	var out []string
-	note := func(s string) {
-		if !slices.Contains(out, s) {
-			out = append(out, s)
-		}
-	}
-	var visit func(n Node)
-	visit = func(n Node) {
-		switch v := n.(type) {
-		case Call:
-			switch q, quotient := v.Arg.(Quotient); {
-			case v.Func == "sqrt":
-				note("sqrt " + v.Arg.String())
-			case (v.Func == "cos" || v.Func == "sin") && quotient && isOnlyPi(q.Num):
-				note("pi/" + q.Den.String())
-			}
-		case Power:
-			switch e := v.Exp.(type) {
-			case Number:
-				if !e.Val.IsInt() {
-					note(v.Base.String() + "^1/" + e.Val.Den().String())
-				}
-			case Quotient:
-				note(v.Base.String() + "^1/" + e.Den.String())
-			}
-		}
-		Children(n, func(c Node) bool {
-			visit(c)
-			return true
-		})
-	}
-	visit(n)
-	return out
-}
-
-// isOnlyPi tells whether n is a multiple of pi.
-func isOnlyPi(n Node) bool {
-	names := Names(n)
-	return len(names) == 1 && names[0] == "pi"
 }
 
 // functionOf reads a tree in the local time of an origin, nil for 0.
@@ -370,10 +257,11 @@ func (f Function) Scale(x *big.Rat) Function { return f.with(f.over().scale(alge
 func (f Function) Sub(g Function) Function { return f.Add(g.Scale(big.NewRat(-1, 1))) }
 
 // Equal tells whether f and g are the same function, in the same variable. Sums
-// over named roots are compared in the same origin only. Functions whose algebraic
-// numbers are beyond the limit together have no common field, and are not equal.
+// over named roots are compared in the same origin only. It panics where the algebraic
+// numbers of both are beyond the limit together, and neither symbols nor values tell
+// the functions apart.
 func (f Function) Equal(g Function) bool {
-	if f.variable != g.variable || !f.joins(g) {
+	if f.variable != g.variable || f.differs(g) {
 		return false
 	}
 	x, y, ok := f.together(g)
@@ -401,15 +289,26 @@ func (f Function) together(g Function) (x, y exact, ok bool) {
 	return x, y, true
 }
 
-// joins tells whether one field holds f and g. Each is over the least field of its
-// numbers as far as it is known, so that equal functions have one.
-func (f Function) joins(g Function) bool {
+// differs tells whether functions that no common field holds are told apart by their
+// symbols or values.
+func (f Function) differs(g Function) bool {
 	a, b := f.over().field(), g.over().field()
 	if a == nil || b == nil || a == b {
+		return false
+	}
+	if _, err := joined(a, b); err == nil {
+		return false
+	}
+	if !slices.Equal(f.Parameters(), g.Parameters()) || !slices.Equal(f.Constants(), g.Constants()) {
 		return true
 	}
-	_, err := joined(a, b)
-	return err == nil
+	const prec = 256
+	x, err := f.Enclose(context.Background(), big.NewRat(1, 3), prec)
+	if err != nil {
+		return false
+	}
+	y, err := g.Enclose(context.Background(), big.NewRat(1, 3), prec)
+	return err == nil && !x.Overlaps(y)
 }
 
 // overOneField returns f and g over one field.
