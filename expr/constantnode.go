@@ -403,6 +403,9 @@ func powerNode(base Node, n int) Node {
 	if p, ok := base.(Power); ok && n > 1 {
 		if e, ok := p.Exp.(Number); ok {
 			e.Val = e.Val.Mul(algebra.RatFromInt(int64(n)))
+			if e.Val.Equal(algebra.NewRat(1, 2)) {
+				return Apply("sqrt", p.Base)
+			}
 			return Power{Base: p.Base, Exp: e}
 		}
 	}

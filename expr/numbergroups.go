@@ -1,6 +1,7 @@
 package expr
 
 import (
+	"context"
 	"slices"
 	"strings"
 )
@@ -43,19 +44,24 @@ func sumInGroups(s Sum, variable string, limits Limits, same func(a, b []string)
 	if len(groups) == 0 || len(groups) == 1 && !hasRootSum(s) {
 		return Function{}, false
 	}
-	var sum exact
-	for _, terms := range append(groups, plain) {
-		f, err := functionOf(Add(terms...), variable, nil, limits)
-		if err != nil || f.x.field() != nil {
-			return Function{}, false
-		}
-		if sum == nil {
-			sum = f.x
-		} else {
-			sum = sum.add(f.x)
-		}
+	sum, err := functionOf(Add(plain...), variable, nil, limits)
+	if err != nil {
+		return sum, false
 	}
-	return Function{variable, sum}, true
+	for _, terms := range groups {
+		f, err := functionOf(Add(terms...), variable, nil, limits)
+		if err != nil {
+			return f, false
+		}
+		if a, b := sum.x.field(), f.x.field(); a != nil && b != nil {
+			if _, err := joined(a, b); err != nil {
+				return f, false
+			}
+		}
+		sum = sum.Add(f)
+	}
+	x, err := sum.x.simplest(context.Background())
+	return Function{variable, x}, err == nil
 }
 
 // shareNumber tells whether two lists of numbers have one in common.

@@ -511,10 +511,19 @@ func (w presenter[E]) surd(a, b E, root Node) Node {
 	}
 	inv := w.inverse(content)
 	first, second := signed(w.Node(w.k.Mul(a, inv))), signed(Mul(w.Node(w.k.Mul(b, inv)), root))
-	if _, isRoot := root.(Call); isRoot && isNegated(first) && !isNegated(second) {
+	if isRoot(root) && isNegated(first) && !isNegated(second) {
 		first, second = second, first // but not of a complex number
 	}
 	return Mul(w.Node(content), Add(first, second))
+}
+
+// isRoot tells whether a tree is the root of a number or a power of one.
+func isRoot(n Node) bool {
+	switch n.(type) {
+	case Call, Power:
+		return true
+	}
+	return false
 }
 
 // isBelowZero tells whether a + b root is known to be negative, so that it is written
