@@ -351,7 +351,10 @@ func (f *FunctionField) Inv(x Fraction) (Fraction, error) {
 	}
 	if p, ok := f.inRoot(x.num); ok && !f.surd {
 		m, _ := f.inRoot(f.mod)
-		_, u, _ := ExtendedGCD[Rat](Q, p, m)
+		u, err := inverseModulo(p, m)
+		if err != nil {
+			return Fraction{}, err
+		}
 		return f.Mul(f.fromRoot(u), Fraction{num: f.denominator(x)}), nil
 	}
 	chi, err := f.multiplication(context.Background(), x.num)
@@ -364,6 +367,46 @@ func (f *FunctionField) Inv(x Fraction) (Fraction, error) {
 		sum = f.reduce(mul(sum, x.num)).Add(chi.Coef(d - i))
 	}
 	return f.over(mul(sum.Neg(), f.denominator(x)), chi.Coef(0)), nil
+}
+
+// solvedInverse is the degree from which on inverses modulo a polynomial come from
+// the linear equations for their coefficients, by p-adic lifting: the remainders of
+// Euclid's algorithm grow too long then.
+const solvedInverse = 6
+
+// inverseModulo returns the inverse of p modulo an irreducible m.
+func inverseModulo(p, m Poly[Rat]) (Poly[Rat], error) {
+	d := m.Degree()
+	if d < solvedInverse {
+		_, u, _ := ExtendedGCD[Rat](Q, p, m)
+		return u, nil
+	}
+	columns := make([]Poly[Rat], d)
+	columns[0] = p.Rem(Q, m)
+	for j := 1; j < d; j++ {
+		columns[j] = columns[j-1].ShiftUp(1).Rem(Q, m)
+	}
+	at := func(i, j int) Rat {
+		if i > columns[j].Degree() {
+			return Rat{}
+		}
+		return columns[j].Coef(i)
+	}
+	one := func(i, _ int) Rat {
+		if i == 0 {
+			return RatFromInt(1)
+		}
+		return Rat{}
+	}
+	u, err := Solve[Rat](context.Background(), Q, MatrixFromFunc[Rat](Q, d, d, at), MatrixFromFunc[Rat](Q, d, 1, one))
+	if err != nil {
+		return Poly[Rat]{}, err
+	}
+	coefs := make([]Rat, d)
+	for i := range coefs {
+		coefs[i] = u.At(i, 0)
+	}
+	return NewPoly[Rat](Q, coefs...), nil
 }
 
 // inRoot returns a polynomial in a alone as one over Q.

@@ -433,3 +433,39 @@ func TestFractionText(t *testing.T) {
 	assert.Panics(t, func() { functionFields(t)["Q"].WithRoot(rootOf(t, ints(-3, 1))) }, "a rational root")
 	assert.Panics(t, func() { functionFields(t)["Q"].WithRoot(rootOf(t, ints(-1, 0, 2))) }, "no algebraic integer")
 }
+
+// Inverses in fields of a high degree come from linear equations, in those of a low
+// one from Euclid's algorithm: both are inverses.
+func TestInverseOfRoots(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 3))
+	for _, degree := range []int{2, 3, 5, 6, 7, 9, 12} {
+		p := algebra.Monomial[algebra.Rat](algebra.Q, algebra.RatFromInt(1), degree).Sub(algebra.PolyFromInts(2, 4)) // Eisenstein
+		roots, err := algebra.Q.Roots(context.Background(), p)
+		require.NoError(t, err)
+		near := func(prec uint) algebra.Ball {
+			z, err := roots.Enclose(context.Background(), 0, prec)
+			require.NoError(t, err)
+			return z.Re
+		}
+		f := algebra.NewFunctionField(nil, nil)
+		coefs := make([]algebra.Fraction, degree+1)
+		for i := range coefs {
+			coefs[i] = f.FromRat(p.Coef(i))
+		}
+		adj, err := f.Adjoin(context.Background(), algebra.NewPoly[algebra.Fraction](f, coefs...), near, degree)
+		require.NoError(t, err)
+		k := adj.Field
+		for range 20 {
+			x := k.Zero()
+			for range degree {
+				x = k.Add(k.Mul(x, adj.New), k.FromRat(algebra.NewRat(r.Int64N(19)-9, 1+r.Int64N(5))))
+			}
+			if k.IsZero(x) {
+				continue
+			}
+			inv, err := k.Inv(x)
+			require.NoError(t, err)
+			require.True(t, k.Equal(k.Mul(x, inv), k.One()), "degree %d: %s", degree, k.Text(x))
+		}
+	}
+}

@@ -40,7 +40,7 @@ func (w presenter[E]) split(pp primePower[E], local func() localPart[E]) Node {
 	for _, c := range part.c {
 		size += w.bits(c)
 	}
-	if size > longCoefficient*n {
+	if size > longCoefficient*n || n == 6 && size > shortOfSix {
 		return nil
 	}
 	from, _ := any(k).(*Constants)
@@ -92,6 +92,10 @@ func (w presenter[E]) split(pp primePower[E], local func() localPart[E]) Node {
 	}
 	return out
 }
+
+// shortOfSix is the size in bits up to which sixth roots are written: what is longer
+// takes seconds to read, in a field of the degree 12.
+const shortOfSix = 48
 
 // splitBinomial returns the real factors of u^n - a.
 func splitBinomial(c *Constants, p algebra.Poly[Constant]) ([]algebra.Poly[Constant], error) {

@@ -40,72 +40,66 @@ type ResponseState struct {
 
 // Response returns the states at the time t:
 //
-//	y1 = 1/11*(1 - cos(2*pi/11))*exp(-4*sin(pi/22)^2*t) + 1/11*(1 +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/22)^2*t) + 1/11*(1 + cos(pi/11))*exp(-4*sin(5*pi/22)^2*t) +
-//	    1/11*(1 + cos(3*pi/11))*exp(-4*sin(7*pi/22)^2*t) + 1/11*(1 -
-//	    cos(4*pi/11))*exp(-4*sin(9*pi/22)^2*t) + 1/11*(1 - cos(4*pi/11))*exp(-4*sin(pi/11)^2*t) +
-//	    1/11*(1 + cos(3*pi/11))*exp(-4*sin(2*pi/11)^2*t) + 1/11*(1 +
-//	    cos(pi/11))*exp(-4*sin(3*pi/11)^2*t) + 1/11*(1 + cos(5*pi/11))*exp(-4*sin(4*pi/11)^2*t) +
-//	    1/11*(1 - cos(2*pi/11))*exp(-4*sin(5*pi/11)^2*t)
-//	y2 = 1/11*(cos(pi/11) - cos(3*pi/11))*exp(-4*sin(pi/22)^2*t) + 1/11*(cos(2*pi/11) +
-//	    cos(3*pi/11))*exp(-4*sin(3*pi/22)^2*t) + 1/11*(cos(4*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(5*pi/22)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(7*pi/22)^2*t) - 1/11*(cos(2*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(9*pi/22)^2*t) + 1/11*(cos(2*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(pi/11)^2*t) + 1/11*(cos(pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(2*pi/11)^2*t) - 1/11*(cos(4*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/11)^2*t) - 1/11*(cos(2*pi/11) +
-//	    cos(3*pi/11))*exp(-4*sin(4*pi/11)^2*t) - 1/11*(cos(pi/11) -
-//	    cos(3*pi/11))*exp(-4*sin(5*pi/11)^2*t)
-//	y3 = 1/11*(cos(2*pi/11) - cos(4*pi/11))*exp(-4*sin(pi/22)^2*t) - 1/11*(-cos(pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/22)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(2*pi/11))*exp(-4*sin(5*pi/22)^2*t) - 1/11*(cos(3*pi/11) -
-//	    cos(5*pi/11))*exp(-4*sin(7*pi/22)^2*t) + 1/11*(cos(3*pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(9*pi/22)^2*t) + 1/11*(cos(3*pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(pi/11)^2*t) - 1/11*(cos(3*pi/11) -
-//	    cos(5*pi/11))*exp(-4*sin(2*pi/11)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(2*pi/11))*exp(-4*sin(3*pi/11)^2*t) - 1/11*(-cos(pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(4*pi/11)^2*t) + 1/11*(cos(2*pi/11) -
-//	    cos(4*pi/11))*exp(-4*sin(5*pi/11)^2*t)
-//	y4 = sumroots(z, z^5 + 9*z^4 + 28*z^3 + 35*z^2 + 15*z + 1, 1/22*(1 - z - 9*z^2 - 6*z^3 -
-//	    z^4)*exp(z*t)) - sumroots(z, z^5 + 11*z^4 + 44*z^3 + 77*z^2 + 55*z + 11, (z^3 + 5*z^2 +
-//	    5*z)*exp(z*t)/(22*(z + 1)))
-//	y5 = sumroots(z, z^5 + 9*z^4 + 28*z^3 + 35*z^2 + 15*z + 1, (3*z^3 + 17*z^2 + 24*z +
-//	    5)*exp(z*t)/(22*(2*z + 3))) + sumroots(z, z^5 + 11*z^4 + 44*z^3 + 77*z^2 + 55*z + 11, (3*z^3 +
-//	    19*z^2 + 32*z + 11)*exp(z*t)/(22*(2*z + 5)))
-//	y6 = sumroots(z, z^5 + 9*z^4 + 28*z^3 + 35*z^2 + 15*z + 1, (3*z^3 + 17*z^2 + 24*z +
-//	    5)*exp(z*t)/(22*(2*z + 3))) - sumroots(z, z^5 + 11*z^4 + 44*z^3 + 77*z^2 + 55*z + 11, (3*z^3 +
-//	    19*z^2 + 32*z + 11)*exp(z*t)/(22*(2*z + 5)))
-//	y7 = sumroots(z, z^5 + 9*z^4 + 28*z^3 + 35*z^2 + 15*z + 1, 1/22*(1 - z - 9*z^2 - 6*z^3 -
-//	    z^4)*exp(z*t)) + sumroots(z, z^5 + 11*z^4 + 44*z^3 + 77*z^2 + 55*z + 11, (z^3 + 5*z^2 +
-//	    5*z)*exp(z*t)/(22*(z + 1)))
-//	y8 = 1/11*(cos(2*pi/11) - cos(4*pi/11))*exp(-4*sin(pi/22)^2*t) - 1/11*(-cos(pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/22)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(2*pi/11))*exp(-4*sin(5*pi/22)^2*t) - 1/11*(cos(3*pi/11) -
-//	    cos(5*pi/11))*exp(-4*sin(7*pi/22)^2*t) + 1/11*(cos(3*pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(9*pi/22)^2*t) - 1/11*(cos(3*pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(pi/11)^2*t) + 1/11*(cos(3*pi/11) -
-//	    cos(5*pi/11))*exp(-4*sin(2*pi/11)^2*t) + 1/11*(cos(pi/11) +
-//	    cos(2*pi/11))*exp(-4*sin(3*pi/11)^2*t) + 1/11*(-cos(pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(4*pi/11)^2*t) - 1/11*(cos(2*pi/11) -
-//	    cos(4*pi/11))*exp(-4*sin(5*pi/11)^2*t)
-//	y9 = 1/11*(cos(pi/11) - cos(3*pi/11))*exp(-4*sin(pi/22)^2*t) + 1/11*(cos(2*pi/11) +
-//	    cos(3*pi/11))*exp(-4*sin(3*pi/22)^2*t) + 1/11*(cos(4*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(5*pi/22)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(7*pi/22)^2*t) - 1/11*(cos(2*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(9*pi/22)^2*t) - 1/11*(cos(2*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(pi/11)^2*t) - 1/11*(cos(pi/11) +
-//	    cos(4*pi/11))*exp(-4*sin(2*pi/11)^2*t) + 1/11*(cos(4*pi/11) +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/11)^2*t) + 1/11*(cos(2*pi/11) +
-//	    cos(3*pi/11))*exp(-4*sin(4*pi/11)^2*t) + 1/11*(cos(pi/11) -
-//	    cos(3*pi/11))*exp(-4*sin(5*pi/11)^2*t)
-//	y10 = 1/11*(1 - cos(2*pi/11))*exp(-4*sin(pi/22)^2*t) + 1/11*(1 +
-//	    cos(5*pi/11))*exp(-4*sin(3*pi/22)^2*t) + 1/11*(1 + cos(pi/11))*exp(-4*sin(5*pi/22)^2*t) +
-//	    1/11*(1 + cos(3*pi/11))*exp(-4*sin(7*pi/22)^2*t) + 1/11*(1 -
-//	    cos(4*pi/11))*exp(-4*sin(9*pi/22)^2*t) - 1/11*(1 - cos(4*pi/11))*exp(-4*sin(pi/11)^2*t) -
-//	    1/11*(1 + cos(3*pi/11))*exp(-4*sin(2*pi/11)^2*t) - 1/11*(1 +
-//	    cos(pi/11))*exp(-4*sin(3*pi/11)^2*t) - 1/11*(1 + cos(5*pi/11))*exp(-4*sin(4*pi/11)^2*t) -
-//	    1/11*(1 - cos(2*pi/11))*exp(-4*sin(5*pi/11)^2*t)
+//	y1 = 2/11*sin(pi/11)^2*(exp(-4*sin(pi/22)^2*t) + exp(-4*sin(5*pi/11)^2*t)) +
+//	    2/11*sin(2*pi/11)^2*(exp(-4*sin(pi/11)^2*t) + exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(3*pi/11)^2*(exp(-4*sin(3*pi/22)^2*t) + exp(-4*sin(4*pi/11)^2*t)) +
+//	    2/11*sin(4*pi/11)^2*(exp(-4*sin(2*pi/11)^2*t) + exp(-4*sin(7*pi/22)^2*t)) +
+//	    2/11*sin(5*pi/11)^2*(exp(-4*sin(5*pi/22)^2*t) + exp(-4*sin(3*pi/11)^2*t))
+//	y2 = 2/11*sin(2*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) - exp(-4*sin(5*pi/11)^2*t)) +
+//	    2/11*sin(4*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) - exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(5*pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) - exp(-4*sin(4*pi/11)^2*t)) +
+//	    2/11*sin(3*pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) - exp(-4*sin(7*pi/22)^2*t)) +
+//	    2/11*sin(pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) - exp(-4*sin(3*pi/11)^2*t))
+//	y3 = 2/11*sin(3*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) + exp(-4*sin(5*pi/11)^2*t)) +
+//	    2/11*sin(5*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) + exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(2*pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) + exp(-4*sin(4*pi/11)^2*t)) -
+//	    2/11*sin(pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) + exp(-4*sin(7*pi/22)^2*t)) -
+//	    2/11*sin(4*pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) + exp(-4*sin(3*pi/11)^2*t))
+//	y4 = 2/11*sin(4*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) - exp(-4*sin(5*pi/11)^2*t)) +
+//	    2/11*sin(3*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) - exp(-4*sin(9*pi/22)^2*t)) -
+//	    2/11*sin(pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) - exp(-4*sin(4*pi/11)^2*t)) -
+//	    2/11*sin(5*pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) - exp(-4*sin(7*pi/22)^2*t)) -
+//	    2/11*sin(2*pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) - exp(-4*sin(3*pi/11)^2*t))
+//	y5 = 2/11*cos(9*pi/22)*cos(pi/22)*exp(-4*sin(pi/22)^2*t) +
+//	    2/11*sin(2*pi/11)*sin(pi/11)*exp(-4*sin(pi/11)^2*t) -
+//	    2/11*cos(5*pi/22)*cos(3*pi/22)*exp(-4*sin(3*pi/22)^2*t) -
+//	    2/11*sin(4*pi/11)*sin(2*pi/11)*exp(-4*sin(2*pi/11)^2*t) +
+//	    2/11*cos(pi/22)*cos(5*pi/22)*exp(-4*sin(5*pi/22)^2*t) +
+//	    2/11*sin(5*pi/11)*sin(3*pi/11)*exp(-4*sin(3*pi/11)^2*t) -
+//	    2/11*cos(3*pi/22)*cos(7*pi/22)*exp(-4*sin(7*pi/22)^2*t) -
+//	    2/11*sin(3*pi/11)*sin(4*pi/11)*exp(-4*sin(4*pi/11)^2*t) +
+//	    2/11*cos(7*pi/22)*cos(9*pi/22)*exp(-4*sin(9*pi/22)^2*t) +
+//	    2/11*sin(pi/11)*sin(5*pi/11)*exp(-4*sin(5*pi/11)^2*t)
+//	y6 = 2/11*cos(9*pi/22)*cos(pi/22)*exp(-4*sin(pi/22)^2*t) -
+//	    2/11*sin(2*pi/11)*sin(pi/11)*exp(-4*sin(pi/11)^2*t) -
+//	    2/11*cos(5*pi/22)*cos(3*pi/22)*exp(-4*sin(3*pi/22)^2*t) +
+//	    2/11*sin(4*pi/11)*sin(2*pi/11)*exp(-4*sin(2*pi/11)^2*t) +
+//	    2/11*cos(pi/22)*cos(5*pi/22)*exp(-4*sin(5*pi/22)^2*t) -
+//	    2/11*sin(5*pi/11)*sin(3*pi/11)*exp(-4*sin(3*pi/11)^2*t) -
+//	    2/11*cos(3*pi/22)*cos(7*pi/22)*exp(-4*sin(7*pi/22)^2*t) +
+//	    2/11*sin(3*pi/11)*sin(4*pi/11)*exp(-4*sin(4*pi/11)^2*t) +
+//	    2/11*cos(7*pi/22)*cos(9*pi/22)*exp(-4*sin(9*pi/22)^2*t) -
+//	    2/11*sin(pi/11)*sin(5*pi/11)*exp(-4*sin(5*pi/11)^2*t)
+//	y7 = 2/11*sin(4*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) + exp(-4*sin(5*pi/11)^2*t)) -
+//	    2/11*sin(3*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) + exp(-4*sin(9*pi/22)^2*t)) -
+//	    2/11*sin(pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) + exp(-4*sin(4*pi/11)^2*t)) +
+//	    2/11*sin(5*pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) + exp(-4*sin(7*pi/22)^2*t)) -
+//	    2/11*sin(2*pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) + exp(-4*sin(3*pi/11)^2*t))
+//	y8 = 2/11*sin(3*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) - exp(-4*sin(5*pi/11)^2*t)) -
+//	    2/11*sin(5*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) - exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(2*pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) - exp(-4*sin(4*pi/11)^2*t)) +
+//	    2/11*sin(pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) - exp(-4*sin(7*pi/22)^2*t)) -
+//	    2/11*sin(4*pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) - exp(-4*sin(3*pi/11)^2*t))
+//	y9 = 2/11*sin(2*pi/11)*sin(pi/11)*(exp(-4*sin(pi/22)^2*t) + exp(-4*sin(5*pi/11)^2*t)) -
+//	    2/11*sin(4*pi/11)*sin(2*pi/11)*(exp(-4*sin(pi/11)^2*t) + exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(5*pi/11)*sin(3*pi/11)*(exp(-4*sin(3*pi/22)^2*t) + exp(-4*sin(4*pi/11)^2*t)) -
+//	    2/11*sin(3*pi/11)*sin(4*pi/11)*(exp(-4*sin(2*pi/11)^2*t) + exp(-4*sin(7*pi/22)^2*t)) +
+//	    2/11*sin(pi/11)*sin(5*pi/11)*(exp(-4*sin(5*pi/22)^2*t) + exp(-4*sin(3*pi/11)^2*t))
+//	y10 = 2/11*sin(pi/11)^2*(exp(-4*sin(pi/22)^2*t) - exp(-4*sin(5*pi/11)^2*t)) -
+//	    2/11*sin(2*pi/11)^2*(exp(-4*sin(pi/11)^2*t) - exp(-4*sin(9*pi/22)^2*t)) +
+//	    2/11*sin(3*pi/11)^2*(exp(-4*sin(3*pi/22)^2*t) - exp(-4*sin(4*pi/11)^2*t)) -
+//	    2/11*sin(4*pi/11)^2*(exp(-4*sin(2*pi/11)^2*t) - exp(-4*sin(7*pi/22)^2*t)) +
+//	    2/11*sin(5*pi/11)^2*(exp(-4*sin(5*pi/22)^2*t) - exp(-4*sin(3*pi/11)^2*t))
 //
 // Error: for 0 <= t <= 70 every value differs from the exact one by at most
 //

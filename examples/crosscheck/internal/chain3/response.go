@@ -19,9 +19,9 @@ type ResponseState struct {
 
 // Response returns the states at the time t:
 //
-//	y1 = 1/2*exp(-2*t)*cosh(sqrt(2)*t) + 1/2*exp(-2*t)
+//	y1 = 1/2*(exp(-2*t)*cosh(sqrt(2)*t) + exp(-2*t))
 //	y2 = sqrt(2)/2*exp(-2*t)*sinh(sqrt(2)*t)
-//	y3 = 1/2*exp(-2*t)*cosh(sqrt(2)*t) - 1/2*exp(-2*t)
+//	y3 = 1/2*(exp(-2*t)*cosh(sqrt(2)*t) - exp(-2*t))
 //
 // Error: for 0 <= t <= 9 every value differs from the exact one by at most
 //
