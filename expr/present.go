@@ -343,7 +343,7 @@ func (w presenter[E]) evenAndOdd(q quadraticPart[E]) Node {
 			content, prim = b.Coef(0), Int(1)
 		}
 		n := w.Node(content)
-		if last := len(factors) - 1; isNumber(n, 1) && isNumber(prim, 1) {
+		if last := len(factors) - 1; isNumber(n, 1) && isNumber(prim, 1) && (last == 0 || isNumber(factors[0], 1)) {
 			factors[last] = Div(factors[last], root)
 			return Mul(factors...)
 		}

@@ -118,7 +118,7 @@ func write(n Node, w notation) piece {
 		}
 		if f, ok := v.Base.(Call); ok && powered[f.Func] {
 			if x, ok := v.Exp.(Number); ok && x.Val.IsInt() && x.Val.Sign() > 0 {
-				return w.call(f.Func, write(f.Arg, w), write(v.Exp, w.exponent()).text)
+				return w.call(f.Func, writeArgument(f, w), write(v.Exp, w.exponent()).text)
 			}
 		}
 		return w.power(write(v.Base, w), write(v.Exp, w.exponent()))
@@ -126,13 +126,22 @@ func write(n Node, w notation) piece {
 		if v.Func == "exp" {
 			return w.call(v.Func, write(inOneFraction(v.Arg), w.exponent()), "")
 		}
-		return w.call(v.Func, write(v.Arg, w), "")
+		return w.call(v.Func, writeArgument(v, w), "")
 	case RootSum:
 		return w.rootSum(v.Var, write(v.Poly, w).text, write(v.Body, w))
 	case Matrix:
 		return writeMatrix(v, w)
 	}
 	panic("expr: unknown node")
+}
+
+// writeArgument writes the argument of a function; a number in a sine, cosine or arc
+// tangent has no bar: sin(pi/13).
+func writeArgument(f Call, w notation) piece {
+	if f.Func != "sqrt" && isNumeric(f.Arg) {
+		w = w.exponent()
+	}
+	return write(f.Arg, w)
 }
 
 // inOneFraction writes -2t/5 in place of -(2/5)t in the argument of an exponential,
