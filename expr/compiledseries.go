@@ -122,8 +122,11 @@ func (c *compiler[E]) estimateSeries(g *rateGroup) *rateSeries {
 			}
 		}
 		for w, factor := range weights {
+			if cancels {
+				break
+			}
 			parts := c.size(g, i, w/s.scale)
-			cancels = cancels || parts <= math.MaxFloat64 && parts >= factor*sizeAt(s.b[i], w)
+			cancels = parts <= math.MaxFloat64 && parts >= factor*sizeAt(s.b[i], w)
 		}
 	}
 	if !cancels {
