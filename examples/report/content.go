@@ -347,6 +347,9 @@ func (r *report) modesSection(d *document) {
 		text := say("For an eigenvalue ", s, " the "+constant+" is −1/", s, ", ")
 		d.add(paragraph{append(append(text, unit...), say(".")...), true})
 	}
+	if numeric && isolated(r.modes) {
+		d.add(paragraph{say("Each value, with half a unit of its last digit to either side, is an interval that holds one eigenvalue alone: together with the factor it defines it."), true})
+	}
 	if len(exact) > 0 {
 		if paired {
 			d.text("Written in radicals, and of a pair the one with positive imaginary part, they are")

@@ -58,6 +58,24 @@ func modeRows(ctx context.Context, list []linsys.Mode) ([]modeRow, error) {
 	return rows, nil
 }
 
+// isolated tells whether the rounded values of numeric eigenvalues are intervals
+// without a common point: of half a unit in the last digit to either side, in the
+// real part or in the imaginary one.
+func isolated(rows []modeRow) bool {
+	reach := func(x float64) float64 {
+		return 0.51 * math.Pow(10, math.Floor(math.Log10(max(math.Abs(x), 1e-300)))+1-rootDigits)
+	}
+	apart := func(x, y float64) bool { return math.Abs(x-y) > reach(x)+reach(y) }
+	for i, a := range rows {
+		for _, b := range rows[:i] {
+			if a.symbolic == "" && b.symbolic == "" && !apart(a.sigma, b.sigma) && !apart(a.omega, b.omega) {
+				return false
+			}
+		}
+	}
+	return true
+}
+
 // name returns the name that the report gives to the factor.
 func (m modeRow) name() expr.Node { return expr.Sym(fmt.Sprintf("p_%d", m.factor)) }
 
