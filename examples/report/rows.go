@@ -72,6 +72,22 @@ func (s *shortener) name(letter string, part, arg expr.Node) expr.Node {
 	return n
 }
 
+// matrix returns a matrix with names for entries that are wider than a column.
+func (s *shortener) matrix(m expr.Matrix) expr.Matrix {
+	out := expr.Matrix{}
+	for _, row := range m.Rows {
+		most := (rowWidth-narrow)/float64(len(row)) - 2
+		cells := make([]expr.Node, len(row))
+		for j, cell := range row {
+			if cells[j] = cell; width(cell) > most {
+				cells[j] = s.name("K", cell, nil)
+			}
+		}
+		out.Rows = append(out.Rows, cells)
+	}
+	return out
+}
+
 // shorten returns n with names for what is too long.
 func (s *shortener) shorten(n expr.Node) expr.Node {
 	switch v := n.(type) {

@@ -135,6 +135,11 @@ func (r *report) workingSection(d *document) {
 	checks := 0
 	for _, s := range r.steps {
 		checks += len(s.Verified)
+		for _, p := range s.Passages {
+			if !fits(p) {
+				r.named(p) // the sentence below is to know whether there are names
+			}
+		}
 	}
 	var names []span
 	if len(r.short.definitions) > 0 {
@@ -195,6 +200,11 @@ func (r *report) passages(d *document, s linsys.Step) {
 			}
 		}
 		shown := fits(p)
+		if !shown {
+			if named := r.named(p); fits(named) {
+				p, shown = named, true
+			}
+		}
 		if shown && len(p.Formulas) == 1 && packs(p.Formulas) && textWidth < narrow {
 			row = append(row, packedItem{text, asRelation(p.Formulas[0])})
 			continue
@@ -211,6 +221,22 @@ func (r *report) passages(d *document, s linsys.Step) {
 		}
 	}
 	flush()
+}
+
+// named returns a passage with names for what no line holds: entries of matrices,
+// coefficients and roots. Section Abbreviations tells what they stand for.
+func (r *report) named(p linsys.Passage) linsys.Passage {
+	out := p
+	out.Formulas = nil
+	for _, f := range p.Formulas {
+		if m, ok := f.Right.(expr.Matrix); ok {
+			f.Right = r.short.matrix(m)
+		} else {
+			f.Right = r.short.shorten(f.Right)
+		}
+		out.Formulas = append(out.Formulas, f)
+	}
+	return out
 }
 
 // display shows formulas side by side if they are short, or else one below the
