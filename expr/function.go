@@ -95,10 +95,8 @@ func ParseFunction(src string, limits Limits) (Function, error) {
 // roots hold exp(z*(t - c)), the function is held in the local time of c.
 func FunctionOf(n Node, variable string, limits Limits) (f Function, err error) {
 	defer catchLimit(&err)
-	if s, ok := n.(Sum); ok {
-		if g, ok := sumByNumbers(s, variable, limits); ok {
-			return g, nil
-		}
+	if g, ok := sumByNumbers(n, variable, limits); ok {
+		return g, nil
 	}
 	f, err = functionOf(n, variable, nil, limits)
 	if err == nil || !hasRootSum(n) {

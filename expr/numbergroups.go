@@ -8,22 +8,59 @@ import (
 
 // sumByNumbers reads the terms of a sum in groups by their algebraic numbers: each
 // group may be rational, while a field for the numbers of all is large.
-func sumByNumbers(s Sum, variable string, limits Limits) (Function, bool) {
-	if len(nestedIn(numbersIn(s))) > 0 {
-		if f, ok := sumInGroups(s, variable, limits, sameNested); ok {
+func sumByNumbers(n Node, variable string, limits Limits) (Function, bool) {
+	terms := spread(nil, n, nil, variable)
+	if len(terms) < 2 || len(terms) > mostSpread {
+		return Function{}, false
+	}
+	if len(nestedIn(numbersIn(n))) > 0 {
+		if f, ok := sumInGroups(terms, variable, limits, sameNested); ok {
 			return f, true
 		}
 	}
-	return sumInGroups(s, variable, limits, shareNumber)
+	return sumInGroups(terms, variable, limits, shareNumber)
 }
 
-// sumInGroups reads the terms of a sum in groups of terms whose numbers belong
-// together.
-func sumInGroups(s Sum, variable string, limits Limits, same func(a, b []string) bool) (Function, bool) {
+// mostSpread bounds the terms that are read in groups, and mostGroups the groups:
+// each may take the work that a text may.
+const (
+	mostSpread = 1 << 10
+	mostGroups = 16
+)
+
+// spread appends the terms of the product of factors and n to list, sums that the
+// variable occurs in multiplied out.
+func spread(list []Node, n Node, factors []Node, variable string) []Node {
+	if len(list) > mostSpread {
+		return list
+	}
+	switch v := n.(type) {
+	case Neg:
+		return spread(list, v.X, append(slices.Clip(factors), Int(-1)), variable)
+	case Sum:
+		if len(factors) == 0 || slices.Contains(Names(v), variable) {
+			for _, t := range v.Terms {
+				list = spread(list, t, factors, variable)
+			}
+			return list
+		}
+	case Product:
+		for i, f := range v.Factors {
+			if s, ok := f.(Sum); ok && slices.Contains(Names(s), variable) {
+				others := slices.Concat(factors, v.Factors[:i], v.Factors[i+1:])
+				return spread(list, s, others, variable)
+			}
+		}
+	}
+	return append(list, Mul(append(slices.Clip(factors), n)...))
+}
+
+// sumInGroups reads terms in groups of those whose numbers belong together.
+func sumInGroups(all []Node, variable string, limits Limits, same func(a, b []string) bool) (Function, bool) {
 	var plain []Node // the terms without such numbers
 	var keys [][]string
 	var groups [][]Node
-	for _, t := range s.Terms {
+	for _, t := range all {
 		numbers := numbersIn(t)
 		if len(numbers) == 0 {
 			plain = append(plain, t)
@@ -41,7 +78,7 @@ func sumInGroups(s Sum, variable string, limits Limits, same func(a, b []string)
 		}
 		keys, groups = append(keys[:kept], numbers), append(groups[:kept], terms)
 	}
-	if len(groups) == 0 || len(groups) == 1 && !hasRootSum(s) {
+	if len(groups) == 0 || len(groups) > mostGroups || len(groups) == 1 && !slices.ContainsFunc(plain, hasRootSum) {
 		return Function{}, false
 	}
 	sum, err := functionOf(Add(plain...), variable, nil, limits)
