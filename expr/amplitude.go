@@ -3,9 +3,9 @@ package expr
 import "example.org/closedform/algebra"
 
 // amplitude presents a cosine and a sine as R e^(ht) cos(wt - phi), with
-// R^2 = a^2 + b^2 and tan phi = b/a, |phi| < pi/2; R has the sign of a. It returns nil where the form is not asked for,
-// where symbols leave open which quadrant phi is in, and where R would be a root in
-// a root that no decimal replaces.
+// R^2 = a^2 + b^2 and tan phi = b/a, |phi| < pi/2; R has the sign of a. It returns
+// nil where the form is not asked for, where symbols leave that sign open, and where
+// R would be a root in a root that no decimal replaces.
 func (w presenter[E]) amplitude(q quadraticPart[E]) Node {
 	if !w.form.Amplitude || q.sign > 0 || !q.decided || q.a.Degree() != 0 || q.b.Degree() != 0 {
 		return nil

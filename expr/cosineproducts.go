@@ -25,20 +25,13 @@ func (w presenter[E]) productOf(c chain[E], p algebra.Poly[E]) (cosineProduct[E]
 	if p.IsZero() {
 		return cosineProduct[E]{}, false
 	}
-	// p in x = 2cos(alpha), and times sin^2(alpha/2) = (2 - x)/4.
-	inX := p.Translate(c.a)
-	coefs := make([]E, inX.Degree()+1)
-	power := k.One()
-	for i := range coefs {
-		coefs[i] = k.Mul(inX.Coef(i), power)
-		power = k.Mul(power, c.b)
-	}
 	modulus := make([]E, d+1)
 	for i := range modulus {
 		modulus[i] = k.FromRat(c.poly.Coef(i))
 	}
 	mod := algebra.NewPoly[E](k, modulus...)
-	plain := algebra.NewPoly[E](k, coefs...).Rem(k, mod)
+	// p in x = 2cos(alpha), and times sin^2(alpha/2) = (2 - x)/4.
+	plain := algebra.NewPoly[E](k, c.inCosine(k, p)...).Rem(k, mod)
 	quarter := k.FromRat(algebra.NewRat(1, 4))
 	over := plain.Mul(algebra.NewPoly[E](k, k.FromInt(2), k.FromInt(-1))).Scale(quarter).Rem(k, mod)
 	// 2cos(m alpha) modulo the polynomial; the angles have the denominator period/2.

@@ -10,9 +10,9 @@ import (
 
 // Chains of identical elements have the rates a + 2b cos(alpha) with alpha running
 // over fractions of pi, and vibrating ones, undamped or with one damping for all,
-// the frequencies 2 sqrt(b) sin(alpha/2), where a = -2b: the eigenvalues of tridiagonal matrices
-// with constant diagonals (Yueh, Eigenvalues of several tridiagonal matrices,
-// Applied Mathematics E-Notes 5, 2005, from memory).
+// the frequencies 2 sqrt(b) sin(alpha/2), where a = -2b: the eigenvalues of
+// tridiagonal matrices with constant diagonals (Yueh, Eigenvalues of several
+// tridiagonal matrices, Applied Mathematics E-Notes 5, 2005, from memory).
 
 // mostCosines is the degree up to which such roots are looked for.
 const mostCosines = 6
@@ -50,9 +50,6 @@ func (w presenter[E]) chainOf(q algebra.Poly[E]) (chain[E], bool) {
 		b, root := w.sqrt(k.Mul(variance, k.FromRat(v.Inv())))
 		if !isNumber(root, 1) {
 			continue
-		}
-		if k.Negative(b) {
-			b = k.Neg(b)
 		}
 		for range 2 {
 			a := k.Sub(mean, k.Mul(b, k.FromRat(m)))
@@ -152,24 +149,32 @@ func cosinePolynomial(n int64) algebra.Poly[algebra.Rat] {
 	return sum
 }
 
-// cosineCoefs returns the g with c(a + b x) = g[0] + sum over m of g[m] 2cos(m alpha)
+// inCosine returns the coefficients of p(a + b x) in x = 2cos(alpha).
+func (c chain[E]) inCosine(k algebra.Scalars[E], p algebra.Poly[E]) []E {
+	out := p.Translate(c.a).Coefs()
+	power := k.One()
+	for i := range out {
+		out[i] = k.Mul(out[i], power)
+		power = k.Mul(power, c.b)
+	}
+	return out
+}
+
+// cosineCoefs returns the g with p(a + b x) = g[0] + sum over m of g[m] 2cos(m alpha)
 // for x = 2cos(alpha).
 func (c chain[E]) cosineCoefs(k algebra.Scalars[E], p algebra.Poly[E]) []E {
-	in := p.Translate(c.a) // in b x
-	g := make([]E, p.Degree()+1)
+	in := c.inCosine(k, p)
+	g := make([]E, len(in))
 	for i := range g {
 		g[i] = k.Zero()
 	}
-	// x^n is the sum of x^|n - 2j| binomial(n, j), pairs of which make 2cos.
-	power := k.One()
-	for n := 0; n <= in.Degree(); n++ {
-		x := k.Mul(in.Coef(n), power)
+	// x^n is the sum of binomial(n, j) 2cos((n - 2j) alpha), taken for one of j and n - j.
+	for n, x := range in {
 		binomial := int64(1)
 		for j := 0; 2*j <= n; j++ {
 			g[n-2*j] = k.Add(g[n-2*j], k.Mul(x, k.FromInt(binomial)))
 			binomial = binomial * int64(n-j) / int64(j+1)
 		}
-		power = k.Mul(power, c.b)
 	}
 	return g
 }
@@ -225,7 +230,7 @@ func reducedTurn(r algebra.Rat) (q algebra.Rat, minus bool) {
 	return r, false
 }
 
-// node writes the sum, sines in place of cosines where sine is set.
+// turnsNode writes the sum, sines in place of cosines where sine is set.
 func (w presenter[E]) turnsNode(t *turns[E], sine bool) Node {
 	elements := []E{t.rest}
 	for _, r := range t.order {

@@ -7,36 +7,43 @@ import "slices"
 // a/(a - b) (e^(-bt) - e^(-at)). Oscillations are not mixed with what does not
 // oscillate, but for constants.
 func (w presenter[E]) grouped(terms []Node) []Node {
+	type splitted struct {
+		coefficient, wave Node
+		minus             bool
+		key               string
+	}
 	type group struct {
-		coefficient Node
-		minus       bool // of the first term
-		waves       []Node
-		at          []int
+		splitted // the first term
+		waves    []Node
+		at       []int
+	}
+	parts := make([]splitted, len(terms))
+	monotonic := map[string]bool{} // coefficients of terms that do not oscillate
+	for i, t := range terms {
+		p := &parts[i]
+		p.coefficient, p.wave, p.minus = w.splitTerm(t)
+		p.key = p.coefficient.String()
+		if !isOne(p.wave) && !oscillates(p.wave) {
+			monotonic[p.key] = true
+		}
 	}
 	groups := map[string]*group{}
 	var order []*group
-	monotonic := map[string]bool{} // coefficients of terms that do not oscillate
-	for _, t := range terms {
-		if c, wave, _ := w.splitTerm(t); !isOne(wave) && !oscillates(wave) {
-			monotonic[c.String()] = true
-		}
-	}
-	for i, t := range terms {
-		coefficient, wave, minus := w.splitTerm(t)
-		key := coefficient.String()
-		if oscillates(wave) || isOne(wave) && !monotonic[key] {
+	for i, p := range parts {
+		key := p.key
+		if oscillates(p.wave) || isOne(p.wave) && !monotonic[key] {
 			key += " oscillating"
 		}
 		g := groups[key]
 		if g == nil {
-			g = &group{coefficient: coefficient, minus: minus}
+			g = &group{splitted: p}
 			groups[key] = g
 			order = append(order, g)
 		}
-		if minus != g.minus {
-			wave = signed(Negate(wave))
+		if p.minus != g.minus {
+			p.wave = signed(Negate(p.wave))
 		}
-		g.waves, g.at = append(g.waves, wave), append(g.at, i)
+		g.waves, g.at = append(g.waves, p.wave), append(g.at, i)
 	}
 	out := slices.Clone(terms)
 	for _, g := range order {
